@@ -1,0 +1,48 @@
+import pytest
+from PySide6.QtGui import QColor
+from PySide6.QtWidgets import QLabel
+
+from desktop import theme as themes
+
+EVERY = [themes.light(), themes.dark(), themes.print_theme(), themes.print_theme(greyscale=True)]
+
+
+@pytest.mark.parametrize("theme", EVERY, ids=lambda t: t.name)
+def test_text_stands_out_from_its_ground(theme):
+    weak = {
+        name: round(themes.contrast(text, ground), 2)
+        for name, text, ground in theme.text_pairs()
+        if themes.contrast(text, ground) < 4.5
+    }
+    assert weak == {}
+
+
+def test_contrast_of_black_on_white_is_21():  # WCAG 2.1, definition of contrast ratio: 1 to 21
+    assert themes.contrast(QColor("#000000"), QColor("#ffffff")) == pytest.approx(21)
+    assert themes.contrast(QColor("#777777"), QColor("#ffffff")) == pytest.approx(4.48, abs=0.005)
+
+
+def test_the_applied_theme_is_the_current_one(qapp):
+    themes.apply(qapp, themes.dark())
+    assert themes.current().dark
+    assert qapp.palette().window().color() == themes.dark().paper
+    themes.apply(qapp, themes.light())
+    assert not themes.current().dark
+
+
+def test_sizes_follow_zoom(qtbot, qapp):
+    from dataclasses import replace
+
+    themes.apply(qapp, replace(themes.light(), zoom=1.5))
+    label = themes.dress(QLabel("12"), themes.Size.LARGE, "exact")
+    qtbot.addWidget(label)
+    label.ensurePolished()
+    assert label.font().pointSizeF() == pytest.approx(30)
+    assert themes.current().px(1) == 12
+    themes.apply(qapp, themes.light())
+    assert label.font().pointSizeF() == pytest.approx(20)
+    assert label.palette().windowText().color() == themes.light().exact
+
+
+def test_an_unknown_system_scheme_is_light(qapp):
+    assert themes.of_system().name in ("light", "dark")
