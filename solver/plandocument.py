@@ -7,12 +7,12 @@ goes on with a harmless value in its place, so that one run shows them all.
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, field
 from decimal import Decimal
 from types import MappingProxyType
-from typing import Any, Final
+from typing import Any
 
-from solver.exact import ALLOWED_SIZE, as_written, typed_number
+from solver import reading
+from solver.exact import as_written
 from solver.plan import (
     ONE,
     ZERO,
@@ -28,7 +28,8 @@ from solver.plan import (
     Supervision,
     Work,
 )
-from solver.review import Findings, PlanProblems, Problem, quoted, review_into, step
+from solver.reading import Key, Notes
+from solver.review import PlanProblems, Problem, quoted
 
 FORMAT = "full-complement/plan"
 VERSION = 1
@@ -41,231 +42,23 @@ class UnreadableFile(Exception):
     """What was given is no plan file at all; the message is one sentence for people."""
 
 
-@dataclass(frozen=True)
-class BadNumber:
-    """A number that was written but cannot be used, as the reader of the text left it."""
-
-    text: str
-    why: str
-
-
-class RepeatedKeys(dict[str, Any]):
-    """An object of the file in which some keys stand more than once; the last value counts."""
-
-    repeated: tuple[str, ...] = ()
-
-
-@dataclass
-class Notes:
-    """Problems so far, and the places whose values are only stand-ins."""
-
-    found: Findings = field(default_factory=Findings)
-    unsound: set[str] = field(default_factory=set)
-
-    def add(self, place: str, says: str) -> None:
-        """Note that the value at `place` could not be read."""
-        self.found.add(place, says)
-        self.unsound.add(place)
-
-    def review(self, plan: Plan) -> None:
-        """Add what is wrong with the meaning of `plan`, leaving out whatever is only a stand-in."""
-        meaning = Findings(suggestions=self.found.suggestions)
-        review_into(plan, meaning)
-        for problem in meaning.problems:
-            if not self._is_stand_in(problem.place):
-                self.found.add(problem.place, problem.says)
-        self.found.unlisted += meaning.unlisted
-
-    def _is_stand_in(self, place: str) -> bool:
-        cuts = [i for i, c in enumerate(place) if c in ".["]
-        return any(place[:cut] in self.unsound for cut in [*cuts, len(place)])
-
-
-Read = Callable[[Any, str, Notes], Any]
-
-
-class _Required:
-    """The default of a key that has none."""
-
-
-REQUIRED: Final = _Required()
-
-
-@dataclass(frozen=True)
-class Key:
-    """How the value of one key is read; `stand_in` replaces one that is missing or cannot be read."""
-
-    read: Read
-    default: Any = REQUIRED
-    stand_in: Any = None
-
-
-# values
-
-
-def _shown(raw: Any) -> str:
-    if isinstance(raw, BadNumber):
-        return raw.text
-    if isinstance(raw, str):
-        return f"the text {quoted(raw)}"
-    if raw is None or isinstance(raw, bool):
-        return {None: "null", True: "true", False: "false"}[raw]
-    if isinstance(raw, dict):
-        return "an object"
-    if isinstance(raw, list | tuple):
-        return "a list"
-    return str(raw)[:40]
-
-
-def _number(raw: Any, place: str, notes: Notes) -> Decimal:
-    if isinstance(raw, Decimal):
-        return raw
-    if isinstance(raw, int) and not isinstance(raw, bool):
-        made = None if raw.bit_length() > 60 else typed_number(str(raw))
-        raw = (
-            made if made is not None else BadNumber("a huge whole number", f"cannot be used; {ALLOWED_SIZE}")
-        )
-        if made is not None:
-            return made
-    if isinstance(raw, BadNumber):
-        notes.add(place, f"{raw.text} {raw.why}")
-    else:
-        hint = " written without quotation marks" if isinstance(raw, str) else ""
-        notes.add(place, f"is {_shown(raw)}; allowed is a number{hint}")
-    return ONE
-
-
-def _number_or_null(raw: Any, place: str, notes: Notes) -> Decimal | None:
-    return None if raw is None else _number(raw, place, notes)
-
-
-def _text(raw: Any, place: str, notes: Notes) -> str:
-    if isinstance(raw, str):
-        return raw
-    notes.add(place, f"is {_shown(raw)}; allowed is a text in quotation marks")
-    return ""
-
-
-def _yes_or_no(raw: Any, place: str, notes: Notes) -> bool:
-    if isinstance(raw, bool):
-        return raw
-    notes.add(place, f"is {_shown(raw)}; allowed is true or false")
-    return False
-
-
-def _sense(raw: Any, place: str, notes: Notes) -> Sense:
-    allowed = [s.value for s in Sense]
-    if raw in allowed if isinstance(raw, str) else False:
-        return Sense(raw)
-    near = notes.found.nearest(raw, allowed) if isinstance(raw, str) else ""
-    notes.add(place, f"is {_shown(raw)}; allowed is {_either(allowed)}{near}")
-    return Sense.AT_LEAST
-
-
-def _either(texts: list[str]) -> str:
-    listed = [quoted(t) for t in texts]
-    return listed[0] if len(listed) == 1 else ", ".join(listed[:-1]) + " or " + listed[-1]
-
-
-def _list(raw: Any, place: str, notes: Notes) -> list[Any]:
-    if isinstance(raw, list | tuple):
-        return list(raw)
-    notes.add(place, f"is {_shown(raw)}; allowed is a list in square brackets")
-    return []
-
-
-def _object(raw: Any, place: str, notes: Notes) -> Mapping[str, Any]:
-    if not isinstance(raw, dict) or not all(isinstance(key, str) for key in raw):
-        notes.add(place, f"is {_shown(raw)}; allowed is an object in curly brackets")
-        return {}
-    for key in getattr(raw, "repeated", ()):
-        notes.add(step(place, key), "stands more than once in the same object; allowed is once")
-    return raw
-
-
-def _names(raw: Any, place: str, notes: Notes) -> tuple[str, ...]:
-    listed = _list(raw, place, notes)
-    for index, name in enumerate(listed):
-        if not isinstance(name, str):
-            notes.add(place, f"has {_shown(name)} as entry {index + 1}; allowed are names in quotation marks")
-    return tuple(name for name in listed if isinstance(name, str))
-
-
-def _names_or_null(raw: Any, place: str, notes: Notes) -> tuple[str, ...] | None:
-    return None if raw is None else _names(raw, place, notes)
-
-
-def _numbers(raw: Any, place: str, notes: Notes) -> tuple[Decimal, ...]:
-    return tuple(_number(x, f"{place}[{i}]", notes) for i, x in enumerate(_list(raw, place, notes)))
-
-
-def _by_name(raw: Any, place: str, notes: Notes) -> Mapping[str, Decimal]:
-    pairs = _object(raw, place, notes)
-    return MappingProxyType({k: _number(v, step(place, k), notes) for k, v in pairs.items()})
-
-
-def _numbers_by_name(raw: Any, place: str, notes: Notes) -> Mapping[str, tuple[Decimal, ...]]:
-    pairs = _object(raw, place, notes)
-    return MappingProxyType({k: _numbers(v, step(place, k), notes) for k, v in pairs.items()})
-
-
-def _entries(read: Read) -> Read:
-    def read_all(raw: Any, place: str, notes: Notes) -> tuple[Any, ...]:
-        return tuple(read(x, f"{place}[{i}]", notes) for i, x in enumerate(_list(raw, place, notes)))
-
-    return read_all
-
-
-# objects
-
-
-def _values(raw: Any, place: str, keys: Mapping[str, Key], notes: Notes) -> dict[str, Any]:
-    """The values of `keys` in the object `raw`, with everything unknown, missing or wrong noted."""
-    pairs = _object(raw, place, notes)
-    for name in pairs:
-        if name not in keys:
-            near = notes.found.nearest(name, keys)
-            notes.add(step(place, name), f"is no key that can stand here{near}; allowed: {', '.join(keys)}")
-    was_object = isinstance(raw, dict)
-    return {
-        name: _value(pairs, name, key, step(place, name), notes if was_object else Notes())
-        for name, key in keys.items()
-    }
-
-
-def _value(pairs: Mapping[str, Any], name: str, key: Key, place: str, notes: Notes) -> Any:
-    if name in pairs:
-        return key.read(pairs[name], place, notes)
-    if key.default is REQUIRED:
-        notes.add(place, "is missing")
-        return key.stand_in
-    return key.default
-
-
-def _made(kind: Callable[..., Any], keys: Mapping[str, Key]) -> Read:
-    def read(raw: Any, place: str, notes: Notes) -> Any:
-        return kind(**_values(raw, place, keys, notes))
-
-    return read
-
-
-_ZERO = Key(_number, ZERO)
-_NAME = Key(_text, stand_in="")
-_NUMBER = Key(_number, stand_in=ZERO)
-_PEOPLE = Key(_names, stand_in=())
-_IN_PHASES = Key(_names_or_null, None)
-_BY_DAY = Key(_yes_or_no, False)
-_SENSE = Key(_sense, Sense.AT_LEAST)
-
-PHASE_KEYS = {"name": _NAME, "periods": Key(_number, ONE)}
-SUPERVISION_KEYS = {"hours": _ZERO, "by": Key(_names, ())}
+_ZERO = Key(reading.number, ZERO)
+_NAME = Key(reading.text, stand_in="")
+_NUMBER = Key(reading.number, stand_in=ZERO)
+_PEOPLE = Key(reading.names, stand_in=())
+_IN_PHASES = Key(reading.names_or_null, None)
+_BY_DAY = Key(reading.yes_or_no, False)
+_SENSE = Key(reading.sense, Sense.AT_LEAST)
+
+PHASE_KEYS = {"name": _NAME, "periods": Key(reading.number, ONE)}
+SUPERVISION_KEYS = {"hours": _ZERO, "by": Key(reading.names, ())}
 CATEGORY_KEYS = {
     "name": _NAME,
     "on_books": _ZERO,
     "at_least": _ZERO,
-    "at_most": Key(_number_or_null, None),
+    "at_most": Key(reading.number_or_null, None),
     "least_if_any": _ZERO,
-    "lot": Key(_number, ONE),
+    "lot": Key(reading.number, ONE),
     "pay": _NUMBER,
     "join_cost": _ZERO,
     "leave_cost": _ZERO,
@@ -275,22 +68,22 @@ CATEGORY_KEYS = {
     "overtime_hours": _ZERO,
     "overtime_rate": _ZERO,
     "settling_hours": _ZERO,
-    "supervision": Key(_made(Supervision, SUPERVISION_KEYS), Supervision()),
-    "output": Key(_by_name, MappingProxyType({})),
-    "day_absence": Key(_number_or_null, None),
-    "hours_note": Key(_text, ""),
+    "supervision": Key(reading.object_of(Supervision, SUPERVISION_KEYS), Supervision()),
+    "output": Key(reading.numbers_for, MappingProxyType({})),
+    "day_absence": Key(reading.number_or_null, None),
+    "hours_note": Key(reading.text, ""),
 }
 WORK_KEYS = {
     "name": _NAME,
-    "unit": Key(_text, "units"),
-    "amounts": Key(_numbers, stand_in=()),
-    "buy_in_price": Key(_number_or_null, None),
-    "buy_in_most": Key(_number_or_null, None),
+    "unit": Key(reading.text, "units"),
+    "amounts": Key(reading.numbers, stand_in=()),
+    "buy_in_price": Key(reading.number_or_null, None),
+    "buy_in_most": Key(reading.number_or_null, None),
 }
 RULE_KEYS: Mapping[type[Rule], Mapping[str, Key]] = {
     Presence: {
         "name": _NAME,
-        "weights": Key(_by_name, stand_in=MappingProxyType({})),
+        "weights": Key(reading.numbers_for, stand_in=MappingProxyType({})),
         "sense": _SENSE,
         "bound": _NUMBER,
         "phases": _IN_PHASES,
@@ -321,33 +114,33 @@ def _rule(raw: Any, place: str, notes: Notes) -> Rule:
     named = raw.get("kind") if isinstance(raw, dict) else None
     kind = _KINDS.get(named) if isinstance(named, str) else None
     if kind is not None:
-        values = _values(raw, place, {"kind": Key(_text), **RULE_KEYS[kind]}, notes)
+        values = reading.values_of(raw, place, {"kind": Key(reading.text), **RULE_KEYS[kind]}, notes)
         del values["kind"]
         return kind(**values)
     if isinstance(raw, dict):
         near = notes.found.nearest(named, _KINDS) if isinstance(named, str) else ""
-        said = f"is {_shown(named)}" if "kind" in raw else "is missing"
-        notes.add(f"{place}.kind", f"{said}; allowed is {_either(list(_KINDS))}{near}")
+        said = f"is {reading.shown(named)}" if "kind" in raw else "is missing"
+        notes.add(f"{place}.kind", f"{said}; allowed is {reading.either(list(_KINDS))}{near}")
     else:
-        _object(raw, place, notes)
+        reading.pairs_of(raw, place, notes)
     notes.unsound.add(place)
     return Budget(f"unreadable {place}", ZERO)
 
 
 PLAN_KEYS = {
-    "title": Key(_text, ""),
-    "site": Key(_text, ""),
-    "prepared_by": Key(_text, ""),
-    "notes": Key(_text, ""),
-    "currency": Key(_text, "EUR"),
-    "period": Key(_text, "week"),
-    "phases": Key(_entries(_made(Phase, PHASE_KEYS)), (Phase("Whole job"),)),
-    "categories": Key(_entries(_made(Category, CATEGORY_KEYS)), ()),
-    "works": Key(_entries(_made(Work, WORK_KEYS)), ()),
-    "rules": Key(_entries(_rule), ()),
-    "own": Key(_numbers_by_name, MappingProxyType({})),
+    "title": Key(reading.text, ""),
+    "site": Key(reading.text, ""),
+    "prepared_by": Key(reading.text, ""),
+    "notes": Key(reading.text, ""),
+    "currency": Key(reading.text, "EUR"),
+    "period": Key(reading.text, "week"),
+    "phases": Key(reading.list_of(reading.object_of(Phase, PHASE_KEYS)), (Phase("Whole job"),)),
+    "categories": Key(reading.list_of(reading.object_of(Category, CATEGORY_KEYS)), ()),
+    "works": Key(reading.list_of(reading.object_of(Work, WORK_KEYS)), ()),
+    "rules": Key(reading.list_of(_rule), ()),
+    "own": Key(reading.lists_for, MappingProxyType({})),
 }
-_HEAD_KEYS = {"format": Key(_text, FORMAT), "version": Key(_number, ONE)}
+_HEAD_KEYS = {"format": Key(reading.text, FORMAT), "version": Key(reading.number, ONE)}
 
 
 # the whole document
@@ -359,7 +152,7 @@ def plan_from_document(document: Any) -> Plan:
     Raises UnreadableFile for another format or a newer version, PlanProblems with every problem listed.
     """
     notes = Notes()
-    values = _values(_of_this_version(document), "", {**_HEAD_KEYS, **PLAN_KEYS}, notes)
+    values = reading.values_of(_of_this_version(document), "", {**_HEAD_KEYS, **PLAN_KEYS}, notes)
     plan = Plan(**{key: values[key] for key in PLAN_KEYS})
     sound = not notes.found.problems
     notes.review(plan)
@@ -381,11 +174,10 @@ def _of_this_version(given: Any) -> dict[str, Any]:
     """The document upgraded to the version of today."""
     document: dict[str, Any] = given
     if not isinstance(document, dict):
-        raise UnreadableFile(f"This is not a plan: it holds {_shown(document)} where a plan is expected.")
+        raise UnreadableFile(f"This is no plan: it holds {reading.shown(document)}, expected is an object.")
     if document.get("format", FORMAT) != FORMAT:
-        raise UnreadableFile(
-            f'This is not a plan: its "format" is {_shown(document["format"])}, expected is {quoted(FORMAT)}.'
-        )
+        other = reading.shown(document["format"])
+        raise UnreadableFile(f'This is no plan: its "format" is {other}, expected is {quoted(FORMAT)}.')
     version = _version(document)
     while version < VERSION:
         if version not in UPGRADES:
@@ -400,12 +192,12 @@ def _of_this_version(given: Any) -> dict[str, Any]:
 def _version(document: dict[str, Any]) -> int:
     raw = document.get("version", VERSION)
     if not isinstance(raw, int | Decimal) or isinstance(raw, bool) or raw % 1 != 0:
-        says = f"is {_shown(raw)}; allowed is a whole number up to {VERSION}"
+        says = f"is {reading.shown(raw)}; allowed is a whole number up to {VERSION}"
         raise PlanProblems((Problem("version", says),))
     if raw > VERSION:
         raise UnreadableFile(
-            f"This plan was saved by a newer program: its version is {_shown(raw)}, this program reads "
-            f"versions up to {VERSION}. Nothing was changed; please update the program."
+            f"This plan was saved by a newer program: its version is {raw}, this program reads versions up to "
+            f"{VERSION}. Nothing was changed; please update the program."
         )
     return int(raw)
 

@@ -17,13 +17,8 @@ import simplejson
 
 from solver.exact import ALLOWED_SIZE, TypedNumber, typed_number
 from solver.plan import Plan
-from solver.plandocument import (
-    BadNumber,
-    RepeatedKeys,
-    UnreadableFile,
-    plan_from_document,
-    plan_to_document,
-)
+from solver.plandocument import UnreadableFile, plan_from_document, plan_to_document
+from solver.reading import BadNumber, RepeatedKeys
 from solver.review import PlanProblems, Problem
 
 __all__ = [
