@@ -196,8 +196,8 @@ def _version(document: dict[str, Any]) -> int:
         raise PlanProblems((Problem("version", says),))
     if raw > VERSION:
         raise UnreadableFile(
-            f"This plan was saved by a newer program: its version is {raw}, this program reads versions up to "
-            f"{VERSION}. Nothing was changed; please update the program."
+            f"This plan was saved by a newer program: its version is {raw}, this program reads versions up "
+            f"to {VERSION}. Nothing was changed; please update the program."
         )
     return int(raw)
 

@@ -103,30 +103,6 @@ def number(raw: Any, place: str, notes: Notes) -> Decimal:
             return small
         raw = BadNumber("a huge whole number", f"cannot be used; {ALLOWED_SIZE}")
     if isinstance(raw, BadNumber):
-        return raw.text
-    if isinstance(raw, str):
-        return f"the text {quoted(raw)}"
-    if raw is None or isinstance(raw, bool):
-        return {None: "null", True: "true", False: "false"}[raw]
-    if isinstance(raw, dict):
-        return "an object"
-    if isinstance(raw, list | tuple):
-        return "a list"
-    return str(raw)[:40]
-
-
-def number(raw: Any, place: str, notes: Notes) -> Decimal:
-    """An exact number; binary floats are refused, they are not what was typed."""
-    if isinstance(raw, Decimal):
-        return raw
-    if isinstance(raw, int) and not isinstance(raw, bool):
-        made = None if raw.bit_length() > 60 else typed_number(str(raw))
-        raw = (
-            made if made is not None else BadNumber("a huge whole number", f"cannot be used; {ALLOWED_SIZE}")
-        )
-        if made is not None:
-            return made
-    if isinstance(raw, BadNumber):
         notes.add(place, f"{raw.text} {raw.why}")
     else:
         hint = " written without quotation marks" if isinstance(raw, str) else ""
