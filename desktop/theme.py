@@ -66,6 +66,12 @@ class Theme:
         font.setBold(bold)
         return font
 
+    def picture_font(self, size: Size = Size.BODY, bold: bool = False) -> QFont:
+        """As `font`, in pixels of a 96 dpi painter: pictures keep their proportions on any device."""
+        font = self.font(size, bold)
+        font.setPixelSize(max(1, round(self.points(size) * 96 / 72)))
+        return font
+
     def points(self, size: Size) -> float:
         """Point size of `size` at this zoom."""
         return _POINTS[size] * self.zoom

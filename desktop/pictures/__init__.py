@@ -1,0 +1,1 @@
+"""The pictures: painters usable on screen and in print, and their widgets."""

@@ -1,0 +1,199 @@
+"""Head counts over several phases: a step per phase and category, fractional line over exact area.
+
+Widths follow the lengths of the phases, half of the room being shared equally so that short ones stay
+readable. Each category has its own height; the numbers stand above each step.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+from PySide6.QtCore import QPointF, QRectF, Qt
+from PySide6.QtGui import QPainter, QPen, QPolygonF
+
+from desktop import crew_words as say
+from desktop import figures
+from desktop.pictures.brush import CENTRE, LEFT, rule, text_width, write
+from desktop.pictures.figure import SHAPE, Figure, Mark, paint_figure
+from desktop.pictures.tally_layout import Tally, TallyPhase, TallyRow
+from desktop.theme import Size, Theme
+
+_HEADER = 40.0
+_NUMBERS = 28.0
+_STEP = 28.0
+_GAP = 12.0
+_LEGEND = 24.0
+_NAME_SHARE = 0.2
+
+
+def phases_height(tally: Tally, theme: Theme) -> float:
+    """Height `paint_phases` needs, in the painter's units."""
+    legend = _LEGEND if tally.rows else 0
+    return theme.zoom * (_HEADER + len(tally.rows) * (_NUMBERS + _STEP + _GAP) + legend)
+
+
+def phase_edges(phases: Sequence[TallyPhase], left: float, right: float) -> list[float]:
+    """Left edge of each phase and the right edge of the last."""
+    total = sum(p.periods for p in phases) or 1
+    edges = [left]
+    for phase in phases:
+        share = 0.5 / len(phases) + 0.5 * phase.periods / total
+        edges.append(edges[-1] + share * (right - left))
+    return edges
+
+
+def step_points(counts: Sequence[float], edges: Sequence[float], base: float, unit: float) -> list[QPointF]:
+    """The corners of the step line of `counts` at `unit` of height per person, left to right."""
+    points = []
+    for at, count in enumerate(counts):
+        y = base - count * unit
+        points += [QPointF(edges[at], y), QPointF(edges[at + 1], y)]
+    return points
+
+
+@dataclass(frozen=True)
+class _Frame:
+    """Where one category is drawn."""
+
+    row: TallyRow
+    top: float
+    edges: list[float]
+    theme: Theme
+
+    def cell(self, at: int) -> QRectF:
+        """The line of numbers of phase `at`."""
+        left = self.edges[at] + 4 * self.theme.zoom
+        width = self.edges[at + 1] - self.edges[at] - 8 * self.theme.zoom
+        return QRectF(left, self.top, width, _NUMBERS * self.theme.zoom)
+
+
+def paint_phases(painter: QPainter, rect: QRectF, tally: Tally, theme: Theme) -> None:
+    """Draw the stepped head counts of `tally` into `rect`."""
+    unit = theme.zoom
+    names = max((text_width(theme.picture_font(), r.name) for r in tally.rows), default=0)
+    name_width = min(names, rect.width() * _NAME_SHARE)
+    edges = phase_edges(tally.phases, rect.left() + name_width + 16 * unit, rect.right())
+    _paint_header(painter, rect.top(), tally, edges, theme)
+    top = rect.top() + _HEADER * unit
+    for row in tally.rows:
+        rule(painter, rect.left(), top - 4 * unit, rect.right(), top - 4 * unit, theme)
+        frame = _Frame(row, top, edges, theme)
+        box = QRectF(rect.left(), top + 3 * unit, name_width, 20 * unit)
+        write(painter, box, row.name, theme.picture_font(), theme.ink)
+        note = _name_note(row)
+        write(painter, box.translated(0, 18 * unit), note, theme.picture_font(Size.SMALL), theme.faint)
+        _paint_steps(painter, frame)
+        for at in range(len(tally.phases)):
+            _paint_cell(painter, frame, at)
+        top += (_NUMBERS + _STEP + _GAP) * unit
+    if tally.rows:
+        _paint_key(painter, QRectF(edges[0], top, rect.right() - edges[0], 20 * unit), theme)
+
+
+def _name_note(row: TallyRow) -> str:
+    if row.before > 0:
+        return say.on_the_books(figures.people(row.before))
+    return say.in_lots(figures.people(row.lot)) if row.lot != 1 else ""
+
+
+def _paint_header(painter: QPainter, top: float, tally: Tally, edges: list[float], theme: Theme) -> None:
+    unit = theme.zoom
+    for at, phase in enumerate(tally.phases):
+        box = QRectF(edges[at] + 4 * unit, top, edges[at + 1] - edges[at] - 8 * unit, 18 * unit)
+        write(painter, box, phase.name, theme.picture_font(), theme.ink)
+        length = say.periods(figures.number(phase.periods), tally.period)
+        small = theme.picture_font(Size.SMALL)
+        write(painter, box.translated(0, 16 * unit), length, small, theme.faint)
+
+
+def _paint_steps(painter: QPainter, frame: _Frame) -> None:
+    """Exact as a filled area, fractional as a broken line, leavers and joiners as its jumps."""
+    theme, row = frame.theme, frame.row
+    base = frame.top + (_NUMBERS + _STEP) * theme.zoom
+    peak = max((n for crew in (row.fractional, row.exact) if crew for n in crew), default=0) or 1
+    unit = (_STEP - 4) * theme.zoom / peak
+    if row.exact:
+        top = step_points(row.exact, frame.edges, base, unit)
+        area = [QPointF(frame.edges[0], base), *top, QPointF(frame.edges[-1], base)]
+        painter.setPen(Qt.PenStyle.NoPen)
+        painter.setBrush(theme.exact_soft)
+        painter.drawPolygon(QPolygonF(area))
+        painter.setPen(QPen(theme.exact, 2))
+        painter.drawPolyline(QPolygonF(top))
+    if row.fractional:
+        pen = QPen(theme.fractional, 2)
+        pen.setDashPattern([3, 2])
+        pen.setCapStyle(Qt.PenCapStyle.FlatCap)
+        painter.setPen(pen)
+        painter.drawPolyline(QPolygonF(step_points(row.fractional, frame.edges, base, unit)))
+    rule(painter, frame.edges[0], base, frame.edges[-1], base, theme)
+    for edge in frame.edges[1:-1]:
+        rule(painter, edge, frame.top, edge, base, theme)
+
+
+def _paint_cell(painter: QPainter, frame: _Frame, at: int) -> None:
+    """The exact count, then the fractional one and the moves as far as the phase is wide enough."""
+    theme, row, cell = frame.theme, frame.row, frame.cell(at)
+    left = cell.left()
+    large = theme.picture_font(Size.LARGE, bold=True)
+    texts = [(figures.people(row.exact[at]) if row.exact else "", large, theme.exact)]
+    fractional = figures.people(row.fractional[at]) if row.fractional else ""
+    texts.append((fractional, theme.picture_font(), theme.fractional))
+    for text, font, colour in texts:
+        wide = text_width(font, text)
+        if left + wide > cell.right() + 4 * theme.zoom:
+            return
+        if text:
+            write(painter, QRectF(left, cell.top(), wide, cell.height()), text, font, colour)
+            left += wide + 8 * theme.zoom
+    _paint_moves(painter, QRectF(left, cell.top(), cell.right() - left, cell.height()), frame, at)
+
+
+def _paint_moves(painter: QPainter, box: QRectF, frame: _Frame, at: int) -> None:
+    """Who joins or leaves at the start of the phase: one outlined or struck figure and the number."""
+    theme, row, unit = frame.theme, frame.row, frame.theme.zoom
+    joins, leaves = row.joiners(at), row.leavers(at)
+    if not joins and not leaves:
+        return
+    text = figures.change(joins or -leaves)
+    font, high = theme.picture_font(Size.SMALL), 14 * unit
+    wide = text_width(font, text) + high * SHAPE + 5 * unit
+    if wide > box.width():
+        return
+    mark = Mark.JOINS if joins else Mark.LEAVES
+    x = box.right() - wide
+    y = box.center().y() - high / 2
+    paint_figure(painter, Figure(x, y, high * SHAPE, high, mark), theme)
+    words = QRectF(x + high * SHAPE + 5 * unit, box.top(), box.width(), box.height())
+    write(painter, words, text, font, theme.ink, LEFT)
+
+
+def _paint_key(painter: QPainter, box: QRectF, theme: Theme) -> None:
+    """What the line, the area and the small figures mean."""
+    unit, font = theme.zoom, theme.picture_font(Size.SMALL)
+    y = box.center().y()
+    pen = QPen(theme.fractional, 2)
+    pen.setDashPattern([3, 2])
+    painter.setPen(pen)
+    painter.drawLine(QPointF(box.left(), y), QPointF(box.left() + 24 * unit, y))
+    x = _key_text(painter, box, box.left() + 30 * unit, say.LEGEND_FRACTIONAL, theme)
+    area = QRectF(x, y - 5 * unit, 24 * unit, 10 * unit)
+    painter.fillRect(area, theme.exact_soft)
+    painter.setPen(QPen(theme.exact, 2))
+    painter.drawLine(area.topLeft(), area.topRight())
+    x = _key_text(painter, box, x + 30 * unit, say.LEGEND_EXACT, theme)
+    for mark, text in ((Mark.JOINS, say.LEGEND_JOINS), (Mark.LEAVES, say.LEGEND_LEAVES)):
+        high = 13 * unit
+        paint_figure(painter, Figure(x, y - high / 2, high * SHAPE, high, mark), theme)
+        x = _key_text(painter, box, x + high * SHAPE + 5 * unit, text, theme)
+    wide = text_width(font, say.OWN_HEIGHT)
+    if x + wide < box.right():
+        write(painter, QRectF(x, box.top(), wide, box.height()), say.OWN_HEIGHT, font, theme.faint, CENTRE)
+
+
+def _key_text(painter: QPainter, box: QRectF, x: float, text: str, theme: Theme) -> float:
+    font = theme.picture_font(Size.SMALL)
+    wide = text_width(font, text)
+    write(painter, QRectF(x, box.top(), wide, box.height()), text, font, theme.faint)
+    return x + wide + 14 * theme.zoom
