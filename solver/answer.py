@@ -98,8 +98,9 @@ class CrewReport:
     """One crew appraised. `crew` None: the policy has no crew, and `why_none` says why.
 
     `cost` is None unless workable; `paper_cost` is pay, joining, leaving and opening costs of the head
-    counts alone; `joiners` and `leavers` are people over all phases; `overtime` hours and `bought_in`
-    units per phase are filled for workable crews.
+    counts alone; `joiners` and `leavers` are people over all phases, `people` those of the fullest phase;
+    `overtime` hours and `bought_in` units per phase are filled for workable crews. `proved` False: a best corner or patched crew that a
+    time limit kept from being proved the cheapest of its kind.
     """
 
     policy: Policy
@@ -115,6 +116,7 @@ class CrewReport:
     overtime: Mapping[str, tuple[float, ...]]
     bought_in: Mapping[str, tuple[float, ...]]
     why_none: str
+    proved: bool = True
 
 
 @dataclass(frozen=True)

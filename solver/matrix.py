@@ -1,0 +1,97 @@
+"""A mixed integer program in matrix form: minimise cost.x, rows, bounds; what the engines are given."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass, field
+from enum import StrEnum
+
+import numpy as np
+import numpy.typing as npt
+
+Floats = npt.NDArray[np.float64]
+Ints = npt.NDArray[np.intp]
+
+
+class RowSense(StrEnum):
+    """Direction of a row; the values are the letters CBC's C interface and MPS files use."""
+
+    AT_LEAST = "G"
+    AT_MOST = "L"
+    EQUAL = "E"
+
+
+@dataclass(frozen=True)
+class Row:
+    """sum coefs[i] x[columns[i]] {>=, <=, =} rhs."""
+
+    columns: tuple[int, ...]
+    coefs: tuple[float, ...]
+    sense: RowSense
+    rhs: float
+
+
+@dataclass
+class Matrix:
+    """The program while it is being put together, and afterwards. Columns are added before rows."""
+
+    cost: list[float] = field(default_factory=list)
+    lower: list[float] = field(default_factory=list)
+    upper: list[float] = field(default_factory=list)
+    integer: list[bool] = field(default_factory=list)
+    rows: list[Row] = field(default_factory=list)
+
+    def add_column(self, cost: float, lower: float, upper: float, integer: bool = False) -> int:
+        """Append a column and return its index."""
+        self.cost.append(cost)
+        self.lower.append(lower)
+        self.upper.append(upper)
+        self.integer.append(integer)
+        return len(self.cost) - 1
+
+    def add_row(self, columns: Sequence[int], coefs: Sequence[float], sense: RowSense, rhs: float) -> int:
+        """Append a row and return its index."""
+        self.rows.append(Row(tuple(columns), tuple(coefs), sense, rhs))
+        return len(self.rows) - 1
+
+    def copy(self) -> Matrix:
+        """An independent copy, to be changed for one question."""
+        return Matrix(self.cost[:], self.lower[:], self.upper[:], self.integer[:], self.rows[:])
+
+    @property
+    def width(self) -> int:
+        """Number of columns."""
+        return len(self.cost)
+
+
+class DualBound:
+    """A lower bound on cost.x that holds whatever rounding the LP code did.
+
+    For any row prices y of the right signs, y.b + sum_j min over [l_j, u_j] of (c - A'y)_j x_j is a
+    bound (Neumaier & Shcherbina, Safe bounds in linear and mixed-integer linear programming,
+    Mathematical Programming 99 (2004) 283-296); the last step's own rounding is taken off.
+    """
+
+    _ROUNDING = 4e-15
+
+    def __init__(self, matrix: Matrix) -> None:
+        lengths = [len(row.columns) for row in matrix.rows]
+        self._row_of = np.repeat(np.arange(len(lengths)), lengths)
+        self._column_of = np.array([c for row in matrix.rows for c in row.columns], dtype=np.intp)
+        self._values = np.array([v for row in matrix.rows for v in row.coefs])
+        self._rhs = np.array([row.rhs for row in matrix.rows])
+        self._floor = np.array([0.0 if r.sense is RowSense.AT_LEAST else -np.inf for r in matrix.rows])
+        self._ceiling = np.array([0.0 if r.sense is RowSense.AT_MOST else np.inf for r in matrix.rows])
+        self._cost = np.array(matrix.cost)
+
+    def value(self, prices: Floats, lower: Floats, upper: Floats) -> float:
+        """The bound for row prices `prices` (clipped to their signs) and the columns' bounds."""
+        y = np.clip(prices, self._floor, self._ceiling)
+        pulled = np.bincount(
+            self._column_of, weights=self._values * y[self._row_of], minlength=len(self._cost)
+        )
+        reduced = self._cost - pulled
+        ends = np.where(reduced > 0, reduced * lower, reduced * upper)
+        parts = float(y @ self._rhs) + float(ends.sum())
+        size = float(np.abs(y * self._rhs).sum() + np.abs(ends).sum())
+        return parts - self._ROUNDING * (len(ends) + len(y)) * size

@@ -1,0 +1,241 @@
+"""The main question: the fractional crew, the exact crew with its proof, and every rounding appraised."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass, replace
+from functools import cached_property, partial
+from time import monotonic
+from typing import Any
+
+import numpy as np
+
+from solver import heads
+from solver.answer import (
+    Answer,
+    CrewReport,
+    ExactCrew,
+    Policy,
+    Proof,
+    State,
+    WholePeopleCost,
+)
+from solver.appraisal import Appraiser
+from solver.engine import EngineName, LpStatus, WholeStatus, whole
+from solver.matrix import Floats
+from solver.plan import Plan
+from solver.program import Line, Program
+from solver.proof import Proved, Prover
+from solver.rounding import largest_remainder, rounded, snapped
+from solver.search import Found, Limits, Search, whole_grain
+
+Heard = Callable[[str, Any], None]
+BOXED = Limits(nodes=20_000, seconds=2.0)
+ROUNDINGS = (Policy.DOWN, Policy.NEAREST, Policy.UP, Policy.LARGEST_REMAINDER)
+
+
+@dataclass(frozen=True)
+class Relaxed:
+    """The relaxation: its cost and crew in lots."""
+
+    floor: float
+    lots: tuple[float, ...]
+
+
+class Case:
+    """A plan being worked on: its program and what was found, each thing once. Later questions start here."""
+
+    def __init__(self, plan: Plan, seconds: float | None = None) -> None:
+        """`seconds` limits the exact solve."""
+        self.plan = plan
+        self._seconds = seconds
+
+    @cached_property
+    def program(self) -> Program:
+        """The plan's matrix program."""
+        return Program(self.plan)
+
+    @cached_property
+    def search(self) -> Search:
+        """The warm relaxation and our own search over it."""
+        return Search(self.program, grain=whole_grain(self.program))
+
+    @cached_property
+    def appraiser(self) -> Appraiser:
+        """Appraises crews of this plan."""
+        return Appraiser(self.program)
+
+    @cached_property
+    def relaxed(self) -> Relaxed | None:
+        """The fractional crew, None if not even fractional people can do it."""
+        if self.search.relax() is not LpStatus.OPTIMAL:
+            return None
+        relaxation = self.search.relaxation
+        lots = relaxation.x[: self.program.head_count]
+        return Relaxed(relaxation.objective, tuple(snapped(v) for v in lots.tolist()))
+
+    @cached_property
+    def proved(self) -> Proved:
+        """The exact crew with its proof."""
+        if self.relaxed is None:
+            return self._impossible_even_in_fractions()
+        return Prover(self.program, self.search).prove(self.relaxed.lots, self._seconds)
+
+    def _impossible_even_in_fractions(self) -> Proved:
+        """CLP says so; HiGHS must agree before people are told."""
+        matrix = replace(self.program.matrix, integer=[False] * self.program.matrix.width)
+        agrees = whole(matrix, EngineName.HIGHS, seconds=10.0).status is WholeStatus.INFEASIBLE
+        state = State.IMPOSSIBLE if agrees else State.BEST_FOUND
+        return Proved(state, Proof.TWO_ENGINES if agrees else None, None, float("inf" if agrees else "-inf"))
+
+    # ---- crews -------------------------------------------------------------------------------
+
+    def rounding(self, policy: Policy) -> tuple[int, ...]:
+        """The fractional crew after a rounding policy, in lots. Needs a fractional crew."""
+        assert self.relaxed is not None
+        sizes = [self.program.lots[i // len(self.plan.phases)] for i in range(self.program.head_count)]
+        if policy is Policy.LARGEST_REMAINDER:
+            return largest_remainder(self.relaxed.lots, sizes, len(self.plan.phases))
+        return rounded(policy, self.relaxed.lots, sizes)
+
+    def _within(self, lower: Sequence[float], upper: Sequence[float]) -> tuple[Found | None, bool]:
+        """The cheapest workable crew between two crews; and whether that is proved."""
+        low, high = self.search.box()
+        count = self.program.head_count
+        low[:count] = np.maximum(low[:count], lower)
+        high[:count] = np.minimum(high[:count], upper)
+        if (low > high).any():
+            return None, True
+        key = partial(heads.preference, self.program)
+        outcome = self.search.cheapest(BOXED, key=key, box=(low, high))
+        return outcome.best, outcome.complete
+
+    def best_corner(self) -> CrewReport:
+        """The cheapest workable choice of down or up per category and phase."""
+        best, complete = self._within(self.rounding(Policy.DOWN), self.rounding(Policy.UP))
+        if best is None:
+            why = "No choice of down or up per category is workable."
+            return self.appraiser.none(Policy.BEST_CORNER, why if complete else "None found in the time given.")
+        return replace(self._report(Policy.BEST_CORNER, best.lots), proved=complete)
+
+    def patched(self) -> CrewReport:
+        """The nearest rounding made workable by the cheapest additions of people."""
+        nearest = self.rounding(Policy.NEAREST)
+        best, complete = self._within(nearest, [np.inf] * len(nearest))
+        if best is None:
+            why = self._forbidden(nearest) if complete else "None found in the time given."
+            return self.appraiser.none(Policy.PATCHED, why)
+        return replace(self._report(Policy.PATCHED, best.lots), proved=complete)
+
+    def _forbidden(self, nearest: Sequence[int]) -> str:
+        """Which line forbids mending the nearest rounding by additions."""
+        line = self._forbidding_line(nearest)
+        if line is None:
+            return "Adding people cannot mend it: several lines together forbid it."
+        where = f" in {line.phase}" if line.phase and len(self.plan.phases) > 1 else ""
+        return f"Adding people cannot mend it: \u201c{line.says}\u201d forbids it{where}."
+
+    def _forbidding_line(self, nearest: Sequence[int]) -> Line | None:
+        program = self.program
+        over = [h for h in program.head_lines if h.line.row is None and h.margin(nearest) < 0]
+        if over:
+            return over[0].line
+        lower, upper = self.search.box()
+        lower[: len(nearest)] = np.maximum(lower[: len(nearest)], nearest)
+        for line in program.lines:
+            if line.row is None:
+                continue
+            without = Search(program, _without_row(program, line.row))
+            if without.relax(lower, upper) is LpStatus.OPTIMAL:
+                return line
+        return None
+
+    def _report(self, policy: Policy, lots: heads.Counts) -> CrewReport:
+        assert self.relaxed is not None
+        return self.appraiser.appraise(policy, lots, self.relaxed.lots)
+
+    @cached_property
+    def exact_report(self) -> CrewReport | None:
+        """The exact crew appraised; None if there is none."""
+        best = self.proved.best
+        return None if best is None else self._report(Policy.EXACT, best.lots)
+
+    def crews(self) -> list[CrewReport]:
+        """Every policy's crew, and the planner's own where there is one."""
+        if self.relaxed is None:
+            return []
+        reports = [self._report(policy, self.rounding(policy)) for policy in ROUNDINGS]
+        reports += [self.best_corner(), self.patched()]
+        if self.exact_report is not None:
+            reports.append(self.exact_report)
+        if self.plan.own:
+            reports.append(self._report(Policy.OWN, heads.lots_of(self.program, self.plan.own)))
+        return reports
+
+    # ---- answer ------------------------------------------------------------------------------
+
+    def fractional(self) -> dict[str, Any]:
+        """Floor and fractional crew, for those who do not wait."""
+        if self.relaxed is None:
+            return {"floor": None, "crew": None}
+        return {"floor": self.relaxed.floor, "crew": heads.crew_of(self.program, self.relaxed.lots)}
+
+    def answer(self, crews: Sequence[CrewReport], seconds: float) -> Answer:
+        """Everything of the main question."""
+        relaxed, proved, exact = self.relaxed, self.proved, self._exact()
+        gap = None
+        if relaxed is not None and exact is not None:
+            gap = _gap(exact.cost, relaxed.floor)
+        bound = proved.bound if np.isfinite(proved.bound) else None
+        return Answer(
+            proved.state,
+            proved.proof,
+            None if relaxed is None else relaxed.floor,
+            None if relaxed is None else heads.crew_of(self.program, relaxed.lots),
+            exact,
+            bound if bound is not None else (relaxed.floor if relaxed and exact else None),
+            gap,
+            tuple(crews),
+            None,
+            seconds,
+        )
+
+    def _exact(self) -> ExactCrew | None:
+        report = self.exact_report
+        if report is None or report.crew is None:
+            return None
+        if report.cost is None:
+            raise AssertionError(f"the exact crew {report.crew} did not stand its appraisal")
+        return ExactCrew(
+            report.crew, report.cost, report.joiners, report.leavers, report.overtime, report.bought_in
+        )
+
+
+def _gap(cost: float, floor: float) -> WholePeopleCost:
+    absolute = max(cost - floor, 0.0)
+    absolute = 0.0 if absolute < 1e-7 * max(1.0, abs(cost)) else absolute
+    return WholePeopleCost(absolute, 100 * absolute / cost if cost else 0.0)
+
+
+def _without_row(program: Program, row: int) -> Any:
+    matrix = program.matrix.copy()
+    gone = matrix.rows[row]
+    matrix.rows[row] = replace(gone, columns=(), coefs=(), rhs=0.0)
+    return matrix
+
+
+def solve(plan: Plan, *, seconds: float | None = None, heard: Heard | None = None) -> Answer:
+    """Answer the main question about a plan that review() has no objection to.
+
+    `seconds` limits the exact solve (None: 60 s). `heard(part, value)` hears of "fractional" at once.
+    Raises EngineFailure if an engine breaks.
+    """
+    began = monotonic()
+    case = Case(plan, seconds)
+    if heard is not None:
+        heard("fractional", case.fractional())
+    crews = case.crews()
+    return case.answer(crews, monotonic() - began)
+
+
+__all__ = ["Case", "Floats", "Relaxed", "solve"]

@@ -1,0 +1,61 @@
+"""Which of equally cheap crews is taken when there are too many to look at all: goal after goal.
+
+Preemptive goals (Ignizio): the cost is held, joiners plus leavers are minimised and held, then people,
+then the first category is maximised, and so on; the same order as heads.preference.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+from time import monotonic
+
+from solver.matrix import Matrix, RowSense
+from solver.program import Program
+from solver.search import Found, Limits, Search, tie_width
+
+_HALF_LOT = 0.5
+Goal = list[tuple[int, float]]
+
+
+def preferred(program: Program, best: Found, caps: Sequence[int], seconds: float) -> Found:
+    """The preferred crew among those as cheap as `best`; `best` as improved so far if time runs out."""
+    counting = Program(program.plan, caps, all_moves=True)
+    matrix = counting.matrix.copy()
+    costly = [(i, cost) for i, cost in enumerate(matrix.cost) if cost]
+    _hold(matrix, costly, best.objective + tie_width(best.objective))
+    until = monotonic() + seconds
+    lots = best.lots
+    for goal, tolerance in _goals(counting):
+        left = until - monotonic()
+        if left <= 0:
+            break
+        matrix.cost = [0.0] * matrix.width
+        for column, weight in goal:
+            matrix.cost[column] = weight
+        search = Search(counting, matrix)
+        value = search.evaluate(lots)
+        start = None if value is None else Found(lots, value)
+        outcome = search.cheapest(Limits(seconds=left), start=start)
+        if outcome.best is None:
+            break
+        lots = outcome.best.lots
+        _hold(matrix, goal, outcome.best.objective + tolerance)
+    return Found(lots, best.objective)
+
+
+def _hold(matrix: Matrix, goal: Goal, most: float) -> None:
+    matrix.add_row([c for c, _ in goal], [w for _, w in goal], RowSense.AT_MOST, most)
+
+
+def _goals(program: Program) -> Iterator[tuple[Goal, float]]:
+    """Each goal with what may be added to its value without letting a worse crew in."""
+    span = len(program.phases)
+    least_lot = min((float(lot) for lot in program.lots), default=1.0)
+    moves = [*program.joiners.values(), *program.leavers.values()]
+    yield [(column, 1.0) for column in moves], 1e-4 * least_lot
+    yield [(i, float(program.lots[i // span])) for i in range(program.head_count)], 1e-4 * least_lot
+    for j in range(len(program.categories)):
+        yield [(program.head(j, t), -1.0) for t in range(span)], _HALF_LOT
+    if span > 1:
+        for i in range(program.head_count):
+            yield [(i, -1.0)], _HALF_LOT
