@@ -275,7 +275,7 @@ class NearBest:
 
 @dataclass(frozen=True)
 class Step:
-    """A stretch of workload [from, to] that `crew` serves at least cost; `cost` at `to`, `cost_from` at `from`."""
+    """Workloads [from, to] that `crew` serves at least cost; `cost` at `to`, `cost_from` at `from`."""
 
     from_: float
     to: float

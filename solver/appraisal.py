@@ -80,7 +80,9 @@ class Appraiser:
             _UNUSED,
             "",
         )
-        return replace(report, **self._running(runs)) if workable else report
+        if not workable:
+            return report
+        return replace(report, overtime=self._overtime(runs), bought_in=self._bought_in(runs))
 
     def workable(self, lots: heads.Counts) -> bool:
         """Whether no line is missed; cheaper than a whole appraisal."""
@@ -155,19 +157,19 @@ class Appraiser:
 
     # ---- all phases --------------------------------------------------------------------------
 
-    def _running(self, runs: Sequence[PhaseRun]) -> dict[str, dict[str, tuple[float, ...]]]:
-        program = self.program
-        overtime = {
+    def _overtime(self, runs: Sequence[PhaseRun]) -> dict[str, tuple[float, ...]]:
+        return {
             c.name: tuple(_clean(run.overtime[j]) for run in runs)
-            for j, c in enumerate(program.categories)
+            for j, c in enumerate(self.program.categories)
             if j in runs[0].overtime
         }
-        bought = {
+
+    def _bought_in(self, runs: Sequence[PhaseRun]) -> dict[str, tuple[float, ...]]:
+        return {
             w.name: tuple(_clean(run.bought[k]) for run in runs)
-            for k, w in enumerate(program.plan.works)
+            for k, w in enumerate(self.program.plan.works)
             if k in runs[0].bought
         }
-        return {"overtime": overtime, "bought_in": bought}
 
     def _margins(
         self, lots: heads.Counts, runs: Sequence[PhaseRun], paper: Fraction, cost: float, short: bool
@@ -228,9 +230,7 @@ class Appraiser:
         program = self.program
         base = [float(n) for n in lots] if fractional is None else fractional
         found = [
-            rule_break(program, head, lots, base)
-            for head in program.head_lines
-            if head.margin(lots) < 0
+            rule_break(program, head, lots, base) for head in program.head_lines if head.margin(lots) < 0
         ]
         for t, run in enumerate(runs):
             found += self._phase_breaks(t, run, lots, base)
@@ -239,9 +239,7 @@ class Appraiser:
                 found.append(budget_break(program, line, lots, base, runs, cost))
         return found
 
-    def _phase_breaks(
-        self, t: int, run: PhaseRun, lots: heads.Counts, base: Sequence[float]
-    ) -> list[Break]:
+    def _phase_breaks(self, t: int, run: PhaseRun, lots: heads.Counts, base: Sequence[float]) -> list[Break]:
         found = []
         if run.supervision_prices is not None:
             found.append(
@@ -251,7 +249,9 @@ class Appraiser:
         if run.work_prices is not None and (run.work_short > SHORT).any():
             given_up = self._given_up(run)
             found.append(
-                hours_break(self.program, t, LineKind.WORK, run.work_short, run.work_prices, lots, base, given_up)
+                hours_break(
+                    self.program, t, LineKind.WORK, run.work_short, run.work_prices, lots, base, given_up
+                )
             )
         return found
 
@@ -276,8 +276,8 @@ class _BudgetedRoom:
         matrix = Matrix([0.0] * program.matrix.width, program.matrix.lower[:], program.matrix.upper[:])
         matrix.integer = program.matrix.integer[:]
         extra: dict[int, int] = {}
-        for _, row, *_ in program.hours_lines:
-            extra[row] = matrix.add_column(0.0, 0.0, 0.0)
+        for _, hours_row, *_ in program.hours_lines:
+            extra[hours_row] = matrix.add_column(0.0, 0.0, 0.0)
         for i, row in enumerate(program.matrix.rows):
             if i in extra:
                 matrix.add_row([*row.columns, extra[i]], [*row.coefs, -1.0], row.sense, row.rhs)

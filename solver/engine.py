@@ -80,6 +80,8 @@ class Relaxation:
         self._height = 0
         for cost, lower, upper in zip(matrix.cost, matrix.lower, matrix.upper, strict=True):
             cbclib.Cbc_addCol(self._c, b"", lower, upper, cost, b"\x00", 0, ffi.NULL, ffi.NULL)
+        # CBC's interface loses rows without entries: those get a column fixed at nothing
+        cbclib.Cbc_addCol(self._c, b"", 0.0, 0.0, 0.0, b"\x00", 0, ffi.NULL, ffi.NULL)
         for row in matrix.rows:
             self.add_row(row)
         cbclib.Cbc_setPrimalTolerance(self._c, PRIMAL_TOLERANCE)
@@ -87,10 +89,8 @@ class Relaxation:
 
     def add_row(self, row: Row) -> int:
         """Append a row; returns its index."""
-        size = len(row.columns)
-        cbclib.Cbc_addRow(
-            self._c, b"", size, row.columns, row.coefs, row.sense.value.encode(), row.rhs
-        )
+        columns, coefs = (row.columns, row.coefs) if row.columns else ((self._width,), (1.0,))
+        cbclib.Cbc_addRow(self._c, b"", len(columns), columns, coefs, row.sense.value.encode(), row.rhs)
         self._height += 1
         return self._height - 1
 
@@ -109,7 +109,7 @@ class Relaxation:
 
     def solve(self) -> LpStatus:
         """Solve from the last basis. Raises EngineFailure on anything but the three statuses."""
-        code = cbclib.Cbc_resolve(self._c) if self._width else 0
+        code = cbclib.Cbc_resolve(self._c)
         try:
             return LpStatus(code)
         except ValueError:

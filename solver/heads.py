@@ -1,4 +1,4 @@
-"""Crews as whole lots: their people, joiners, leavers and exact costs, and which of two equal ones is taken."""
+"""Crews as whole lots: people, joiners, leavers, exact costs, and which of two equal ones is taken."""
 
 from __future__ import annotations
 

@@ -78,10 +78,10 @@ class HeadLine:
 
     def margin(self, lots: Sequence[Fraction | int]) -> Fraction:
         """Exact room (>= 0) or miss (< 0) of a crew in lots, in the line's unit."""
-        total = sum((coef * lots[i] for i, coef in self.terms), start=Fraction(0))
+        total = sum(coef * lots[i] for i, coef in self.terms)
         if self.only_if_any and total == 0:
             return Fraction(0)
-        room = (total - self.rhs) / self.divisor
+        room = Fraction(total - self.rhs) / self.divisor
         if self.sense is RowSense.AT_MOST:
             return -room
         return room if self.sense is RowSense.AT_LEAST else -abs(room)
@@ -212,9 +212,7 @@ class Program:
         if before is None:
             self.matrix.add_row([column, now], [1.0, -sign * lot], RowSense.AT_LEAST, -sign * books)
         else:
-            self.matrix.add_row(
-                [column, now, before], [1.0, -sign * lot, sign * lot], RowSense.AT_LEAST, 0.0
-            )
+            self.matrix.add_row([column, now, before], [1.0, -sign * lot, sign * lot], RowSense.AT_LEAST, 0.0)
         return column
 
     def _add_presence_switches(self) -> None:
@@ -353,9 +351,7 @@ class Program:
         row = self.matrix.add_row(columns, coefs, RowSense.AT_LEAST, 0.0)
         name = f"Supervision by {group_name(self.groups[g])}"
         says = name[0].lower() + name[1:]
-        self.lines.append(
-            Line(name, LineKind.SUPERVISION, self.phases[t].name, "hours", row, 1.0, says)
-        )
+        self.lines.append(Line(name, LineKind.SUPERVISION, self.phases[t].name, "hours", row, 1.0, says))
 
     def _add_rules(self) -> None:
         self.budget_rows: list[int] = []

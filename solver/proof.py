@@ -153,7 +153,9 @@ def _cheaper(a: Found | None, b: Found | None) -> Found | None:
 def _agree(best: Found, first: WholeResult, second: WholeResult) -> bool:
     """Both engines proved, and both mean the cost of the crew that stood the check, to the cent."""
     proved = first.status is WholeStatus.OPTIMAL and second.status is WholeStatus.OPTIMAL
-    near = all(abs(r.objective - best.objective) < CENT / 2 + 1e-9 * abs(best.objective) for r in (first, second))
+    near = all(
+        abs(r.objective - best.objective) < CENT / 2 + 1e-9 * abs(best.objective) for r in (first, second)
+    )
     return proved and near
 
 

@@ -47,9 +47,7 @@ def half_up(value: float) -> int:
 _ROUNDINGS = {Policy.DOWN: _down, Policy.UP: _up, Policy.NEAREST: _nearest}
 
 
-def largest_remainder(
-    fractional: Sequence[float], lots: Sequence[Fraction], phases: int
-) -> tuple[int, ...]:
+def largest_remainder(fractional: Sequence[float], lots: Sequence[Fraction], phases: int) -> tuple[int, ...]:
     """Hamilton's method in each phase: the phase's total head count, rounded to the nearest whole
     person, is kept; every category gets its whole lots, and the lots still to hand out go to the
     largest remainders (in lots; of equal ones to the category that stands first).

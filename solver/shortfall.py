@@ -136,7 +136,12 @@ class Shortfall:
         books = float(self.program.categories[j].on_books)
         first = self.t == 0
         self._row(
-            [column], [1.0], RowSense.AT_LEAST, -books if first else 0.0, {j: 1.0}, None if first else {j: -1.0}
+            [column],
+            [1.0],
+            RowSense.AT_LEAST,
+            -books if first else 0.0,
+            {j: 1.0},
+            None if first else {j: -1.0},
         )
         return column
 

@@ -115,7 +115,9 @@ class Case:
         best, complete = self._within(self.rounding(Policy.DOWN), self.rounding(Policy.UP))
         if best is None:
             why = "No choice of down or up per category is workable."
-            return self.appraiser.none(Policy.BEST_CORNER, why if complete else "None found in the time given.")
+            return self.appraiser.none(
+                Policy.BEST_CORNER, why if complete else "None found in the time given."
+            )
         return replace(self._report(Policy.BEST_CORNER, best.lots), proved=complete)
 
     def patched(self) -> CrewReport:

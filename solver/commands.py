@@ -1,0 +1,143 @@
+"""The command line: which verbs there are, how answers are printed, what the exit code says.
+
+Exit 0: answered; 1: the plan has problems or no workable crew exists; 2: usage, or a file that cannot
+be read (one line).
+"""
+
+from __future__ import annotations
+
+import argparse
+import json
+import os
+import sys
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+from typing import IO, Any, NoReturn
+
+from solver import report
+from solver.answer import Answer, State, to_json
+from solver.engine import EngineFailure, quiet_native_output
+from solver.plan import Plan
+from solver.planfile import PlanProblems, UnreadableFile, read_plan
+from solver.questions import QUESTIONS, BadOption
+from solver.review import Problem
+
+OK, NO, UNUSABLE = 0, 1, 2
+
+
+@dataclass(frozen=True)
+class Verb:
+    """A verb of the command line: its own options and how its answer reads as text."""
+
+    name: str
+    help: str
+    arguments: Callable[[argparse.ArgumentParser], None]
+    text: Callable[[Plan, Any], str]
+
+
+def _no_arguments(parser: argparse.ArgumentParser) -> None:
+    """For verbs with nothing to set."""
+
+
+def _solve_arguments(parser: argparse.ArgumentParser) -> None:
+    parser.add_argument("--seconds", type=float, default=None, help="time limit of the exact solve")
+
+
+VERBS: tuple[Verb, ...] = (
+    Verb(
+        "solve", "the exact crew, its proof, and what every rounding breaks", _solve_arguments, report.solve
+    ),
+)
+
+
+class _Parser(argparse.ArgumentParser):
+    """Says what is wrong in one line."""
+
+    def error(self, message: str) -> NoReturn:
+        print(f"solver: {message}", file=sys.stderr)
+        raise SystemExit(UNUSABLE)
+
+
+def _parser() -> argparse.ArgumentParser:
+    parser = _Parser(prog="python -m solver", description="Whole crews for a workload, proved cheapest.")
+    verbs = parser.add_subparsers(dest="verb", required=True, metavar="VERB")
+    check = verbs.add_parser("check", help="list every problem of a plan file")
+    _plan_arguments(check)
+    for verb in VERBS:
+        one = verbs.add_parser(verb.name, help=verb.help)
+        _plan_arguments(one)
+        verb.arguments(one)
+    verbs.add_parser("worker", help="serve requests of the window on standard input")
+    return parser
+
+
+def _plan_arguments(parser: argparse.ArgumentParser) -> None:
+    parser.add_argument("plans", nargs="+", metavar="PLAN", help="plan files (.crew.json)")
+    parser.add_argument("--json", action="store_true", help="one JSON document a line")
+
+
+def main(arguments: Sequence[str]) -> int:
+    """Run one command line; returns the exit code."""
+    try:
+        asked = _parser().parse_args(arguments)
+    except SystemExit as leaving:
+        return int(leaving.code or 0)
+    if asked.verb == "worker":
+        from solver.service import main as serve
+
+        return serve()
+    try:
+        with os.fdopen(quiet_native_output(), "w", encoding="utf-8") as out:
+            return max(_one(asked, path, out) for path in asked.plans)
+    except BrokenPipeError:  # the reader has seen enough
+        return OK
+
+
+def _one(asked: argparse.Namespace, path: str, out: IO[str]) -> int:
+    """Answer about one file; a bad one is told and does not stop the others."""
+    try:
+        plan = read_plan(path)
+        if asked.verb == "check":
+            return _print(asked, path, out, {"problems": []}, "No problems found.", OK)
+        return _ask(asked, plan, path, out)
+    except PlanProblems as found:
+        return _problems(asked, path, out, found.problems)
+    except (UnreadableFile, BadOption) as refusal:
+        return _refused(asked, path, out, str(refusal))
+    except EngineFailure as failure:
+        return _refused(asked, path, out, f"The solver gave up: {failure}.")
+
+
+def _ask(asked: argparse.Namespace, plan: Plan, path: str, out: IO[str]) -> int:
+    settings = vars(asked).keys() - {"verb", "plans", "json"}
+    options = {name: getattr(asked, name) for name in settings}
+    answer = QUESTIONS[asked.verb].ask(plan, options, lambda part, value: None)
+    verb = next(v for v in VERBS if v.name == asked.verb)
+    impossible = isinstance(answer, Answer) and answer.state is State.IMPOSSIBLE
+    return _print(asked, path, out, to_json(answer), verb.text(plan, answer), NO if impossible else OK)
+
+
+def _problems(asked: argparse.Namespace, path: str, out: IO[str], problems: Sequence[Problem]) -> int:
+    listed = [{"place": p.place, "says": p.says} for p in problems]
+    text = "\n".join(f"{p.place}: {p.says}" for p in problems)
+    return _print(asked, path, out, {"problems": listed}, text, NO)
+
+
+def _refused(asked: argparse.Namespace, path: str, out: IO[str], sentence: str) -> int:
+    if asked.json and len(asked.plans) > 1:
+        _print(asked, path, out, {"error": sentence}, sentence, UNUSABLE)
+    else:
+        print(sentence, file=sys.stderr)
+    return UNUSABLE
+
+
+def _print(
+    asked: argparse.Namespace, path: str, out: IO[str], document: dict[str, Any], text: str, code: int
+) -> int:
+    several = len(asked.plans) > 1
+    if asked.json:
+        named = {"plan": path, **document} if several else document
+        print(json.dumps(named, ensure_ascii=False, allow_nan=False), file=out)
+    else:
+        print(f"{path}\n{text}\n" if several else text, file=out)
+    return code
