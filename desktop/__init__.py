@@ -1,0 +1,1 @@
+"""The window, the printed page and the pictures; talks to `solver` through its public names."""

@@ -1,0 +1,1 @@
+"""One adapter per grid of the plan page; columns are data."""

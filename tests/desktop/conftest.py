@@ -1,0 +1,94 @@
+"""A window test leaves nothing behind: no window, no process, no file of the tester's own settings."""
+
+import os
+import sys
+from pathlib import Path
+
+import pytest
+
+os.environ.setdefault("QT_QPA_PLATFORM", "offscreen")
+
+from PySide6.QtCore import QCoreApplication, QEvent, QLocale, QProcess, QSettings, QStandardPaths
+from PySide6.QtWidgets import QApplication
+from shiboken6 import isValid
+
+from desktop import theme
+from desktop.workers import Workers
+
+FAKE_WORKER = Path(__file__).with_name("fake_worker.py")
+
+
+@pytest.fixture(scope="session")
+def qapp(qapp_cls):
+    app = qapp_cls.instance() or qapp_cls(["full-complement"])
+    app.setApplicationName("full-complement-tests")
+    QLocale.setDefault(QLocale(QLocale.Language.English, QLocale.Country.UnitedStates))
+    theme.apply(app, theme.light())
+    return app
+
+
+@pytest.fixture(scope="session")
+def qapp_cls():
+    return QApplication
+
+
+@pytest.fixture(autouse=True)
+def own_places(tmp_path, monkeypatch):
+    """Settings, recovery copies and logs of this test alone."""
+    QStandardPaths.setTestModeEnabled(True)
+    QSettings.setDefaultFormat(QSettings.Format.IniFormat)
+    QSettings.setPath(QSettings.Format.IniFormat, QSettings.Scope.UserScope, str(tmp_path / "settings"))
+    monkeypatch.setenv("FULL_COMPLEMENT_STATE", str(tmp_path / "state"))
+
+
+@pytest.fixture(autouse=True)
+def nothing_left():
+    """Fails the test that leaves a window or a process."""
+    yield
+    app = QApplication.instance()
+    if app is None:
+        return
+    windows = [w for w in app.topLevelWidgets() if w.isVisible()]
+    for window in windows:
+        window.hide()
+        window.deleteLater()
+    QCoreApplication.sendPostedEvents(None, QEvent.Type.DeferredDelete)
+    alive = [p for p in _running if isValid(p)]
+    processes = [p for p in alive if p.state() != QProcess.ProcessState.NotRunning]
+    for process in processes:
+        process.kill()
+        process.waitForFinished(2000)
+    _running.clear()
+    assert not windows, f"left on the screen: {windows}"
+    assert not processes, f"left running: {[p.arguments() for p in processes]}"
+
+
+_running: list[QProcess] = []
+
+
+@pytest.fixture(autouse=True)
+def watch_processes(monkeypatch):
+    start = QProcess.start
+
+    def noted(self, *args):
+        _running.append(self)
+        return start(self, *args)
+
+    monkeypatch.setattr(QProcess, "start", noted)
+
+
+@pytest.fixture
+def fake_command():
+    """The command of a solver process that does what its plan's title says."""
+
+    def command(*options):
+        return (sys.executable, str(FAKE_WORKER), *options)
+
+    return command
+
+
+@pytest.fixture
+def workers(qapp, fake_command):
+    made = Workers(fake_command())
+    yield made
+    made.close()
