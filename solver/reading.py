@@ -13,7 +13,9 @@ from typing import Any, Final
 
 from solver.exact import ALLOWED_SIZE, typed_number
 from solver.plan import ONE, Plan, Sense
-from solver.review import Findings, quoted, review_into, step
+from solver.review import MOST_ENTRIES, Findings, quoted, review_into, step
+
+MOST_INNER_ENTRIES = 1000  # of amounts, outputs, names in a rule
 
 
 @dataclass(frozen=True)
@@ -36,6 +38,7 @@ class Notes:
 
     found: Findings = field(default_factory=Findings)
     unsound: set[str] = field(default_factory=set)
+    too_long: bool = False
 
     def add(self, place: str, says: str) -> None:
         """Note that the value at `place` could not be read."""
@@ -44,6 +47,8 @@ class Notes:
 
     def review(self, plan: Plan) -> None:
         """Add what is wrong with the meaning of `plan`, leaving out whatever is only a stand-in."""
+        if self.too_long:
+            return
         meaning = Findings(suggestions=self.found.suggestions)
         review_into(plan, meaning)
         for problem in meaning.problems:
@@ -147,10 +152,20 @@ def either(texts: list[str]) -> str:
     return listed[0] if len(listed) == 1 else ", ".join(listed[:-1]) + " or " + listed[-1]
 
 
+def _is_too_long(raw: Any, place: str, notes: Notes) -> bool:
+    """Note a list or object beyond all sizes; it is then not looked into, so that it costs no time."""
+    most = MOST_ENTRIES.get(place, MOST_INNER_ENTRIES)
+    if len(raw) > most:
+        notes.add(place or "plan", f"has {len(raw):,} entries; allowed are {most:,}")
+        notes.too_long = True
+        return True
+    return False
+
+
 def entries_of(raw: Any, place: str, notes: Notes) -> list[Any]:
     """The entries of a list."""
     if isinstance(raw, list | tuple):
-        return list(raw)
+        return [] if _is_too_long(raw, place, notes) else list(raw)
     notes.add(place, f"is {shown(raw)}; allowed is a list in square brackets")
     return []
 
@@ -159,6 +174,8 @@ def pairs_of(raw: Any, place: str, notes: Notes) -> Mapping[str, Any]:
     """The pairs of an object, repeated keys noted."""
     if not isinstance(raw, dict) or not all(isinstance(key, str) for key in raw):
         notes.add(place, f"is {shown(raw)}; allowed is an object in curly brackets")
+        return {}
+    if _is_too_long(raw, place, notes):
         return {}
     for key in getattr(raw, "repeated", ()):
         notes.add(step(place, key), "stands more than once in the same object; allowed is once")

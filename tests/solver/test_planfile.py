@@ -232,6 +232,20 @@ class TestProblems:
         assert len(refused.value.problems) == 501
         assert "more problems that are not listed" in str(refused.value.problems[-1])
 
+    @pytest.mark.parametrize(
+        ("text", "place"),
+        [
+            ('{"categories": [' + "{}," * 1000 + "{}]}", "categories"),
+            ('{"rules": [' + "{}," * 5000 + "{}]}", "rules"),
+            ('{"own": {"A": [' + "1," * 1000 + "1]}}", "own.A"),
+            ("{" + ",".join(f'"k{i}": 1' for i in range(1001)) + "}", "plan"),
+        ],
+    )
+    def test_of_lists_beyond_all_sizes_do_not_look_inside(self, text: str, place: str) -> None:
+        says = problems_of(text)
+        assert list(says) == [place]
+        assert "entries; allowed are" in says[place]
+
 
 class TestRefusals:
     @pytest.mark.parametrize(
