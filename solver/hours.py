@@ -277,9 +277,9 @@ def _hours_note(year: WorkingYear, period: str, hours: Decimal, absence: Decimal
     lost = f" less {away}" if away else ""
     contract = f"{_shown(year.hours_a_week)} h a week x {_shown(year.weeks_a_year)} weeks"
     return (
-        f"Hours: {contract} = {_shown(year.gross)} h paid a year{lost} = {_shown(year.available)} h attended a "
-        f"year; per {period} {_shown(hours)} h paid, {_shown(absence * 100)} % absence, {_shown(attended)} h "
-        "attended."
+        f"Hours: {contract} = {_shown(year.gross)} h paid a year{lost} = {_shown(year.available)} h attended "
+        f"a year; per {period} {_shown(hours)} h paid, {_shown(absence * 100)} % absence, {_shown(attended)} "
+        "h attended."
     )
 
 
