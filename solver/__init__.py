@@ -1,0 +1,1 @@
+"""Whole crews for a workload: the plan, the mathematics, the proof. Knows no Qt."""

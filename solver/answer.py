@@ -99,8 +99,8 @@ class CrewReport:
 
     `cost` is None unless workable; `paper_cost` is pay, joining, leaving and opening costs of the head
     counts alone; `joiners` and `leavers` are people over all phases, `people` those of the fullest phase;
-    `overtime` hours and `bought_in` units per phase are filled for workable crews. `proved` False: a best corner or patched crew that a
-    time limit kept from being proved the cheapest of its kind.
+    `overtime` hours and `bought_in` units per phase are filled for workable crews. `proved` False: a best
+    corner or patched crew that a time limit kept from being proved the cheapest of its kind.
     """
 
     policy: Policy

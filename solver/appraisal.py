@@ -14,7 +14,7 @@ from solver.answer import Break, CrewReport, LineKind, LineMargin, Policy
 from solver.breaks import budget_break, hours_break, rule_break
 from solver.engine import LpStatus, Relaxation
 from solver.matrix import Floats, Matrix
-from solver.program import HeadLine, Line, Program
+from solver.program import Line, Program
 from solver.shortfall import SHORT, Aim, Prices, Shortfall
 
 _UNUSED = dict[str, tuple[float, ...]]()
@@ -306,6 +306,3 @@ class _BudgetedRoom:
 def _clean(value: float) -> float:
     """Without the last digits that only floating point put there."""
     return 0.0 if abs(value) < SHORT else value
-
-
-__all__ = ["Appraiser", "HeadLine", "PhaseRun"]

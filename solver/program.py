@@ -90,10 +90,19 @@ class HeadLine:
 class Program:
     """The matrix program of a plan. Head count of category j in phase t is column `head(j, t)`, in lots."""
 
-    def __init__(self, plan: Plan, caps: Sequence[int] | None = None, *, all_moves: bool = False) -> None:
+    def __init__(
+        self,
+        plan: Plan,
+        caps: Sequence[int] | None = None,
+        *,
+        all_moves: bool = False,
+        open_ended: bool = False,
+    ) -> None:
         """Build; `caps` are tighter upper limits in lots per head count, valid for the question asked.
 
         `all_moves` adds joiners and leavers of every category, for questions that count them.
+        `open_ended` leaves head counts that nobody limited free of their switches: in the relaxation a
+        switch of a count without limit costs nothing, whatever number stands for "without limit".
         """
         self.plan = plan
         self.categories = plan.categories
@@ -108,6 +117,7 @@ class Program:
         self.attended = [Fraction(c.hours) * (1 - Fraction(c.absence)) for c in plan.categories]
         self._caps = caps
         self._all_moves = all_moves
+        self._open_ended = open_ended
         self._add_heads()
         self._add_moves()
         self._add_presence_switches()
@@ -231,6 +241,8 @@ class Program:
                 self._least_if_any(j, category, least)
 
     def _switched(self, head: int, switch: int) -> None:
+        if self._open_ended and self.matrix.upper[head] >= UNLIMITED_LOTS:
+            return
         coefs = [1.0, -self.matrix.upper[head]]
         self.matrix.add_row([head, switch], coefs, RowSense.AT_MOST, 0.0)
 

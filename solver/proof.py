@@ -2,25 +2,21 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass
-from functools import partial
 from math import ceil, floor, inf
 from time import monotonic
 
 import numpy as np
 
-from solver import heads
 from solver.answer import Proof, State
 from solver.engine import EngineName, WholeResult, WholeStatus, whole
-from solver.program import UNLIMITED_LOTS, Program
+from solver.program import Program
 from solver.rounding import snapped
-from solver.search import Found, Limits, Lots, Search, tie_width, whole_grain
-from solver.tiebreak import preferred
+from solver.search import Found, Lots, Search, tie_width
+from solver.tiebreak import cheapest_preferred, preferred
 
 OWN_SECONDS = 2.0
-# looking at every equally cheap crew settles the choice at once when they are few
-TIES = Limits(nodes=4_000, seconds=1.0)
 CENT = 0.01
 
 
@@ -47,11 +43,10 @@ class Prover:
         start = self._rounded_up(fractional)
         caps = self._caps(start)
         program, search = self._tightened(caps)
-        own = self._own_search(program, search, start, caps, until)
-        if own is not None and own.state is not State.BEST_FOUND:
+        own = self._own_search(program, search, start, until)
+        if own.state is not State.BEST_FOUND:
             return own
-        best = own.best if own else start
-        return self._two_engines(program, search, best, caps, until)
+        return self._two_engines(program, search, own, until)
 
     def _rounded_up(self, fractional: Sequence[float]) -> Found | None:
         lots = tuple(ceil(snapped(v)) for v in fractional)
@@ -80,19 +75,8 @@ class Prover:
 
     # ---- own search --------------------------------------------------------------------------
 
-    def _own_search(
-        self, program: Program, search: Search, start: Found | None, caps: list[int], until: float
-    ) -> Proved | None:
-        left = until - monotonic()
-        key = partial(heads.preference, program)
-        limits = Limits(TIES.nodes, min(TIES.seconds, left))
-        outcome = search.cheapest(limits, key=key, start=start)
-        if not outcome.complete:
-            limits = Limits(100_000, min(OWN_SECONDS, until - monotonic()))
-            outcome = search.cheapest(limits, start=outcome.best)
-            if outcome.complete and outcome.best is not None:
-                best = preferred(program, outcome.best, caps, max(until - monotonic(), 1.0))
-                return Proved(State.PROVED, Proof.OWN_SEARCH, best, outcome.best.objective)
+    def _own_search(self, program: Program, search: Search, start: Found | None, until: float) -> Proved:
+        outcome = cheapest_preferred(search, min(OWN_SECONDS, until - monotonic()), start=start)
         if not outcome.complete:
             return Proved(State.BEST_FOUND, None, outcome.best, outcome.bound)
         if outcome.best is None:
@@ -108,9 +92,8 @@ class Prover:
 
     # ---- two engines -------------------------------------------------------------------------
 
-    def _two_engines(
-        self, program: Program, search: Search, best: Found | None, caps: list[int], until: float
-    ) -> Proved:
+    def _two_engines(self, program: Program, search: Search, own: Proved, until: float) -> Proved:
+        best = own.best
         first = self._ask(program, EngineName.HIGHS, None, until)
         best = _cheaper(best, self._checked(first))
         start = None if best is None else self._start(search, best)
@@ -119,9 +102,9 @@ class Prover:
         infeasible = {first.status, second.status} == {WholeStatus.INFEASIBLE}
         if best is None and infeasible:
             return Proved(State.IMPOSSIBLE, Proof.TWO_ENGINES, None, inf)
-        bound = max(first.bound, second.bound)
+        bound = max(first.bound, second.bound, own.bound)
         if best is not None and _agree(best, first, second):
-            best = preferred(program, best, caps, min(2.0, max(until - monotonic(), 0.5)))
+            best = preferred(program, best, min(2.0, max(until - monotonic(), 0.5)))
             return Proved(State.PROVED, Proof.TWO_ENGINES, best, best.objective)
         return Proved(State.BEST_FOUND, None, best, min(bound, best.objective) if best else bound)
 
@@ -157,7 +140,3 @@ def _agree(best: Found, first: WholeResult, second: WholeResult) -> bool:
         abs(r.objective - best.objective) < CENT / 2 + 1e-9 * abs(best.objective) for r in (first, second)
     )
     return proved and near
-
-
-Heard = Callable[[str, object], None]
-__all__ = ["UNLIMITED_LOTS", "Heard", "Proved", "Prover", "whole_grain"]

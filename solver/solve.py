@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
-from functools import cached_property, partial
+from functools import cached_property
 from time import monotonic
 from typing import Any
 
@@ -22,15 +22,15 @@ from solver.answer import (
 )
 from solver.appraisal import Appraiser
 from solver.engine import EngineName, LpStatus, WholeStatus, whole
-from solver.matrix import Floats
 from solver.plan import Plan
 from solver.program import Line, Program
 from solver.proof import Proved, Prover
 from solver.rounding import largest_remainder, rounded, snapped
-from solver.search import Found, Limits, Search, whole_grain
+from solver.search import Found, Search, whole_grain
+from solver.tiebreak import cheapest_preferred
 
 Heard = Callable[[str, Any], None]
-BOXED = Limits(nodes=20_000, seconds=2.0)
+BOXED_SECONDS = 2.0
 ROUNDINGS = (Policy.DOWN, Policy.NEAREST, Policy.UP, Policy.LARGEST_REMAINDER)
 
 
@@ -68,9 +68,12 @@ class Case:
     @cached_property
     def relaxed(self) -> Relaxed | None:
         """The fractional crew, None if not even fractional people can do it."""
-        if self.search.relax() is not LpStatus.OPTIMAL:
+        search = self.search
+        if self.program.switches:
+            search = Search(Program(self.plan, open_ended=True))
+        if search.relax() is not LpStatus.OPTIMAL:
             return None
-        relaxation = self.search.relaxation
+        relaxation = search.relaxation
         lots = relaxation.x[: self.program.head_count]
         return Relaxed(relaxation.objective, tuple(snapped(v) for v in lots.tolist()))
 
@@ -106,8 +109,7 @@ class Case:
         high[:count] = np.minimum(high[:count], upper)
         if (low > high).any():
             return None, True
-        key = partial(heads.preference, self.program)
-        outcome = self.search.cheapest(BOXED, key=key, box=(low, high))
+        outcome = cheapest_preferred(self.search, BOXED_SECONDS, box=(low, high))
         return outcome.best, outcome.complete
 
     def best_corner(self) -> CrewReport:
@@ -238,6 +240,3 @@ def solve(plan: Plan, *, seconds: float | None = None, heard: Heard | None = Non
         heard("fractional", case.fractional())
     crews = case.crews()
     return case.answer(crews, monotonic() - began)
-
-
-__all__ = ["Case", "Floats", "Relaxed", "solve"]
