@@ -1,0 +1,1 @@
+"""Changes of a plan as functions from plan to plan; no Qt, nothing but the change itself."""
