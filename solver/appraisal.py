@@ -13,6 +13,7 @@ from solver import heads
 from solver.answer import Break, CrewReport, LineKind, LineMargin, Policy
 from solver.breaks import budget_break, hours_break, rule_break
 from solver.engine import LpStatus, Relaxation
+from solver.ledger import Counts
 from solver.matrix import Floats, Matrix
 from solver.program import Line, Program
 from solver.shortfall import SHORT, Aim, Prices, Shortfall
@@ -52,19 +53,17 @@ class Appraiser:
         """The report of a policy that yields no crew."""
         return CrewReport(policy, None, False, None, None, 0.0, 0.0, 0.0, (), (), _UNUSED, _UNUSED, why)
 
-    def appraise(
-        self, policy: Policy, lots: heads.Counts, fractional: Sequence[float] | None = None
-    ) -> CrewReport:
+    def appraise(self, policy: Policy, lots: Counts, fractional: Sequence[float] | None = None) -> CrewReport:
         """Everything about the crew `lots`. `fractional` (lots) is what moves are measured from."""
         program = self.program
         runs = [self._run(t, lots) for t in range(len(program.phases))]
         short = any(run.short for run in runs)
-        paper = heads.paper_cost(program, lots)
+        paper = program.ledger.paper_cost(lots)
         cost = float(paper) + (0.0 if short else sum(run.running for run in runs))
         margins = self._margins(lots, runs, paper, cost, short)
         breaks = self._breaks(lots, fractional, runs, margins, cost)
         workable = not short and all(margin.margin >= 0 for margin in margins)
-        joiners, leavers = heads.moves(program, lots)
+        joiners, leavers = program.ledger.moves(lots)
         report = CrewReport(
             policy,
             heads.crew_of(program, lots),
@@ -73,7 +72,7 @@ class Appraiser:
             float(paper),
             float(joiners),
             float(leavers),
-            float(heads.most_people(program, lots)),
+            float(program.ledger.most_people(lots)),
             tuple(margins),
             tuple(breaks),
             _UNUSED,
@@ -84,7 +83,7 @@ class Appraiser:
             return report
         return replace(report, overtime=self._overtime(runs), bought_in=self._bought_in(runs))
 
-    def workable(self, lots: heads.Counts) -> bool:
+    def workable(self, lots: Counts) -> bool:
         """Whether no line is missed; cheaper than a whole appraisal."""
         program = self.program
         if any(line.margin(lots) < 0 for line in program.head_lines):
@@ -92,12 +91,12 @@ class Appraiser:
         runs = [self._run(t, lots, extras=False) for t in range(len(program.phases))]
         if any(run.short for run in runs):
             return False
-        cost = heads.paper_cost(program, lots)
+        cost = program.ledger.paper_cost(lots)
         return not self._over_budget(cost, float(cost) + sum(run.running for run in runs))
 
     # ---- one phase ---------------------------------------------------------------------------
 
-    def _run(self, t: int, lots: heads.Counts, extras: bool = True) -> PhaseRun:
+    def _run(self, t: int, lots: Counts, extras: bool = True) -> PhaseRun:
         phase = self._phase(t)
         phase.set_heads(self._people(lots, t), self._people(lots, t - 1))
         works, groups = len(phase.work_short), len(phase.group_short)
@@ -149,7 +148,7 @@ class Appraiser:
             self._phases[t] = Shortfall(self.program, t)
         return self._phases[t]
 
-    def _people(self, lots: heads.Counts, t: int) -> list[float]:
+    def _people(self, lots: Counts, t: int) -> list[float]:
         program = self.program
         if t < 0:
             return [float(c.on_books) for c in program.categories]
@@ -172,7 +171,7 @@ class Appraiser:
         }
 
     def _margins(
-        self, lots: heads.Counts, runs: Sequence[PhaseRun], paper: Fraction, cost: float, short: bool
+        self, lots: Counts, runs: Sequence[PhaseRun], paper: Fraction, cost: float, short: bool
     ) -> list[LineMargin]:
         program = self.program
         rooms: dict[Line, float] = {h.line: float(h.margin(lots)) for h in program.head_lines}
@@ -194,7 +193,7 @@ class Appraiser:
         return any(self._budget_margin(line, paper, cost) < 0 for line in self.program.budget_of)
 
     def _hours_margins(
-        self, lots: heads.Counts, runs: Sequence[PhaseRun], short: bool, rooms: Mapping[Line, float]
+        self, lots: Counts, runs: Sequence[PhaseRun], short: bool, rooms: Mapping[Line, float]
     ) -> list[tuple[Line, float]]:
         """Work and supervision lines: extra where nothing is short, minus the short where it is."""
         program = self.program
@@ -212,7 +211,7 @@ class Appraiser:
                 found.append((line, _clean(run.extra[row]) * line.scale))
         return found
 
-    def _room_in_budget(self, row: int, lots: heads.Counts) -> float:
+    def _room_in_budget(self, row: int, lots: Counts) -> float:
         if self._budgeted is None:
             self._budgeted = _BudgetedRoom(self.program)
         return _clean(self._budgeted.most_extra(row, lots))
@@ -221,7 +220,7 @@ class Appraiser:
 
     def _breaks(
         self,
-        lots: heads.Counts,
+        lots: Counts,
         fractional: Sequence[float] | None,
         runs: Sequence[PhaseRun],
         margins: Sequence[LineMargin],
@@ -239,7 +238,7 @@ class Appraiser:
                 found.append(budget_break(program, line, lots, base, runs, cost))
         return found
 
-    def _phase_breaks(self, t: int, run: PhaseRun, lots: heads.Counts, base: Sequence[float]) -> list[Break]:
+    def _phase_breaks(self, t: int, run: PhaseRun, lots: Counts, base: Sequence[float]) -> list[Break]:
         found = []
         if run.supervision_prices is not None:
             found.append(
@@ -286,7 +285,7 @@ class _BudgetedRoom:
         self._extra = extra
         self._relaxation = Relaxation(matrix)
 
-    def most_extra(self, row: int, lots: heads.Counts) -> float:
+    def most_extra(self, row: int, lots: Counts) -> float:
         """Hours of extra on `row` with the crew `lots`."""
         relaxation, column = self._relaxation, self._extra[row]
         for i, n in enumerate(lots):

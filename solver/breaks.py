@@ -15,6 +15,7 @@ import numpy as np
 
 from solver import heads
 from solver.answer import Break, LineKind
+from solver.ledger import Counts
 from solver.matrix import Floats, RowSense
 from solver.program import HeadLine, Line, Program
 from solver.shortfall import SHORT, Prices
@@ -30,7 +31,7 @@ class Running(Protocol):
         """Dual prices of the phase's cheapest way to run."""
 
 
-def rule_break(program: Program, head: HeadLine, lots: heads.Counts, base: Sequence[float]) -> Break:
+def rule_break(program: Program, head: HeadLine, lots: Counts, base: Sequence[float]) -> Break:
     """A rule or bound on head counts that `lots` misses, in people with the rule's own coefficients."""
     miss = head.margin(lots)
     total = sum((a * lots[i] for i, a in head.terms), start=Fraction(0))
@@ -60,7 +61,7 @@ def hours_break(
     kind: LineKind,
     shorts: Floats,
     prices: Prices,
-    lots: heads.Counts,
+    lots: Counts,
     base: Sequence[float],
     given_up: Mapping[str, float],
 ) -> Break:
@@ -92,7 +93,7 @@ def hours_break(
 
 
 def _moves(
-    program: Program, t: int, now: Floats, before: Floats, lots: heads.Counts, base: Sequence[float]
+    program: Program, t: int, now: Floats, before: Floats, lots: Counts, base: Sequence[float]
 ) -> tuple[dict[str, float], float]:
     """Per category, worth x (people - fractional people), and the worth of the fractional crew."""
     moves: dict[str, float] = {}
@@ -115,7 +116,7 @@ def _by_name(program: Program, values: Floats) -> dict[str, float]:
 def budget_break(
     program: Program,
     line: Line,
-    lots: heads.Counts,
+    lots: Counts,
     base: Sequence[float],
     runs: Sequence[Running],
     cost: float,
@@ -141,7 +142,7 @@ def budget_break(
     )  # fmt: skip
 
 
-def _worth(program: Program, lots: heads.Counts, runs: Sequence[Running]) -> Floats:
+def _worth(program: Program, lots: Counts, runs: Sequence[Running]) -> Floats:
     """d cost / d people per head count, where the crew is."""
     span = len(program.phases)
     worth = np.zeros(program.head_count)

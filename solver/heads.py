@@ -1,4 +1,4 @@
-"""Crews as whole lots: people, joiners, leavers, exact costs, and which of two equal ones is taken."""
+"""Crews between lots and people, and which of two equally cheap ones is taken."""
 
 from __future__ import annotations
 
@@ -7,10 +7,8 @@ from decimal import Decimal
 from fractions import Fraction
 
 from solver.answer import Crew
+from solver.ledger import Counts
 from solver.program import Program
-
-Counts = Sequence[Fraction | int]
-"""Lots per head count, in the order of the program's first columns; fractions only in an own crew."""
 
 
 def crew_of(program: Program, lots: Sequence[Fraction | int | float]) -> Crew:
@@ -43,51 +41,11 @@ def people(program: Program, lots: Counts) -> list[list[Fraction]]:
     ]
 
 
-def moves(program: Program, lots: Counts) -> tuple[Fraction, Fraction]:
-    """Joiners and leavers over all categories and phases, in people."""
-    joiners = leavers = Fraction(0)
-    for j, counts in enumerate(people(program, lots)):
-        before = Fraction(program.categories[j].on_books)
-        for now in counts:
-            if now > before:
-                joiners += now - before
-            else:
-                leavers += before - now
-            before = now
-    return joiners, leavers
-
-
-def total_people(program: Program, lots: Counts) -> Fraction:
-    """Head counts summed over categories and phases."""
-    return sum((n * program.lots[i // len(program.phases)] for i, n in enumerate(lots)), start=Fraction(0))
-
-
-def most_people(program: Program, lots: Counts) -> Fraction:
-    """The largest number of people there in any one phase."""
-    return max((sum(column, start=Fraction(0)) for column in zip(*people(program, lots), strict=True)),
-               default=Fraction(0))  # fmt: skip
-
-
-def paper_cost(program: Program, lots: Counts) -> Fraction:
-    """Pay, joining, leaving and opening costs of the head counts, exact."""
-    total = Fraction(0)
-    for j, counts in enumerate(people(program, lots)):
-        category = program.categories[j]
-        before = Fraction(category.on_books)
-        for t, now in enumerate(counts):
-            total += program.periods(t) * Fraction(category.pay) * now
-            rate = category.join_cost if now > before else category.leave_cost
-            total += abs(now - before) * Fraction(rate)
-            before = now
-        if any(counts):
-            total += Fraction(category.open_cost)
-    return total
-
-
 def preference(program: Program, lots: Sequence[int]) -> tuple[Fraction | int, ...]:
     """Of equally cheap crews the one with the least of these is taken: fewest joiners plus leavers, then
     fewest people, then the most of the first category, of the second and so on, then of the early phases."""
     span = len(program.phases)
-    joiners, leavers = moves(program, lots)
+    ledger = program.ledger
+    joiners, leavers = ledger.moves(lots)
     totals = [-sum(lots[j * span : (j + 1) * span]) for j in range(len(program.categories))]
-    return (joiners + leavers, total_people(program, lots), *totals, *(-n for n in lots))
+    return (joiners + leavers, ledger.people(lots), *totals, *(-n for n in lots))

@@ -28,6 +28,7 @@ from math import ceil, floor, lcm
 from typing import NamedTuple
 
 from solver.answer import LineKind
+from solver.ledger import Ledger
 from solver.matrix import Matrix, RowSense
 from solver.plan import Budget, Category, Plan, Presence, Ratio, Rule, Sense, Share
 
@@ -401,6 +402,11 @@ class Program:
         self.budget_of[line] = Fraction(rule.at_most)
 
     # ---- what later questions ask ------------------------------------------------------------
+
+    @cached_property
+    def ledger(self) -> Ledger:
+        """Exact money and moves of crews."""
+        return Ledger(self.plan)
 
     @cached_property
     def costs_hours(self) -> bool:

@@ -22,6 +22,7 @@ from solver.answer import (
 )
 from solver.appraisal import Appraiser
 from solver.engine import EngineName, LpStatus, WholeStatus, whole
+from solver.ledger import Counts
 from solver.plan import Plan
 from solver.program import Line, Program
 from solver.proof import Proved, Prover
@@ -154,7 +155,7 @@ class Case:
                 return line
         return None
 
-    def _report(self, policy: Policy, lots: heads.Counts) -> CrewReport:
+    def _report(self, policy: Policy, lots: Counts) -> CrewReport:
         assert self.relaxed is not None
         return self.appraiser.appraise(policy, lots, self.relaxed.lots)
 
