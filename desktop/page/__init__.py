@@ -1,5 +1,6 @@
 """The printed recommendation: one page, the same on paper, in a PDF file and in the preview."""
 
+from desktop.page.asking import NoAnswer
 from desktop.page.compose import Details, recommend
 from desktop.page.layout import PageTooFull, Sheet, lay_out
 from desktop.page.paper import PaperSize, paper
@@ -9,6 +10,7 @@ from desktop.page.stamp import stamp
 
 __all__ = [
     "Details",
+    "NoAnswer",
     "PageTooFull",
     "PaperSize",
     "Recommendation",

@@ -55,12 +55,11 @@ def _exchange(
     """Answers by question; a sentence where the solver refused, nothing where it failed."""
     document = plan_to_document(plan)
     requests = [
-        simplejson.dumps(
-            {"id": at, "ask": name, "plan": document, "options": dict(options)}, use_decimal=True
-        )
+        {"id": at, "ask": name, "plan": document, "options": dict(options)}
         for at, (name, options) in enumerate(asked.items())
     ]
-    written = _run(command, "\n".join(requests) + "\n", limit)
+    lines = "".join(simplejson.dumps(request, use_decimal=True) + "\n" for request in requests)
+    written = _run(command, lines, limit)
     names = list(asked)
     found: dict[str, Any] = {}
     for reply in _replies(written):

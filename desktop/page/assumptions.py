@@ -45,9 +45,7 @@ def _category_says(speech: Speech, category: Category) -> str:
 def _outputs(speech: Speech, category: Category) -> list[str]:
     units = {work.name: work.unit for work in speech.plan.works}
     return [
-        f"{speech.number(rate)}\u00a0{name(units.get(work, ''), 16)} an hour on {name(work, 32)}".replace(
-            "\u00a0 ", " "
-        )
+        f"{speech.quantity_as_typed(rate, units.get(work, ''))} an hour on {name(work, 32)}"
         for work, rate in category.output.items()
         if rate
     ]

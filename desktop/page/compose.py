@@ -103,7 +103,7 @@ def _no_consequence(answer: Answer) -> str:
     count = len(answer.conflict.lines)
     if count == 1:
         return "One line cannot be kept by itself. It has to give:"
-    return f"These {count} lines cannot all hold together; without any one of them the others can. One has to give:"
+    return f"These {count} lines cannot all hold together; without any one of them they can. One has to give:"
 
 
 def _tally(plan: Plan, answer: Answer, chosen: Chosen | None) -> Tally | None:
@@ -141,7 +141,7 @@ def _costs(speech: Speech, answer: Answer, chosen: Chosen | None, *, own: bool) 
 
 
 _PROOFS = {
-    Proof.OWN_SEARCH: "by an own branch and bound with safe bounds",
+    Proof.OWN_SEARCH: "by branch and bound with safe bounds",
     Proof.TWO_ENGINES: "by two engines (CBC and HiGHS) that agree to the cent",
 }
 
@@ -149,13 +149,11 @@ _PROOFS = {
 def _method(answer: Answer, *, own: bool) -> str:
     if answer.exact is None:
         return ""
-    floor = "The floor is the optimum of the linear relaxation; the exact crew is the integer optimum"
-    if answer.proof is None:
-        floor = (
-            "The floor is the optimum of the linear relaxation; the crew is the best integer solution found"
-        )
-    proof = f", proved {_PROOFS[answer.proof]}" if answer.proof is not None else ", not proved"
-    return f"{floor}{proof}; every line was checked again in exact arithmetic."
+    crew = "the crew is the best integer solution found, not proved"
+    if answer.proof is not None:
+        crew = f"the exact crew is the integer optimum, proved {_PROOFS[answer.proof]}"
+    floor = "The floor is the optimum of the linear relaxation"
+    return f"{floor}; {crew}; every line was checked again in exact arithmetic."
 
 
 def _proof(answer: Answer) -> str:

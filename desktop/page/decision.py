@@ -115,7 +115,7 @@ def consequence(speech: Speech, answer: Answer, chosen: Chosen, *, own: bool) ->
     if own:
         return f"{costs} {own_extra(speech, answer, chosen)}"
     if answer.state is State.PROVED:
-        return f"{costs} Proved: no whole crew that keeps every line costs less."
+        return f"{costs} Proved: no workable crew costs less."
     return (
         costs
         if answer.bound is None

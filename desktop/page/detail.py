@@ -22,6 +22,7 @@ class Detail:
     air: float = 1.0
     wording: int = 0
     assumptions: int = ALL
+    listed: bool = True
     tally: int = ALL
     alternatives: int = 2
     rounding: int = ALL
@@ -34,6 +35,7 @@ class Detail:
 
 _DROPS: tuple[dict[str, float | int | bool], ...] = (
     {"air": 0.8},
+    {"listed": False},
     {"headline": 15.0, "body": 8.5},
     {"air": 0.65},
     {"assumptions": 12},

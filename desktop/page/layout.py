@@ -11,14 +11,13 @@ from dataclasses import dataclass
 
 from desktop.page import sections
 from desktop.page.detail import STAGES, Detail
-from desktop.page.marks import NOTHING, Mark, Piece, beside, stacked
+from desktop.page.marks import NOTHING, Mark, Piece, evenly, stacked
 from desktop.page.paper import Paper
 from desktop.page.recommendation import Recommendation
 from desktop.page.tally_print import tally_piece
 
 _GAP = 13.0
 _WIDEST_GAP = 21.0
-_GUTTER = 24.0
 
 
 class PageTooFull(Exception):
@@ -66,7 +65,7 @@ def _foot(what: Recommendation, width: float) -> Piece:
 
 def _two_columns(what: Recommendation, width: float, detail: Detail) -> Piece:
     """The short blocks in order, broken where both columns come out most alike."""
-    column = (width - _GUTTER) / 2
+    column = (width - sections.COLUMN_GAP) / 2
     gap = max(6.0, 10.0 * detail.air)
     makers = (
         sections.rounding,
@@ -76,11 +75,7 @@ def _two_columns(what: Recommendation, width: float, detail: Detail) -> Piece:
         sections.alternatives,
     )
     blocks = [b for b in (make(what, column, detail) for make in makers) if b.height]
-    if not blocks:
-        return NOTHING
-    splits = [(blocks[:at], blocks[at:]) for at in range(1, len(blocks) + 1)]
-    tried = [beside(stacked(a, gap), stacked(b, gap), column + _GUTTER) for a, b in splits]
-    return min(tried, key=lambda piece: piece.height)
+    return evenly(blocks, gap, column + sections.COLUMN_GAP)
 
 
 def _room(what: Recommendation, paper: Paper, detail: Detail) -> float:

@@ -22,7 +22,9 @@ def binding_lines(speech: Speech, chosen: Chosen, room: Room | None) -> tuple[st
         return tuple(_tight_says(speech, m) for m in tight[:_MOST]) + _more(len(tight) - _MOST)
     works = [(m, share) for m in kept if (share := _share(speech.plan, m)) is not None]
     closest = sorted(works, key=lambda pair: pair[1])[:2]
-    return tuple(_room_says(speech, m) for m, _ in closest)
+    if not closest:
+        return ()
+    return ("No line is without room. The closest:", *(_room_says(speech, m) for m, _ in closest))
 
 
 def _more(count: int) -> tuple[str, ...]:
@@ -54,7 +56,7 @@ def _share(plan: Plan, margin: LineMargin) -> float | None:
 
 
 def best_loosening(room: Room | None) -> str:
-    """The one loosening that saves most, in the solver's sentence; empty where none helps or none is known."""
+    """The one loosening that saves most, in the solver's sentence; empty where none is known to help."""
     if room is None:
         return ""
     helping = [line for line in room.lines if line.loosen is not None and (line.saving or 0) > 0]

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, replace
 
 from desktop.page.text import Text, height
@@ -98,6 +98,13 @@ def stacked(pieces: Iterable[Piece], gap: float = 0.0) -> Piece:
         marks += piece.at(0.0, y)
         y += piece.height
     return Piece(y, tuple(marks))
+
+
+def evenly(pieces: Sequence[Piece], gap: float, offset: float) -> Piece:
+    """Pieces in order in two columns, broken where both come out most alike."""
+    splits = [(pieces[:at], pieces[at:]) for at in range(1, len(pieces) + 1)]
+    tried = [beside(stacked(left, gap), stacked(right, gap), offset) for left, right in splits]
+    return min(tried, key=lambda piece: piece.height, default=NOTHING)
 
 
 def beside(left: Piece, right: Piece, offset: float) -> Piece:

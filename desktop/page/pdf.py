@@ -9,7 +9,8 @@ from pathlib import Path
 from PySide6.QtCore import QBuffer, QIODevice, QMarginsF
 from PySide6.QtGui import QGuiApplication, QPagedPaintDevice, QPainter, QPdfWriter
 
-from desktop.page.compose import Details, recommend
+from desktop.page.asking import ask_solver
+from desktop.page.compose import recommend
 from desktop.page.layout import Sheet, lay_out
 from desktop.page.paint import paint_sheet
 from desktop.page.paper import paper
@@ -17,7 +18,6 @@ from desktop.page.recommendation import Recommendation
 from desktop.page.stamp import stamp
 from desktop.theme import print_theme
 from solver.planfile import read_plan, write_whole
-from solver.solve import solve
 
 DPI = 96  # the screen's: pictures keep their proportions on every device
 SECONDS = 60.0  # what the exact solve may take; the page then says "not proved"
@@ -67,17 +67,18 @@ def write_page(
     *,
     size: str = "A4",
     grey: bool = False,
-    seconds: float | None = SECONDS,
+    seconds: float = SECONDS,
 ) -> None:
     """Solve the plan in `plan_path` and write its page to `out`; needs no window and no display.
 
-    Raises UnreadableFile or PlanProblems for the plan, CannotSave for `out`, ValueError for `size`.
+    Raises UnreadableFile or PlanProblems for the plan, CannotSave for `out`, ValueError for `size`,
+    NoAnswer where the solver failed. Every message is a sentence for people.
     """
     paper(size)
     plan = read_plan(plan_path)
-    answer = solve(plan, seconds=seconds)
+    answer, details = ask_solver(plan, seconds)
     app = QGuiApplication.instance() or QGuiApplication(_arguments())
-    what = recommend(plan, answer, stamp(plan, Path(plan_path)), details=Details())
+    what = recommend(plan, answer, stamp(plan, Path(plan_path)), details=details)
     save_page(what, out, size=size, grey=grey)
     del app
 

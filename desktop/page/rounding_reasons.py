@@ -61,7 +61,7 @@ def _dearer(speech: Speech, answer: Answer, report: CrewReport, cost: float) -> 
         return f"Keeps every line at {speech.money(cost)}."
     known = "the exact crew" if answer.state is State.PROVED else "the best crew found"
     if report.crew == answer.exact.crew:
-        return f"Gives {known} as well, this time."
+        return f"Leads to {known} here."
     extra = cost - answer.exact.cost
     if abs(extra) < 0.005:
         return f"Keeps every line at the same cost as {known}, with other people."

@@ -6,11 +6,23 @@ from desktop import figures
 from desktop.messages import CAUTION
 from desktop.page.crew_grid import crew_grid, phase_key
 from desktop.page.detail import SMALLEST, Detail
-from desktop.page.marks import NOTHING, FillMark, Mark, Piece, RuleMark, TextMark, paragraph, stacked
+from desktop.page.marks import (
+    NOTHING,
+    FillMark,
+    Mark,
+    Piece,
+    RuleMark,
+    TextMark,
+    evenly,
+    paragraph,
+    stacked,
+)
 from desktop.page.recommendation import Amount, Labelled, Recommendation
 from desktop.page.speech import count_of
 from desktop.page.table import table
 from desktop.page.text import LEADING, Run, Side, Text, balanced_width, height, natural_width, shortened, text
+
+COLUMN_GAP = 24.0
 
 
 def heading(words: str, width: float, detail: Detail) -> Piece:
@@ -176,21 +188,28 @@ def alternatives(what: Recommendation, width: float, detail: Detail) -> Piece:
     return block("Almost as good", stacked(pieces, 2.5), width, detail)
 
 
+_GRANTED = Run("Taken for granted", True, "ink")
+_ALL_IN_FILE = "Amounts, hours, absence, outputs and rules as in the plan file"
+
+
 def assumptions(what: Recommendation, width: float, detail: Detail) -> Piece:
-    """Amounts, hours, absence and outputs, in small print."""
+    """Amounts, hours, absence and outputs, in small print: entry by entry, or run together."""
     shown = what.assumptions[: detail.assumptions]
     more = len(what.assumptions) - len(shown)
-    runs: list[Run] = [Run("Taken for granted.  ", True, "ink")]
+    if detail.listed and not more:
+        column = (width - COLUMN_GAP) / 2
+        entries = [_small((Run(f"{e.label}: ", False, "ink"), Run(e.says)), column) for e in shown]
+        return stacked([_small((_GRANTED,), width), evenly(entries, 1.5, column + COLUMN_GAP)], 1.0)
+    runs: list[Run] = [_GRANTED, Run("  ")]
     for at, line in enumerate(shown):
         runs += [Run("  ·  " if at else ""), Run(f"{line.label}: ", False, "ink"), Run(line.says)]
     if more:
-        rest = (
-            f"{more} more in the plan file"
-            if shown
-            else "Amounts, hours, absence and outputs as in the plan file"
-        )
-        runs.append(Run(f"  ·  {rest}" if shown else rest))
-    return paragraph(Text((*runs, Run(".")), SMALLEST, "faint"), width)
+        runs.append(Run(f"  ·  {more} more in the plan file" if shown else _ALL_IN_FILE))
+    return _small((*runs, Run(".")), width)
+
+
+def _small(runs: tuple[Run, ...], width: float) -> Piece:
+    return paragraph(Text(runs, SMALLEST, "faint"), width)
 
 
 def caution(width: float) -> Piece:

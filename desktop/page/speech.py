@@ -61,6 +61,10 @@ class Speech:
         unit = "person" if unit == "people" and shown == "1" else unit
         return f"{shown}{figures.NBSP}{name(unit, 24)}" if unit else shown
 
+    def quantity_as_typed(self, x: Number, unit: str) -> str:
+        """An amount with all its digits, in its unit."""
+        return f"{self.number(x)}{figures.NBSP}{name(unit, 16)}" if unit else self.number(x)
+
     def percent(self, x: Number) -> str:
         """A percentage already in per cent."""
         return figures.percent(x, self.locale)

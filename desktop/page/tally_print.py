@@ -22,7 +22,7 @@ from desktop.pictures.tally_layout import Tally, TallyMetrics, TallyRow, tally_l
 
 _SCALE = 0.6  # figures of 18 units become 10.8 pt high
 _GUTTER = 22.0
-_ONE_COLUMN = 4  # more rows than this stand in two columns
+_ONE_COLUMN = 4  # more rows stand in two columns; fewer only where every figure is one person
 _KEY = 8.0
 
 
@@ -32,9 +32,8 @@ def tally_piece(what: Recommendation, width: float, rows: int) -> Piece:
         return NOTHING
     tally = replace(what.tally, rows=what.tally.rows[:rows])
     one_phase = len(tally.phases) == 1
-    picture = (
-        _figures_piece(tally, width, what.locale) if one_phase else steps_piece(tally, width, what.locale)
-    )
+    draw = _figures_piece if one_phase else steps_piece
+    picture = draw(tally, width, what.locale)
     more = len(what.tally.rows) - len(tally.rows)
     if not more:
         return picture
@@ -43,10 +42,11 @@ def tally_piece(what: Recommendation, width: float, rows: int) -> Piece:
 
 
 def _figures_piece(tally: Tally, width: float, locale: QLocale) -> Piece:
-    columns = 1 if len(tally.rows) <= _ONE_COLUMN else 2
+    half = _Rows(tally.rows, (width - _GUTTER) / 2, locale)
+    columns = 2 if len(tally.rows) > _ONE_COLUMN or (len(tally.rows) > 1 and not half.values) else 1
     each = (width - (columns - 1) * _GUTTER) / columns
     share = -(-len(tally.rows) // columns)
-    rows = _Rows(tally.rows, each, locale)
+    rows = half if columns == 2 else _Rows(tally.rows, width, locale)
     parts = [rows.piece(tally.rows[at : at + share]) for at in range(0, len(tally.rows), share)]
     body = beside(parts[0], parts[1], each + _GUTTER) if len(parts) > 1 else parts[0]
     entries = _entries(tally) + [(Meaning.STAYS, _standing_for(v, locale), v) for v in rows.values]
@@ -69,12 +69,12 @@ class _Rows:
 
     def piece(self, rows: Sequence[TallyRow]) -> Piece:
         """These rows below each other."""
-        return stacked([self._row(row) for row in rows], 5.0)
+        return stacked([self._row(row) for row in rows], 7.0)
 
     @staticmethod
     def _fitting(rows: Sequence[TallyRow], room: float) -> TallyMetrics:
         """Lines are higher where figures that stand for several people are."""
-        low = TallyMetrics(room, line=21, row_gap=0)
+        low = TallyMetrics(room, line=20, row_gap=0)
         return low if tally_layout(rows, low).scale == 1 else TallyMetrics(room, line=28, row_gap=0)
 
     def _place(self, rows: Sequence[TallyRow]) -> dict[str, tuple[Figure, ...]]:
