@@ -19,7 +19,7 @@ import numpy as np
 
 from solver.engine import LpStatus, Relaxation
 from solver.matrix import DualBound, Floats, Ints, Matrix
-from solver.program import Program
+from solver.program import HeadLine, Program
 
 INTEGRAL = 1e-6
 # crews whose costs differ by less than a tenth of a cent are equally cheap
@@ -78,8 +78,11 @@ class Search:
         *,
         grain: float = 0.0,
         fractional: Iterable[int] = (),
+        head_lines: Sequence[HeadLine] | None = None,
     ) -> None:
+        """`head_lines` stand in for the program's where a question lets some of them give way."""
         self.program = program
+        self._head_lines = program.head_lines if head_lines is None else head_lines
         self.matrix = program.matrix if matrix is None else matrix
         self.relaxation = Relaxation(self.matrix)
         self.grain = grain
@@ -108,7 +111,7 @@ class Search:
 
     def evaluate(self, lots: Sequence[int]) -> float | None:
         """The objective of a whole crew, None if it is not workable."""
-        if any(line.margin(lots) < 0 for line in self.program.head_lines):
+        if any(line.margin(lots) < 0 for line in self._head_lines):
             return None
         fixed = np.array([lots[c] for c in self._heads] + self._switch_values(lots), dtype=np.float64)
         if (fixed < self._lower[self._columns]).any() or (fixed > self._upper[self._columns]).any():
