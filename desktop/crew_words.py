@@ -7,6 +7,8 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
+from solver.answer import Policy
+
 COPY_IMAGE = "Copy image"
 COPY_DATA = "Copy data"
 SHOW_TABLE = "Show as table"
@@ -155,3 +157,137 @@ def given_up_title(line: str) -> str:
 def end_title(lines: str) -> str:
     """Before the last bar."""
     return f"Margin of {lines}"
+
+
+# the table of all crews
+
+PEOPLE = "People"
+JOINERS = "Joiners"
+LEAVERS = "Leavers"
+COST = "Cost"
+MORE = "More than exact"
+OVERTIME = "Overtime (hours)"
+BOUGHT_IN = "Bought in"
+VERDICT = "Verdict"
+WORKABLE = "workable"
+A_BOUND = "a bound, not a plan"
+TIP_PEOPLE = "Head count; over several phases, of the fullest one"
+TIP_JOINERS = "People taken on, over all phases"
+TIP_LEAVERS = "People let go, over all phases"
+TIP_COST = (
+    "Pay, joining, leaving and opening costs, overtime and bought-in work; only for crews that are workable"
+)
+TIP_MORE = "What the crew costs above the exact crew"
+TIP_OVERTIME = "Hours of overtime over all phases"
+TIP_BOUGHT_IN = "Work bought in over all phases"
+TIP_VERDICT = "Whether every line holds, or the lines that are broken"
+TIP_FRACTIONAL = "The cheapest crew if people could be divided; no whole crew costs less"
+POLICY_TIPS = {
+    Policy.DOWN: "Every category of the fractional crew rounded down to a whole lot",
+    Policy.NEAREST: "Every category rounded to the nearest whole lot, halves up",
+    Policy.UP: "Every category rounded up to a whole lot",
+    Policy.LARGEST_REMAINDER: "The head count kept; the largest remainders rounded up, the others down",
+    Policy.BEST_CORNER: "The cheapest workable choice of down or up for each category",
+    Policy.PATCHED: "Nearest, made workable by the cheapest additions of people",
+    Policy.EXACT: "The cheapest workable whole crew",
+    Policy.OWN: "Your own crew: type head counts here; the other categories start from the exact crew",
+}
+
+
+def policy_title(policy: Policy) -> str:
+    """A column title: two lines where the name is long."""
+    return str(policy).replace(" ", "\n")
+
+
+def in_phase(name: str, phase: str) -> str:
+    """A row of a plan with several phases."""
+    return f"{name}, {phase}"
+
+
+def count_tip(name: str, lot: str, phase: str) -> str:
+    """What a head-count row means."""
+    lots = "" if lot == "1" else f", in lots of {lot}"
+    where = f" in {phase}" if phase else ""
+    return f"People of {name}{where}{lots}"
+
+
+def cell_tip(row: str, column: str, text: str) -> str:
+    """A cell in words."""
+    return f"{row}, {column}: {text}" if text else f"{row}, {column}: empty"
+
+
+def breaks_lines(lines: Sequence[str]) -> str:
+    """Verdict of a crew that is not workable."""
+    return f"breaks {lines[0]}" if len(lines) == 1 else f"breaks {len(lines)} lines"
+
+
+def below_nobody(text: str, name: str) -> str:
+    """A refused head count."""
+    return f"{name}: {text} is less than nobody. Allowed are 0 and more."
+
+
+def not_in_lots(text: str, name: str, lot: str) -> str:
+    """A refused head count."""
+    return f"{name}: {text} cannot be had. People of this category come in lots of {lot}."
+
+
+EDIT_FROM_EXACT = "own crew from the exact one"
+EDIT_CLEAR_OWN = "clear the own crew"
+
+
+def edit_own(name: str) -> str:
+    """Undo text."""
+    return f"own crew: {name}"
+
+
+# the crew page
+
+ALL_CREWS = "All crews side by side"
+WHAT_BINDS = "What binds: lines with no room"
+HOW_IT_IS_RUN = "How it is run"
+NOTHING_BINDS = "Whole people leave some room on every line."
+FROM_EXACT = "Start own from exact"
+TIP_FROM_EXACT = "Copy the exact crew into the own column, to change it there"
+CLEAR_OWN = "Clear own"
+OWN_HINT = "Type your own crew in the last column."
+NOTICE_EMPTY = (
+    "Nothing to solve yet. Add categories and works, or rules, on the Plan page; the crew appears by itself."
+)
+NOTICE_PROBLEMS = "Some entries of the plan must be mended first; the Plan page marks them."
+NOTICE_FIRST = "Working out the first answer."
+NOTICE_STALE = "Out of date: this belongs to the plan before the last change."
+
+
+def no_room(line: str) -> str:
+    """A line that binds."""
+    return line
+
+
+def no_room_saving(line: str, loosen: str, saving: str) -> str:
+    """A line that binds, with what loosening it would save."""
+    return f"{line}: {loosen} looser would save {saving}"
+
+
+def and_more_lines(count: int) -> str:
+    """The lines that are not listed."""
+    return f"and {count} more"
+
+
+def overtime_of(name: str) -> str:
+    """What is told about overtime."""
+    return f"Overtime of {name}"
+
+
+def bought_in_of(work: str) -> str:
+    """What is told about bought-in work."""
+    return f"{work} bought in"
+
+
+def titled(title: str, text: str) -> str:
+    """A title and its figure."""
+    return f"{title}: {text}"
+
+
+def conflict(lines: Sequence[str]) -> str:
+    """Why no crew can meet the plan."""
+    return "\n".join(["These lines cannot hold together:", *(f"\u2022 {line}" for line in lines)])

@@ -21,6 +21,10 @@ QHeaderView {{ background: {paper}; border: 0; }}
 QHeaderView::section {{
   background: {paper}; color: {faint}; border: 0; border-bottom: 1px solid {rule}; padding: {half}px {one}px;
 }}
+QHeaderView::section:horizontal {{ padding: {half}px 3px; }}
+QTableView#quiet {{ background: {paper}; }}
+QTableView#quiet::item {{ border-bottom: 1px solid {rule}; padding: 0 3px; }}
+QTableView#quiet::item:focus {{ border: 2px solid {focus}; }}
 QTableCornerButton::section {{ background: {paper}; border: 0; border-bottom: 1px solid {rule}; }}
 QListView#rail {{ background: {paper}; border-right: 1px solid {rule}; padding-top: {one}px; outline: 0; }}
 QListView#rail::item {{ padding: {one}px {two}px; border-left: 3px solid transparent; }}
@@ -44,6 +48,7 @@ QMenuBar {{ background: {paper}; color: {ink}; }}
 QMenuBar::item:selected, QMenu::item:selected {{ background: {selected}; color: {ink}; }}
 QMenu {{ background: {cell}; color: {ink}; border: 1px solid {rule}; }}
 QMenu::item:disabled {{ color: {faint}; }}
+*[weight="bold"] {{ font-weight: bold; }}
 QStatusBar {{ color: {faint}; }}
 """
 

@@ -14,14 +14,16 @@ from PySide6.QtGui import QPainter, QPen, QPolygonF
 
 from desktop import crew_words as say
 from desktop import figures
-from desktop.pictures.brush import CENTRE, LEFT, rule, text_width, write
+from desktop.pictures.brush import LEFT, rule, text_width, write
 from desktop.pictures.figure import SHAPE, Figure, Mark, paint_figure
+from desktop.pictures.key import paint_entry, paint_key
 from desktop.pictures.tally_layout import Tally, TallyPhase, TallyRow
 from desktop.theme import Size, Theme
 
 _HEADER = 40.0
 _NUMBERS = 28.0
-_STEP = 28.0
+_STEP, _STEP_OF_FEW = 28.0, 44.0
+_FEW = 4
 _GAP = 12.0
 _LEGEND = 24.0
 _NAME_SHARE = 0.2
@@ -30,7 +32,11 @@ _NAME_SHARE = 0.2
 def phases_height(tally: Tally, theme: Theme) -> float:
     """Height `paint_phases` needs, in the painter's units."""
     legend = _LEGEND if tally.rows else 0
-    return theme.zoom * (_HEADER + len(tally.rows) * (_NUMBERS + _STEP + _GAP) + legend)
+    return theme.zoom * (_HEADER + len(tally.rows) * (_NUMBERS + _step(tally) + _GAP) + legend)
+
+
+def _step(tally: Tally) -> float:
+    return _STEP_OF_FEW if len(tally.rows) <= _FEW else _STEP
 
 
 def phase_edges(phases: Sequence[TallyPhase], left: float, right: float) -> list[float]:
@@ -60,6 +66,7 @@ class _Frame:
     top: float
     edges: list[float]
     theme: Theme
+    step: float
 
     def cell(self, at: int) -> QRectF:
         """The line of numbers of phase `at`."""
@@ -71,14 +78,13 @@ class _Frame:
 def paint_phases(painter: QPainter, rect: QRectF, tally: Tally, theme: Theme) -> None:
     """Draw the stepped head counts of `tally` into `rect`."""
     unit = theme.zoom
-    names = max((text_width(theme.picture_font(), r.name) for r in tally.rows), default=0)
-    name_width = min(names, rect.width() * _NAME_SHARE)
+    name_width = _name_width(tally, rect.width() * _NAME_SHARE, theme)
     edges = phase_edges(tally.phases, rect.left() + name_width + 16 * unit, rect.right())
     _paint_header(painter, rect.top(), tally, edges, theme)
     top = rect.top() + _HEADER * unit
     for row in tally.rows:
         rule(painter, rect.left(), top - 4 * unit, rect.right(), top - 4 * unit, theme)
-        frame = _Frame(row, top, edges, theme)
+        frame = _Frame(row, top, edges, theme, _step(tally) * unit)
         box = QRectF(rect.left(), top + 3 * unit, name_width, 20 * unit)
         write(painter, box, row.name, theme.picture_font(), theme.ink)
         note = _name_note(row)
@@ -86,9 +92,15 @@ def paint_phases(painter: QPainter, rect: QRectF, tally: Tally, theme: Theme) ->
         _paint_steps(painter, frame)
         for at in range(len(tally.phases)):
             _paint_cell(painter, frame, at)
-        top += (_NUMBERS + _STEP + _GAP) * unit
+        top += (_NUMBERS + _GAP) * unit + frame.step
     if tally.rows:
         _paint_key(painter, QRectF(edges[0], top, rect.right() - edges[0], 20 * unit), theme)
+
+
+def _name_width(tally: Tally, most: float, theme: Theme) -> float:
+    names = [text_width(theme.picture_font(), row.name) for row in tally.rows]
+    notes = [text_width(theme.picture_font(Size.SMALL), _name_note(row)) for row in tally.rows]
+    return min(max(names + notes, default=0), most)
 
 
 def _name_note(row: TallyRow) -> str:
@@ -110,9 +122,9 @@ def _paint_header(painter: QPainter, top: float, tally: Tally, edges: list[float
 def _paint_steps(painter: QPainter, frame: _Frame) -> None:
     """Exact as a filled area, fractional as a broken line, leavers and joiners as its jumps."""
     theme, row = frame.theme, frame.row
-    base = frame.top + (_NUMBERS + _STEP) * theme.zoom
+    base = frame.top + _NUMBERS * theme.zoom + frame.step
     peak = max((n for crew in (row.fractional, row.exact) if crew for n in crew), default=0) or 1
-    unit = (_STEP - 4) * theme.zoom / peak
+    unit = (frame.step - 4 * theme.zoom) / peak
     if row.exact:
         top = step_points(row.exact, frame.edges, base, unit)
         area = [QPointF(frame.edges[0], base), *top, QPointF(frame.edges[-1], base)]
@@ -159,10 +171,10 @@ def _paint_moves(painter: QPainter, box: QRectF, frame: _Frame, at: int) -> None
     text = figures.change(joins or -leaves)
     font, high = theme.picture_font(Size.SMALL), 14 * unit
     wide = text_width(font, text) + high * SHAPE + 5 * unit
-    if wide > box.width():
+    if wide + 4 * unit > box.width():
         return
     mark = Mark.JOINS if joins else Mark.LEAVES
-    x = box.right() - wide
+    x = box.left() + 4 * unit
     y = box.center().y() - high / 2
     paint_figure(painter, Figure(x, y, high * SHAPE, high, mark), theme)
     words = QRectF(x + high * SHAPE + 5 * unit, box.top(), box.width(), box.height())
@@ -171,29 +183,18 @@ def _paint_moves(painter: QPainter, box: QRectF, frame: _Frame, at: int) -> None
 
 def _paint_key(painter: QPainter, box: QRectF, theme: Theme) -> None:
     """What the line, the area and the small figures mean."""
-    unit, font = theme.zoom, theme.picture_font(Size.SMALL)
+    unit = theme.zoom
     y = box.center().y()
     pen = QPen(theme.fractional, 2)
     pen.setDashPattern([3, 2])
     painter.setPen(pen)
     painter.drawLine(QPointF(box.left(), y), QPointF(box.left() + 24 * unit, y))
-    x = _key_text(painter, box, box.left() + 30 * unit, say.LEGEND_FRACTIONAL, theme)
+    x = paint_entry(painter, box, box.left() + 30 * unit, None, say.LEGEND_FRACTIONAL, theme)
     area = QRectF(x, y - 5 * unit, 24 * unit, 10 * unit)
     painter.fillRect(area, theme.exact_soft)
     painter.setPen(QPen(theme.exact, 2))
     painter.drawLine(area.topLeft(), area.topRight())
-    x = _key_text(painter, box, x + 30 * unit, say.LEGEND_EXACT, theme)
-    for mark, text in ((Mark.JOINS, say.LEGEND_JOINS), (Mark.LEAVES, say.LEGEND_LEAVES)):
-        high = 13 * unit
-        paint_figure(painter, Figure(x, y - high / 2, high * SHAPE, high, mark), theme)
-        x = _key_text(painter, box, x + high * SHAPE + 5 * unit, text, theme)
-    wide = text_width(font, say.OWN_HEIGHT)
-    if x + wide < box.right():
-        write(painter, QRectF(x, box.top(), wide, box.height()), say.OWN_HEIGHT, font, theme.faint, CENTRE)
-
-
-def _key_text(painter: QPainter, box: QRectF, x: float, text: str, theme: Theme) -> float:
-    font = theme.picture_font(Size.SMALL)
-    wide = text_width(font, text)
-    write(painter, QRectF(x, box.top(), wide, box.height()), text, font, theme.faint)
-    return x + wide + 14 * theme.zoom
+    x = paint_entry(painter, box, x + 30 * unit, None, say.LEGEND_EXACT, theme)
+    rest = QRectF(x, box.top(), box.right() - x, box.height())
+    moves = [(Mark.JOINS, say.LEGEND_JOINS), (Mark.LEAVES, say.LEGEND_LEAVES), (None, say.OWN_HEIGHT)]
+    paint_key(painter, rest, moves, theme)

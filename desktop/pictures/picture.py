@@ -5,7 +5,7 @@ from __future__ import annotations
 import html
 from collections.abc import Sequence
 
-from PySide6.QtCore import QEvent, QMimeData, QPoint, QRectF, Qt
+from PySide6.QtCore import QEvent, QMimeData, QPointF, QRectF, QSize, Qt
 from PySide6.QtGui import (
     QAction,
     QFocusEvent,
@@ -17,7 +17,7 @@ from PySide6.QtGui import (
     QPen,
     QPixmap,
 )
-from PySide6.QtWidgets import QToolTip, QWidget
+from PySide6.QtWidgets import QSizePolicy, QToolTip, QWidget
 
 from desktop import crew_words as say
 from desktop.pictures.table_behind import TableBehind
@@ -37,12 +37,19 @@ def data_text(rows: Rows) -> str:
 
 
 class Picture(QWidget):
-    """A painted widget with a table behind it. Subclasses give `draw`, `rows` and `hint_at`."""
+    """A painted widget with a table behind it.
+
+    Subclasses give `draw`, `rows`, `content_height` and `hint_at`; a margin around keeps the focus clear of
+    what is drawn. `least` is the narrowest width, in steps of the grid.
+    """
+
+    least = 40.0
 
     def __init__(self, name: str, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self.setAccessibleName(name)
         self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+        self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Fixed)
         self.setContextMenuPolicy(Qt.ContextMenuPolicy.ActionsContextMenu)
         self._add_action(say.COPY_IMAGE, self.copy_image, QKeySequence.StandardKey.Copy)
         self._add_action(say.COPY_DATA, self.copy_data, QKeySequence("Ctrl+Shift+C"))
@@ -63,9 +70,18 @@ class Picture(QWidget):
         """The table behind the picture, header first."""
         raise NotImplementedError
 
-    def hint_at(self, position: QPoint) -> str:
-        """What the tooltip says at `position`; empty for nothing."""
+    def content_height(self, theme: Theme) -> float:
+        """Height that `draw` needs."""
+        raise NotImplementedError
+
+    def hint_at(self, position: QPointF) -> str:
+        """What the tooltip says at `position` within the drawing; empty for nothing."""
         return ""
+
+    def inner(self) -> QRectF:
+        """Where the drawing stands."""
+        margin = current().px(1)
+        return QRectF(self.rect()).adjusted(margin, margin, -margin, -margin)
 
     def pixmap(self, theme: Theme | None = None, ratio: float = 2.0) -> QPixmap:
         """The picture alone, on paper, `ratio` pixels to one of the screen."""
@@ -76,7 +92,7 @@ class Picture(QWidget):
         painter = QPainter(image)
         try:
             painter.setRenderHint(QPainter.RenderHint.Antialiasing)
-            self.draw(painter, QRectF(self.rect()), chosen)
+            self.draw(painter, self.inner(), chosen)
         finally:
             painter.end()
         return image
@@ -98,7 +114,11 @@ class Picture(QWidget):
     def event(self, event: QEvent) -> bool:
         """Tooltips as plain text."""
         if event.type() == QEvent.Type.ToolTip and isinstance(event, QHelpEvent):
-            QToolTip.showText(event.globalPos(), plain_tip(self.hint_at(event.pos())), self)
+            QToolTip.showText(
+                event.globalPos(),
+                plain_tip(self.hint_at(QPointF(event.pos()) - self.inner().topLeft())),
+                self,
+            )
             return True
         return super().event(event)
 
@@ -118,10 +138,19 @@ class Picture(QWidget):
         theme = current()
         try:
             painter.setRenderHint(QPainter.RenderHint.Antialiasing)
-            self.draw(painter, QRectF(self.rect()), theme)
+            self.draw(painter, self.inner(), theme)
             if self.hasFocus():
                 painter.setBrush(Qt.BrushStyle.NoBrush)
                 painter.setPen(QPen(theme.focus, 2))
                 painter.drawRect(QRectF(self.rect()).adjusted(1, 1, -1, -1))
         finally:
             painter.end()
+
+    def sizeHint(self) -> QSize:
+        """As high as the drawing and its margin."""
+        theme = current()
+        return QSize(theme.px(2 * self.least), round(self.content_height(theme)) + 2 * theme.px(1) + 1)
+
+    def minimumSizeHint(self) -> QSize:
+        """As high as the drawing and its margin, narrower."""
+        return QSize(current().px(self.least), self.sizeHint().height())

@@ -6,15 +6,15 @@ strokes. Plans of several phases are drawn as stepped head counts (`phase_tally`
 
 from __future__ import annotations
 
-from PySide6.QtCore import QPoint, QRectF, QSize
+from PySide6.QtCore import QPointF, QRectF
 from PySide6.QtGui import QPainter
-from PySide6.QtWidgets import QSizePolicy, QWidget
+from PySide6.QtWidgets import QWidget
 
 from desktop import crew_words as say
 from desktop import figures
 from desktop.pictures.brush import RIGHT, rule, text_width, write
 from desktop.pictures.figure import Mark, paint_figure
-from desktop.pictures.key import paint_key
+from desktop.pictures.key import key_width, paint_key
 from desktop.pictures.phase_tally import paint_phases, phases_height
 from desktop.pictures.picture import Picture
 from desktop.pictures.tally_layout import RowLayout, Tally, TallyMetrics, TallyRow, tally_layout
@@ -22,6 +22,7 @@ from desktop.theme import Size, Theme, current
 
 _LEGEND_HEIGHT = 28.0
 _NAME_SHARE = 0.24
+_FEW = 5
 
 
 class Columns:
@@ -40,13 +41,14 @@ class Columns:
         self.figures = self.count + counts + 16 * unit
         self.note_width = notes
         room = rect.right() - self.figures - (notes + 12 * unit if notes else 0)
-        self.metrics = TallyMetrics(
-            max(room, 40.0), 18 * unit, 3 * unit, 26 * unit, _row_gap(len(tally.rows)) * unit
-        )
+        self.metrics = _metrics(max(room, 40.0), len(tally.rows), unit)
 
 
-def _row_gap(rows: int) -> float:
-    return 12.0 if rows <= 6 else 8.0
+def _metrics(figures_width: float, rows: int, unit: float) -> TallyMetrics:
+    """Larger figures for few categories."""
+    if rows <= _FEW:
+        return TallyMetrics(figures_width, 22 * unit, 4 * unit, 29 * unit, 10 * unit)
+    return TallyMetrics(figures_width, 18 * unit, 3 * unit, 25 * unit, 8 * unit)
 
 
 def _lot(row: TallyRow) -> str:
@@ -78,8 +80,9 @@ def tally_height(tally: Tally, theme: Theme, *, legend: bool = True) -> float:
     if len(tally.phases) > 1:
         return phases_height(tally, theme)
     rows = len(tally.rows)
-    gap = _row_gap(rows)
-    return theme.zoom * (rows * (52 + gap) - gap + (_LEGEND_HEIGHT if legend else 0)) if rows else 0.0
+    sizes = _metrics(0, rows, theme.zoom)
+    foot = _LEGEND_HEIGHT * theme.zoom if legend else 0
+    return rows * (2 * sizes.line + sizes.row_gap) - sizes.row_gap + foot if rows else 0.0
 
 
 def paint_tally(
@@ -108,8 +111,11 @@ def _paint_one_phase(painter: QPainter, rect: QRectF, tally: Tally, theme: Theme
         _paint_figures(painter, rect, placed, columns, theme)
     if legend and tally.rows:
         top = rect.top() + layout.height + 8 * theme.zoom
-        box = QRectF(columns.figures, top, rect.right() - columns.figures, 20 * theme.zoom)
-        paint_key(painter, box, _legend(tally, layout.scale), theme)
+        entries = _legend(tally, layout.scale)
+        wide = sum(key_width(mark, text, theme) + 14 * theme.zoom for mark, text in entries)
+        left = columns.figures if columns.figures + wide <= rect.right() else rect.left()
+        box = QRectF(left, top, rect.right() - left, 20 * theme.zoom)
+        paint_key(painter, box, entries, theme)
 
 
 def _paint_words(
@@ -126,8 +132,9 @@ def _paint_words(
     write(painter, upper, _fractional_text(row), theme.picture_font(), theme.fractional, RIGHT)
     large = theme.picture_font(Size.LARGE, bold=True)
     write(painter, lower, _exact_text(row), large, theme.exact, RIGHT)
-    note = QRectF(rect.right() - columns.note_width, lower.top(), columns.note_width, line)
-    write(painter, note, _moves(row), small, theme.ink, RIGHT)
+    left = columns.figures + placed.right + 12 * theme.zoom
+    note = QRectF(left, lower.top(), columns.note_width, line)
+    write(painter, note, _moves(row), small, theme.ink)
 
 
 def _paint_figures(
@@ -159,8 +166,10 @@ class TallyPicture(Picture):
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(say.TALLY, parent)
         self._tally = Tally((), ())
-        policy = QSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Fixed)
-        self.setSizePolicy(policy)
+
+    def content_height(self, theme: Theme) -> float:
+        """Height of the tally."""
+        return tally_height(self._tally, theme)
 
     @property
     def tally(self) -> Tally:
@@ -196,23 +205,15 @@ class TallyPicture(Picture):
         """Category, phase, fractional, exact, joiners, leavers."""
         return tally_table(self._tally)
 
-    def hint_at(self, position: QPoint) -> str:
+    def hint_at(self, position: QPointF) -> str:
         """The category under the pointer in words."""
         count = len(self._tally.rows)
         if not count:
             return ""
         header = phases_height(Tally(self._tally.phases, ()), current()) if len(self._tally.phases) > 1 else 0
-        body = self.sizeHint().height() - header
+        body = self.content_height(current()) - header
         at = int((position.y() - header) / max(body, 1) * count)
         return self._sentence(self._tally.rows[at]) if 0 <= at < count else ""
-
-    def sizeHint(self) -> QSize:
-        """As high as the content needs."""
-        return QSize(current().px(80), round(tally_height(self._tally, current())) + 2)
-
-    def minimumSizeHint(self) -> QSize:
-        """As high as the content needs, narrower."""
-        return QSize(current().px(50), self.sizeHint().height())
 
 
 def tally_table(tally: Tally) -> list[list[str]]:

@@ -94,7 +94,7 @@ class TallyMetrics:
     @property
     def coin_height(self) -> float:
         """Height of a figure that stands for several people."""
-        return self.height * 1.3
+        return self.height * 1.12
 
 
 @dataclass(frozen=True)

@@ -4,9 +4,9 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from PySide6.QtCore import QPoint, QPointF, QRectF, QSize, Qt
+from PySide6.QtCore import QPointF, QRectF, Qt
 from PySide6.QtGui import QColor, QPainter, QPen
-from PySide6.QtWidgets import QSizePolicy, QWidget
+from PySide6.QtWidgets import QWidget
 
 from desktop import crew_words as say
 from desktop import figures
@@ -140,7 +140,10 @@ class WaterfallPicture(Picture):
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(say.WATERFALL, parent)
         self._miss: Miss | None = None
-        self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Fixed)
+
+    def content_height(self, theme: Theme) -> float:
+        """Height of the waterfall."""
+        return waterfall_height(self._miss, theme) if self._miss else 0.0
 
     @property
     def miss(self) -> Miss | None:
@@ -169,7 +172,7 @@ class WaterfallPicture(Picture):
         bars = waterfall_bars(self._miss)
         return [head, *([bar_title(b), figures.signed(b.size), figures.signed(b.end)] for b in bars)]
 
-    def hint_at(self, position: QPoint) -> str:
+    def hint_at(self, position: QPointF) -> str:
         """The bar under the pointer in words."""
         if self._miss is None:
             return ""
@@ -179,12 +182,3 @@ class WaterfallPicture(Picture):
         if not 0 <= at < len(bars):
             return ""
         return f"{bar_title(bars[at])}: {figures.signed(bars[at].size, self._miss.broken.unit)}"
-
-    def sizeHint(self) -> QSize:
-        """As high as the content needs."""
-        height = waterfall_height(self._miss, current()) if self._miss else 0
-        return QSize(current().px(70), round(height) + 2)
-
-    def minimumSizeHint(self) -> QSize:
-        """As high as the content needs, narrower."""
-        return QSize(current().px(40), self.sizeHint().height())

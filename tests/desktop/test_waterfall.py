@@ -2,7 +2,6 @@ from dataclasses import replace
 from itertools import pairwise
 
 import pytest
-from PySide6.QtCore import QLocale
 
 from desktop.pictures.margin_bars import bar_length, is_broken
 from desktop.pictures.waterfall import WaterfallPicture, waterfall_axis
@@ -11,11 +10,6 @@ from solver.answer import Policy
 from tests.desktop import samples
 
 NB = "\u00a0"
-
-
-@pytest.fixture(autouse=True)
-def english():
-    QLocale.setDefault(QLocale(QLocale.Language.English, QLocale.Country.UnitedStates))
 
 
 def misses():

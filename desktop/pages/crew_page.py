@@ -1,0 +1,133 @@
+"""The Crew page: the exact head counts and the people tally, what binds, and all crews side by side."""
+
+from __future__ import annotations
+
+from PySide6.QtCore import QModelIndex, Qt
+from PySide6.QtWidgets import QAbstractItemView, QHBoxLayout, QLabel, QPushButton, QVBoxLayout, QWidget
+
+from desktop import crew_words as say
+from desktop.answers import Answers
+from desktop.document import Document
+from desktop.pages.crew_notes import binding_lines, run_lines
+from desktop.pages.page_parts import AnswerPage, heading, label
+from desktop.pictures.tally import TallyPicture
+from desktop.pictures.tally_layout import tally_of
+from desktop.tables.crews import CrewTable
+from desktop.tables.quiet_view import QuietView
+from desktop.theme import Size, current
+
+
+class CrewPage(AnswerPage):
+    """What the plan comes to: who, how many, and what every other crew would be."""
+
+    def __init__(self, document: Document, answers: Answers, parent: QWidget | None = None) -> None:
+        super().__init__(answers, parent)
+        self._document = document
+        self.tally = TallyPicture()
+        self.binding = label()
+        self.run = label()
+        self.impossible = label()
+        self.table = CrewTable(document, self)
+        self.view = QuietView(say.ALL_CREWS)
+        self.view.setModel(self.table)
+        self.view.setSelectionMode(QAbstractItemView.SelectionMode.ContiguousSelection)
+        self.refusal = label(size=Size.SMALL, tone="short")
+        self.from_exact = QPushButton(say.FROM_EXACT)
+        self.from_exact.setToolTip(say.TIP_FROM_EXACT)
+        self.clear_own = QPushButton(say.CLEAR_OWN)
+        self._connect()
+        self._fill()
+        self.refresh()
+
+    def _connect(self) -> None:
+        self.from_exact.clicked.connect(self.table.start_from_exact)
+        self.clear_own.clicked.connect(self.table.clear_own)
+        self.table.told.connect(self._on_told)
+        self._document.changed.connect(self._show_table)
+        self.answers.detail_changed.connect(self._on_detail)
+
+    def _fill(self) -> None:
+        self.body.addWidget(self.impossible)
+        top = QHBoxLayout()
+        top.setSpacing(current().px(4))
+        top.addWidget(self.tally, 3, Qt.AlignmentFlag.AlignTop)
+        top.addLayout(self._notes(), 1)
+        self.body.addLayout(top)
+        self.body.addLayout(self._table_bar())
+        self.body.addWidget(self.view)
+        self.body.addWidget(self.refusal)
+        self.refusal.hide()
+        self.body.addStretch(1)
+
+    def _notes(self) -> QVBoxLayout:
+        notes = QVBoxLayout()
+        notes.setSpacing(current().px(0.5))
+        notes.setContentsMargins(0, current().px(1), 0, 0)
+        self._binding_title, self._run_title = heading(say.WHAT_BINDS), heading(say.HOW_IT_IS_RUN)
+        for widget in (self._binding_title, self.binding, self._run_title, self.run):
+            notes.addWidget(widget)
+        notes.addStretch(1)
+        return notes
+
+    def _table_bar(self) -> QHBoxLayout:
+        bar = QHBoxLayout()
+        bar.addWidget(heading(say.ALL_CREWS))
+        bar.addStretch(1)
+        hint = QLabel(say.OWN_HINT)
+        hint.setTextFormat(Qt.TextFormat.PlainText)
+        bar.addWidget(hint)
+        bar.addWidget(self.from_exact)
+        bar.addWidget(self.clear_own)
+        return bar
+
+    def show_answer(self) -> None:
+        """Fill tally, notes and table from the latest answer."""
+        answer, plan = self.answers.answer, self.answers.plan
+        if answer is None or plan is None:
+            return
+        possible = answer.exact is not None
+        self.impossible.setVisible(answer.conflict is not None)
+        if answer.conflict is not None:
+            self.impossible.setText(say.conflict([c.says for c in answer.conflict.lines]))
+        self.tally.setVisible(possible or answer.fractional is not None)
+        self.tally.show_tally(tally_of(plan, answer.fractional, answer.exact.crew if answer.exact else None))
+        self._show_notes()
+        self._show_table()
+
+    def _show_notes(self) -> None:
+        answer, plan = self.answers.answer, self.answers.plan
+        if answer is None or plan is None:
+            return
+        binding = binding_lines(plan, answer, self.answers.detail("room"))
+        self.binding.setText("\n".join(binding))
+        run = run_lines(plan, answer)
+        self.run.setText("\n".join(run))
+        for widget, there in ((self._binding_title, binding), (self._run_title, run)):
+            widget.setVisible(bool(there))
+
+    def _show_table(self) -> None:
+        self.table.show(self.answers.answer)
+        answer = self.answers.answer
+        self.from_exact.setEnabled(answer is not None and answer.exact is not None)
+        self.clear_own.setEnabled(bool(self._document.plan.own))
+
+    def _on_detail(self, question: str) -> None:
+        if question == "room":
+            self._show_notes()
+
+    def _on_told(self, text: str) -> None:
+        self.refusal.setText(text)
+        self.refusal.setVisible(bool(text))
+
+    def choose_own(self) -> None:
+        """Put the cursor on the first cell of the own column."""
+        column = self.table.own_column()
+        index = self.table.index(0, column) if column >= 0 else QModelIndex()
+        self.view.setCurrentIndex(index)
+        self.view.setFocus()
+
+    def retouch(self) -> None:
+        """Follow a change of theme or zoom."""
+        super().retouch()
+        self.view.refit()
+        self.tally.updateGeometry()
