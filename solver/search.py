@@ -144,7 +144,7 @@ class Search:
     ) -> tuple[list[Found], bool]:
         """All whole crews of objective <= cutoff, cheapest first, at most `most`; True if complete.
 
-        A node is either cut, a crew and the rest around it, or split: no crew is met twice.
+        A node is either cut, a crew and the rest around it, or split.
         """
         run = _Run(self, limits, None, None, cutoff)
         return run.cheapest_first(self._root(None, None), most, heard)
@@ -334,6 +334,7 @@ class _Run:
     ) -> tuple[list[Found], bool]:
         """Crews in order of objective; crews wait in the heap beside the nodes that may beat them."""
         found: list[Found] = []
+        met: set[Lots] = set()
         heap: list[tuple[float, int, _Node | Found]] = [(-inf, 0, root)]
         pushed = 0
         while heap:
@@ -341,8 +342,11 @@ class _Run:
                 return found, False
             _, _, top = heapq.heappop(heap)
             if isinstance(top, Found):
+                if top.lots in met:  # where a switch is on for nobody, its crew is elsewhere too
+                    continue
                 if len(found) == most:
                     return found, False
+                met.add(top.lots)
                 found.append(top)
                 if heard:
                     heard(len(found))
