@@ -241,29 +241,33 @@ class Appraiser:
     def _phase_breaks(self, t: int, run: PhaseRun, lots: Counts, base: Sequence[float]) -> list[Break]:
         found = []
         if run.supervision_prices is not None:
-            found.append(
-                hours_break(self.program, t, LineKind.SUPERVISION, run.group_short, run.supervision_prices,
-                            lots, base, {})
-            )  # fmt: skip
+            prices, kind = run.supervision_prices, LineKind.SUPERVISION
+            freed = self._settled(prices)
+            found.append(hours_break(self.program, t, kind, run.group_short, prices, lots, base, freed))
         if run.work_prices is not None and (run.work_short > SHORT).any():
-            given_up = self._given_up(run)
+            prices = run.work_prices
+            freed = {**self._settled(prices), **self._given_up(t, run, prices)}
             found.append(
-                hours_break(
-                    self.program, t, LineKind.WORK, run.work_short, run.work_prices, lots, base, given_up
-                )
+                hours_break(self.program, t, LineKind.WORK, run.work_short, prices, lots, base, freed)
             )
         return found
 
-    def _given_up(self, run: PhaseRun) -> dict[str, float]:
+    def _settled(self, prices: Prices) -> dict[str, float]:
+        """What hours lent for settling in are worth, per category's settling line."""
+        names = self.program.categories
+        return {f"{names[j].name}: settling in": -worth for j, worth in prices.settled.items() if worth}
+
+    def _given_up(self, t: int, run: PhaseRun, prices: Prices) -> dict[str, float]:
         """What the supervision nobody gives frees for work, per supervision line."""
-        assert run.work_prices is not None
-        worth = -run.work_prices.cap
-        names = [line.name for line, _, kind, _, t in self.program.hours_lines
-                 if kind is LineKind.SUPERVISION and t == 0]  # fmt: skip
+        lines = [
+            line
+            for line, _, kind, _, at in self.program.hours_lines
+            if kind is LineKind.SUPERVISION and at == t
+        ]
         return {
-            name: worth * float(short)
-            for name, short in zip(names, run.group_short, strict=True)
-            if short > SHORT and worth > 0
+            line.name: -prices.cap * float(short)
+            for line, short in zip(lines, run.group_short, strict=True)
+            if short > SHORT and prices.cap < 0
         }
 
 
@@ -277,10 +281,11 @@ class _BudgetedRoom:
         extra: dict[int, int] = {}
         for _, hours_row, *_ in program.hours_lines:
             extra[hours_row] = matrix.add_column(0.0, 0.0, 0.0)
+        of_heads = {head.line.row for head in program.head_lines}  # settled by the crew, kept or not
         for i, row in enumerate(program.matrix.rows):
             if i in extra:
                 matrix.add_row([*row.columns, extra[i]], [*row.coefs, -1.0], row.sense, row.rhs)
-            else:
+            elif i not in of_heads:
                 matrix.rows.append(row)
         self._extra = extra
         self._relaxation = Relaxation(matrix)

@@ -293,7 +293,7 @@ class Program:
                 meaning = Column("s", category.name, group_name(group), phase.name)
                 self.guidance[j, g, t] = self._column(meaning, 0.0, 0.0, most)
                 used.append(self.guidance[j, g, t])
-        if used:
+        if used or category.settling_hours > 0:  # settling in takes hours also where nothing else does
             self._add_hours_row(j, t, used)
 
     def _add_hours_row(self, j: int, t: int, used: list[int]) -> None:
@@ -315,7 +315,27 @@ class Program:
         if category.settling_hours > 0:
             columns.append(self.joiners[j, t])
             coefs.append(float(category.settling_hours))
+            self._add_settling_line(j, t)
         self.matrix.add_row(columns, coefs, RowSense.AT_MOST, 0.0)
+
+    def _add_settling_line(self, j: int, t: int) -> None:
+        """Joiners may need more hours to settle in than all of the category have: linear in head counts."""
+        category, lot = self.categories[j], self.lots[j]
+        settling = Fraction(category.settling_hours)
+        each = self.periods(t) * (self.attended[j] + Fraction(category.overtime_hours))
+        if settling <= each:
+            return
+        name, head = f"{category.name}: settling in", self.head(j, t)
+        terms = [(head, (each - settling) * lot)]
+        if t:
+            terms.append((head - 1, settling * lot))
+        rhs = Fraction(0) if t else -settling * Fraction(category.on_books)
+        row = self.matrix.add_row(
+            [c for c, _ in terms], [float(a) for _, a in terms], RowSense.AT_LEAST, float(rhs)
+        )
+        says = f"joiners of {category.name} settle in within the hours there are"
+        line = Line(name, LineKind.BOUND, self.phases[t].name, "hours", row, 1.0, says)
+        self._head_line(line, terms, RowSense.AT_LEAST, rhs)
 
     def best_output(self, k: int) -> Fraction:
         """The best output of any category on work k, units per hour; 1 where nobody can do it."""

@@ -41,12 +41,16 @@ class Aim(Enum):
 
 @dataclass(frozen=True)
 class Prices:
-    """least aim >= base + sum_j now_j n_j + before_j n_j(phase before) + cap x S, in people."""
+    """least aim >= base + sum_j now_j n_j + before_j n_j(phase before) + cap x S, in people.
+
+    `settled` adds, per category, what hours that settling in needs and nobody has are counted as there.
+    """
 
     base: float
     now: Floats
     before: Floats
     cap: float
+    settled: dict[int, float]
 
 
 class Shortfall:
@@ -64,6 +68,7 @@ class Shortfall:
         self._costs: dict[Aim, dict[int, float]] = {aim: {} for aim in Aim}
         self._effort: dict[tuple[int, int], int] = {}
         self._guidance: dict[tuple[int, int], int] = {}
+        self._hours_row: dict[int, int] = {}
         self.overtime: dict[int, int] = {}
         self.bought: dict[int, int] = {}
         self._add_hours_columns()
@@ -78,6 +83,7 @@ class Shortfall:
         self._priced: dict[int, float] = {}
         self._bounds = {c: (self._matrix.lower[c], self._matrix.upper[c]) for c in range(self._matrix.width)}
         self._rhs = list(self._constant)
+        self._unsettled: dict[int, float] = {}
 
     # ---- building ----------------------------------------------------------------------------
 
@@ -117,7 +123,7 @@ class Shortfall:
         program, length = self.program, self.program.periods(self.t)
         for j, category in enumerate(program.categories):
             used = [c for (i, _), c in (*self._effort.items(), *self._guidance.items()) if i == j]
-            if not used:
+            if not used and not category.settling_hours:
                 continue
             coefs = [1.0] * len(used)
             if category.overtime_hours > 0:
@@ -129,7 +135,8 @@ class Shortfall:
             if category.settling_hours > 0:
                 joined = self._joined(j)
                 used, coefs = [*used, joined], [*coefs, float(category.settling_hours)]
-            self._row(used, coefs, RowSense.AT_MOST, 0.0, {j: float(length * program.attended[j])})
+            attended = {j: float(length * program.attended[j])}
+            self._hours_row[j] = self._row(used, coefs, RowSense.AT_MOST, 0.0, attended)
 
     def _joined(self, j: int) -> int:
         column = self._free()
@@ -181,13 +188,31 @@ class Shortfall:
     # ---- asking ------------------------------------------------------------------------------
 
     def set_heads(self, now: Sequence[float], before: Sequence[float]) -> None:
-        """Give the head counts of this phase and of the one before, in people."""
+        """Give the head counts of this phase and of the one before, in people.
+
+        Where settling in takes more hours than a category has, the missing ones are lent: that miss is a
+        line of its own, and here the category simply has no hours.
+        """
+        self._unsettled = self._missing_to_settle(now, before)
+        lent = {self._hours_row[j]: hours for j, hours in self._unsettled.items()}
         for row in range(len(self._constant)):
             if self._now[row] or self._before[row]:
-                rhs = self._constant[row]
+                rhs = self._constant[row] + lent.get(row, 0.0)
                 rhs += sum(a * now[j] for j, a in self._now[row].items())
                 rhs += sum(a * before[j] for j, a in self._before[row].items())
                 self._set_rhs(row, rhs)
+
+    def _missing_to_settle(self, now: Sequence[float], before: Sequence[float]) -> dict[int, float]:
+        program, length = self.program, self.program.periods(self.t)
+        missing: dict[int, float] = {}
+        for j in self._hours_row:
+            category = program.categories[j]
+            if category.settling_hours > 0 and now[j] > before[j]:
+                each = float(length * (program.attended[j] + Fraction(category.overtime_hours)))
+                lack = float(category.settling_hours) * (now[j] - before[j]) - each * now[j]
+                if lack > 0:
+                    missing[j] = lack
+        return missing
 
     def _set_rhs(self, row: int, rhs: float) -> None:
         if self._rhs[row] != rhs:
@@ -241,7 +266,8 @@ class Shortfall:
             for j, a in self._before[row].items():
                 before[j] += price * a
         base = float(y @ np.array(self._constant)) + self._bounded_part(y)
-        return Prices(base, now, before, float(y[self._cap]))
+        settled = {j: float(y[self._hours_row[j]]) * lent for j, lent in self._unsettled.items()}
+        return Prices(base, now, before, float(y[self._cap]), settled)
 
     def _bounded_part(self, y: Floats) -> float:
         """What columns at a finite upper bound add: bought-in units cheaper than their line's price."""
