@@ -96,3 +96,22 @@ def phase_loss(works: tuple[str, ...], rules: tuple[str, ...]) -> str:
     if rules:
         said.append(f"These rules hold in no other phase and are deleted: {listed(rules)}.")
     return " ".join(said)
+
+
+# undo steps
+
+CHANGE = "Change {what}"
+CLEAR_CELLS = "Clear cells"
+PASTE_CELLS = "Paste"
+CUT_CELLS = "Cut"
+FILL_DOWN = "Fill down"
+INSERT_ROW = "Insert {noun}"
+DUPLICATE_ROWS = "Duplicate {noun}"
+DELETE_ROWS = "Delete {noun}"
+MOVE_ROWS = "Move {noun}"
+
+# asking before something goes
+
+DELETE_QUESTION = "Delete {names}?"
+DELETE = "Delete"
+KEEP = "Keep"

@@ -147,7 +147,10 @@ def _columns(plan: Plan) -> tuple[Column, ...]:
         *_limits(),
         _field("pay", "Pay", per, f"What one person costs per {plan.period}, {plan.currency}."),
         *_moves(plan.currency),
-        _field("hours", "Hours", f"h/{plan.period}", f"Paid hours of one person per {plan.period}."),
+        replace(
+            _field("hours", "Hours", f"h/{plan.period}", f"Paid hours of one person per {plan.period}."),
+            note=lambda plan, row: plan.categories[row].hours_note,
+        ),
         _field(
             "absence",
             "Absence",
@@ -261,6 +264,10 @@ def _loss(plan: Plan, indices: Collection[int]) -> str:
     return messages.category_loss(changed, gone, lost)
 
 
+def _alone(plan: Plan, row: int) -> Plan:
+    return Plan(categories=(Category(plan.categories[row].name, ZERO, ZERO),), works=plan.works)
+
+
 CATEGORIES = Table(
     key="categories",
     noun="category",
@@ -272,6 +279,7 @@ CATEGORIES = Table(
     move=categories.move,
     delete=categories.delete,
     loss=_loss,
+    alone=_alone,
     groups=(
         (LIMITS, "Limits and lots", "At least, at most, least if any, lot"),
         (MOVES, "Joining and leaving", "Costs of joining, leaving and opening; settling-in hours"),

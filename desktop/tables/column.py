@@ -33,7 +33,8 @@ class Column:
 
     `get(plan, row)` and `put(plan, row, value)` read and set the value; `place(row)` is what problems call
     it; clearing a cell gives it `blank`; `optional`: nothing typed means no value, shown as `none_shown`;
-    `choices(plan)` lists the names that may be typed; `group` "" is always visible.
+    `choices(plan)` lists the names that may be typed; `group` "" is always visible; `note(plan, row)`
+    adds where a value came from to its tooltip.
     """
 
     key: str
@@ -49,6 +50,7 @@ class Column:
     none_shown: str = ""
     choices: Callable[[Plan], tuple[str, ...]] | None = None
     group: str = ""
+    note: Callable[[Plan, int], str] | None = None
 
     @property
     def header(self) -> str:

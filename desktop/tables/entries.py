@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable
 from dataclasses import dataclass, replace
 
 from desktop import messages
@@ -34,23 +34,15 @@ class Outcome:
 def enter(table: Table, plan: Plan, refused: Refusals, entries: Iterable[Entry]) -> Outcome:
     """`plan` with every entry that counts; the others are kept as refused, with the reason.
 
-    An entry counts if it can be read and if the plan has no problem at its place afterwards. Rows beyond
-    the last are added. The problems of a plan are found in one go, so entries that only make sense
-    together (a minimum and a maximum) may come together.
+    An entry is refused if it cannot be read or could not stand there in any plan (a negative pay). What is
+    only wrong beside other entries (a maximum below the minimum) counts: the review of the plan tells it,
+    and mending either entry will do. Rows beyond the last are added.
     """
     listed = sorted(entries, key=lambda e: e.row)
-    grown = _with_rows(table, plan, listed)
-    first = _put_all(table, grown, refused, listed, {})
-    found = {problem.place: problem.says for problem in review(first.plan)}
-    if not found:
-        return first
-    before = {problem.place for problem in review(grown)}
-    wrong = {
-        (e.row, e.column.key): _reason(e, found[e.column.place(e.row)])
-        for e in listed
-        if e.column.place(e.row) in found.keys() - before
-    }
-    return _put_all(table, grown, refused, listed, wrong) if wrong else first
+    made = Outcome(_with_rows(table, plan, listed), dict(refused))
+    for entry in listed:
+        made = _put(table, made, entry)
+    return made
 
 
 def _with_rows(table: Table, plan: Plan, entries: list[Entry]) -> Plan:
@@ -59,25 +51,10 @@ def _with_rows(table: Table, plan: Plan, entries: list[Entry]) -> Plan:
     return table.insert(plan, here, missing) if missing > 0 else plan
 
 
-def _put_all(
-    table: Table,
-    plan: Plan,
-    refused: Refusals,
-    entries: list[Entry],
-    wrong: Mapping[tuple[int, str], str],
-) -> Outcome:
-    made = Outcome(plan, dict(refused))
-    for entry in entries:
-        made = _put(table, made, entry, wrong.get((entry.row, entry.column.key)))
-    return made
-
-
-def _put(table: Table, so_far: Outcome, entry: Entry, wrong: str | None) -> Outcome:
+def _put(table: Table, so_far: Outcome, entry: Entry) -> Outcome:
     name = table.names(so_far.plan)[entry.row]
     place = (table.key, name, entry.column.key)
     try:
-        if wrong is not None:
-            raise Refused(wrong)
         value = _read(table, so_far.plan, entry)
     except Refused as refusal:
         kept = {**so_far.refused, place: Refusal(entry.text, refusal.reason)}
@@ -96,12 +73,25 @@ def _called(place: Place, table: str, old: str, new: str) -> Place:
 def _read(table: Table, plan: Plan, entry: Entry) -> Value:
     value = entry.column.read(plan, entry.text)
     if entry.column.key == "name":
-        others = table.names(plan)[: entry.row] + table.names(plan)[entry.row + 1 :]
-        if not value:
-            raise Refused(messages.NAME_MISSING)
-        if value in others:
-            raise Refused(messages.NAME_TAKEN.format(name=quoted(str(value))))
+        _check_name(table.names(plan), entry.row, str(value))
+    elif entry.column.kind is not Kind.NAMES:  # names were looked up when they were read
+        _check_alone(table.alone(plan, entry.row), entry, value)
     return value
+
+
+def _check_name(names: tuple[str, ...], row: int, name: str) -> None:
+    if not name:
+        raise Refused(messages.NAME_MISSING)
+    if name in names[:row] + names[row + 1 :]:
+        raise Refused(messages.NAME_TAKEN.format(name=quoted(name)))
+
+
+def _check_alone(alone: Plan, entry: Entry, value: Value) -> None:
+    """Refuse what the review of a plan would refuse whatever else stood in it."""
+    place = entry.column.place(0)
+    for problem in review(entry.column.put(alone, 0, value)):
+        if problem.place == place:
+            raise Refused(_reason(entry, problem.says))
 
 
 def _reason(entry: Entry, says: str) -> str:

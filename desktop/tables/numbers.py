@@ -19,6 +19,7 @@ from solver.exact import TypedNumber, typed_number
 from solver.review import quoted
 
 NARROW_SPACE = "\u202f"
+_WRONG = "?"  # what no number can be made of
 _GROUPED_FROM = 5  # 3100 reads well as it is, 52 000 does not
 _SPACES = re.compile(r"(?<=\d)[\s'\u2019](?=\d{3}(?!\d))")
 _MINUS = str.maketrans({"\u2212": "-", "\u2013": "-"})
@@ -58,7 +59,7 @@ def _with_point(text: str) -> str:
     if len(signs) == 1:
         return text.replace(last, ".")
     if signs.count(last) > 1:  # 1.234.567: a sign that comes twice groups
-        return _ungrouped(text, last) if len(set(signs)) == 1 else ""
+        return _ungrouped(text, last) if len(set(signs)) == 1 else _WRONG
     whole, _, part = text.rpartition(last)
     other = "," if last == "." else "."
     return f"{_ungrouped(whole, other)}.{part}"
@@ -67,7 +68,7 @@ def _with_point(text: str) -> str:
 def _ungrouped(text: str, sign: str) -> str:
     first, *others = text.removeprefix("-").split(sign)
     grouped = 1 <= len(first) <= 3 and others and all(len(group) == 3 for group in others)
-    return text.replace(sign, "") if grouped else ""
+    return text.replace(sign, "") if grouped else _WRONG
 
 
 def _made(text: str) -> TypedNumber | None:

@@ -11,7 +11,7 @@ from desktop.edits import phases
 from desktop.edits.sequences import replaced
 from desktop.tables.column import Column, Kind, Value
 from desktop.tables.table import Table
-from solver.plan import ONE, Plan
+from solver.plan import ONE, Phase, Plan
 
 
 def _names(plan: Plan) -> tuple[str, ...]:
@@ -64,6 +64,10 @@ def _loss(plan: Plan, indices: Collection[int]) -> str:
     return messages.phase_loss(*phases.uses(plan, indices))
 
 
+def _alone(plan: Plan, row: int) -> Plan:
+    return Plan(phases=(Phase(plan.phases[row].name),))
+
+
 PHASES = Table(
     key="phases",
     noun="phase",
@@ -75,4 +79,5 @@ PHASES = Table(
     move=phases.move,
     delete=phases.delete,
     loss=_loss,
+    alone=_alone,
 )

@@ -17,8 +17,8 @@ class Table:
 
     `names(plan)` are the rows, each with a name of its own; the columns' first is that name. `groups` are
     the columns that are shown on demand: (key, title, tooltip). `loss(plan, indices)` tells in sentences
-    what else goes when rows are deleted, "" where nothing does. `most` limits the rows. `steps` words the
-    undo steps.
+    what else goes when rows are deleted, "" where nothing does; `alone(plan, row)` is a plan with nothing
+    but this row, every number of it at its default. `most` limits the rows.
     """
 
     key: str
@@ -31,6 +31,7 @@ class Table:
     move: Callable[[Plan, Collection[int], int], Plan]
     delete: RowChange
     loss: Callable[[Plan, Collection[int]], str]
+    alone: Callable[[Plan, int], Plan]
     groups: tuple[tuple[str, str, str], ...] = ()
     most: int = 1000
 

@@ -122,6 +122,11 @@ def _loss(plan: Plan, indices: Collection[int]) -> str:
     return messages.work_loss(works.uses(plan, indices))
 
 
+def _alone(plan: Plan, row: int) -> Plan:
+    work = Work(plan.works[row].name, plan.works[row].unit, (ZERO,) * len(plan.phases))
+    return Plan(phases=plan.phases, works=(work,))
+
+
 WORKS = Table(
     key="works",
     noun="work",
@@ -133,4 +138,5 @@ WORKS = Table(
     move=works.move,
     delete=works.delete,
     loss=_loss,
+    alone=_alone,
 )
