@@ -134,7 +134,8 @@ class _Builder:
         return Plan(
             phases=phases,
             categories=tuple(categories),
-            works=tuple(self._work(work, categories, phases) for work in works) + self._unreachable(phases),
+            works=tuple(self._work(work, categories, phases, len(works)) for work in works)
+            + self._unreachable(phases),
             rules=tuple(self._rules(categories, phases)),
             title="Random",
         )
@@ -213,23 +214,26 @@ class _Builder:
             return categories
         return [*categories[:-1], replace(categories[0], name=categories[-1].name)]
 
-    def _work(self, work: tuple[str, str], categories: list[Category], phases: tuple[Phase, ...]) -> Work:
+    def _work(
+        self, work: tuple[str, str], categories: list[Category], phases: tuple[Phase, ...], works: int
+    ) -> Work:
         name, unit = work
         able = [c for c in categories if name in c.output]
-        amounts = tuple(self._amount(name, able, phase) for phase in phases)
-        sold = self._may("buy_in", 60 if not able else 15)
+        sold = self._may("buy_in", 15 if able else 80)
+        amounts = tuple(self._amount(name, able, sold, phase, works) for phase in phases)
         price = Decimal(self._choices.integer(0, 2_000_000)) / 10_000 if sold else None
         limited = sold and able and self._choices.chance(50)
         most = max(amounts) * self._choices.integer(0, 4) / 4 if limited else None
         return Work(name, unit, amounts, price, most)
 
-    def _amount(self, name: str, able: list[Category], phase: Phase) -> Decimal:
-        """Work for up to five people of one able category."""
+    def _amount(self, name: str, able: list[Category], sold: bool, phase: Phase, works: int) -> Decimal:
+        """A part of what one able category could do alone with all the people it may have."""
         if not able:
-            return Decimal(self._choices.integer(0, 1) * 50)
+            return Decimal(self._choices.integer(0, 1) * 50 if sold or self._may("unreachable", 20) else 0)
         one = self._pick(able)
-        per_person = one.hours * one.output[name] * phase.periods
-        return (per_person * self._choices.integer(0, 50) / 10).quantize(Decimal(1)) + 0
+        people = one.at_most if one.at_most is not None else Decimal(6)
+        most = people * one.hours * (1 - one.absence) * one.output[name] * phase.periods / works
+        return (most * self._choices.integer(0, 18) / 20).quantize(Decimal(1)) + 0
 
     def _unreachable(self, phases: tuple[Phase, ...]) -> tuple[Work, ...]:
         """Sometimes a work nobody does and nobody sells, which is harmless at 0 and else impossible."""
@@ -242,10 +246,10 @@ class _Builder:
         names = [c.name for c in categories]
         rules: list[Rule] = []
         if self._may("ratio", 40):
-            most = Decimal(self._choices.integer(0, 12)) / 4
+            most = Decimal(self._choices.integer(0, 16)) / 4
             rules.append(Ratio("Ratio", *self._two_groups(names), most, self._rule_phases(phases)))
         if self._may("share", 40):
-            fraction = Decimal(self._choices.integer(0, 20)) / 20
+            fraction = Decimal(self._pick([0, 2, 4, 5, 6, 8, 10, 13, 16, 20])) / 20
             groups = self._two_groups(names)
             rules.append(Share("Share", *groups, self._sense(), fraction, self._rule_phases(phases)))
         if self._may("presence", 40):
@@ -260,7 +264,7 @@ class _Builder:
         return tuple(self._some(names)), tuple(self._some(names))
 
     def _sense(self) -> Sense:
-        return self._pick([Sense.AT_LEAST, Sense.AT_LEAST, Sense.AT_MOST, Sense.AT_MOST, Sense.EXACTLY])
+        return self._pick([Sense.AT_LEAST] * 4 + [Sense.AT_MOST] * 3 + [Sense.EXACTLY])
 
     def _rule_phases(self, phases: tuple[Phase, ...]) -> tuple[str, ...] | None:
         return (self._pick(phases).name,) if self._choices.chance(25) else None
