@@ -226,6 +226,14 @@ class Shortfall:
                 self._bounds[column] = (0.0, value)
                 self._relaxation.set_bounds(column, 0.0, value)
 
+    def price(self, column: int) -> float:
+        """What the plan asks for one unit or hour of the column, money."""
+        return self._costs[Aim.COST].get(column, 0.0)
+
+    def most(self, column: int) -> float:
+        """The column's upper bound."""
+        return self._bounds[column][1]
+
     def cap_supervision(self, total: float) -> None:
         """Limit the supervision hours short in all."""
         self._set_rhs(self._cap, total)
@@ -238,6 +246,10 @@ class Shortfall:
         """The most an `extra` column can reach, None as for `minimise`."""
         least = self._minimise({column: -1.0})
         return None if least is None else -least
+
+    def minimise_costs(self, costs: dict[int, float]) -> float | None:
+        """The least of a sum over columns, None as for `minimise`."""
+        return self._minimise(costs)
 
     def _minimise(self, costs: dict[int, float]) -> float | None:
         for column in self._priced.keys() - costs.keys():
