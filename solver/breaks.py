@@ -38,20 +38,22 @@ def rule_break(program: Program, head: HeadLine, lots: Counts, base: Sequence[fl
     up = head.sense is RowSense.AT_LEAST or (head.sense is RowSense.EQUAL and total < head.rhs)
     sign = 1 if up else -1
     span = len(program.phases)
-    worth, moves = {}, {}
+    worth: dict[str, float] = {}
+    before: dict[str, float] = {}
+    moves: dict[str, float] = {}
     margin = -sign * head.rhs / head.divisor
     for i, coef in head.terms:
-        name = program.categories[i // span].name
-        each = sign * float(Fraction(coef, head.divisor) / program.lots[i // span])
-        lot = float(program.lots[i // span])
-        worth[name] = each
-        moves[name] = each * lot * (float(lots[i]) - base[i])
+        j, t = divmod(i, span)
+        name, lot = program.categories[j].name, float(program.lots[j])
+        each = sign * coef / (head.divisor * lot)
+        (worth if program.phases[t].name == head.line.phase else before)[name] = each
+        moves[name] = moves.get(name, 0.0) + each * lot * (float(lots[i]) - base[i])
         margin += each * lot * base[i]
     line = head.line
     need = float(Fraction(sign * head.rhs, head.divisor))
     return Break(
         (line.name,), line.kind, line.phase, line.unit, -float(miss), worth, need, margin, moves,
-        _NOTHING, _NOTHING,
+        _NOTHING, before,
     )  # fmt: skip
 
 
