@@ -8,7 +8,7 @@ crew it accepts has been re-solved at whole lots and its head-count lines checke
 from __future__ import annotations
 
 import heapq
-from collections.abc import Callable, Iterable, Sequence
+from collections.abc import Callable, Iterable, Iterator, Sequence
 from dataclasses import dataclass
 from fractions import Fraction
 from math import ceil, gcd, inf
@@ -26,6 +26,7 @@ INTEGRAL = 1e-6
 TIE = 1e-3
 
 Lots = tuple[int, ...]
+Worth = Callable[[Floats, Floats], bool]
 
 
 @dataclass(frozen=True)
@@ -149,6 +150,13 @@ class Search:
         run = _Run(self, limits, None, None, cutoff)
         return run.cheapest_first(self._root(None, None), most, heard)
 
+    def in_order(self, limits: Limits, *, worth: Worth | None = None, cutoff: float = inf) -> InOrder:
+        """Whole crews of objective < cutoff one by one, cheapest first.
+
+        `worth(lower, upper)` may drop a box of the integer columns (see `box`) in which nothing is wanted.
+        """
+        return InOrder(_Run(self, limits, None, None, cutoff), self._root(None, None), worth)
+
     # ---- machinery ---------------------------------------------------------------------------
 
     def _root(self, lower: Floats | None, upper: Floats | None) -> _Node:
@@ -184,6 +192,22 @@ class Search:
         return ceil(bound / self.grain - 1e-6) * self.grain
 
 
+class InOrder:
+    """Crews cheapest first, to be iterated once."""
+
+    def __init__(self, run: _Run, root: _Node, worth: Worth | None) -> None:
+        self._run = run
+        self._crews = run.in_order(root, worth)
+
+    def __iter__(self) -> Iterator[Found]:
+        return self._crews
+
+    @property
+    def bound(self) -> float:
+        """No crew still to come costs less; infinite when there is none."""
+        return inf if self._run.exhausted else self._run.reached
+
+
 class _Run:
     """One search: its incumbent, its limits, its count of nodes."""
 
@@ -202,6 +226,8 @@ class _Run:
         self.least = start.objective if start else inf
         self.cutoff = cutoff
         self.nodes = 0
+        self.reached = -inf
+        self.exhausted = False
         self._most_nodes = limits.nodes
         self._until = monotonic() + limits.seconds
 
@@ -334,28 +360,31 @@ class _Run:
     ) -> tuple[list[Found], bool]:
         """Crews in order of objective; crews wait in the heap beside the nodes that may beat them."""
         found: list[Found] = []
+        for one in self.in_order(root, None):
+            if len(found) == most:
+                return found, False
+            found.append(one)
+            if heard:
+                heard(len(found))
+        return found, self.exhausted
+
+    def in_order(self, root: _Node, worth: Worth | None) -> Iterator[Found]:
+        """Crews one by one; afterwards `exhausted` tells whether these were all."""
         met: set[Lots] = set()
         heap: list[tuple[float, int, _Node | Found]] = [(-inf, 0, root)]
         pushed = 0
-        while heap:
-            if self._spent():
-                return found, False
-            _, _, top = heapq.heappop(heap)
+        while heap and not self._spent():
+            self.reached, _, top = heapq.heappop(heap)
             if isinstance(top, Found):
-                if top.lots in met:  # where a switch is on for nobody, its crew is elsewhere too
-                    continue
-                if len(found) == most:
-                    return found, False
-                met.add(top.lots)
-                found.append(top)
-                if heard:
-                    heard(len(found))
-                continue
-            for item in self._expanded(top):
-                pushed += 1
-                at = item.objective if isinstance(item, Found) else item.bound
-                heapq.heappush(heap, (at, pushed, item))
-        return found, True
+                if top.lots not in met:  # where a switch is on for nobody, its crew is elsewhere too
+                    met.add(top.lots)
+                    yield top
+            elif worth is None or worth(top.lower, top.upper):
+                for item in self._expanded(top):
+                    pushed += 1
+                    at = item.objective if isinstance(item, Found) else item.bound
+                    heapq.heappush(heap, (at, pushed, item))
+        self.exhausted = not heap
 
     def _expanded(self, node: _Node) -> list[_Node | Found]:
         solved = self._solve(node)
