@@ -7,7 +7,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from solver.answer import Policy
+from solver.answer import LineKind, Policy
 
 COPY_IMAGE = "Copy image"
 COPY_DATA = "Copy data"
@@ -126,6 +126,17 @@ def left_short(lines: str, short: str, phase: str) -> str:
     """The end of it."""
     where = f" in {phase}" if phase else ""
     return f"That leaves {lines}{where} {short} short."
+
+
+def short_unit(unit: str) -> str:
+    """A unit as it stands behind a number in a sentence."""
+    return "h" if unit.startswith("hours") else unit
+
+
+def counted(amount: str, unit: str) -> str:
+    """An amount, with how its hours are counted where that is not plain."""
+    how = unit.removeprefix("hours").strip() if unit.startswith("hours") else ""
+    return f"{amount} ({how})" if how else amount
 
 
 def miss_sentence(verb: str, moves: str, between: Sequence[str], end: str) -> str:
@@ -291,3 +302,50 @@ def titled(title: str, text: str) -> str:
 def conflict(lines: Sequence[str]) -> str:
     """Why no crew can meet the plan."""
     return "\n".join(["These lines cannot hold together:", *(f"\u2022 {line}" for line in lines)])
+
+
+# the rounding page
+
+MARGINS = "Margins of every line under every crew"
+LINES_BROKEN = "Lines broken"
+TIP_LINES_BROKEN = "How many lines the crew does not keep"
+PHASES_BROKEN = "Phases that break"
+TIP_PHASES_BROKEN = "Phases in which at least one line is not kept"
+COMING_AND_GOING = "Joiners and leavers"
+TIP_COMING_AND_GOING = (
+    "People taken on and let go over all phases; rounding each phase alone makes them come and go"
+)
+MOVING_COST = "Joining and leaving"
+TIP_MOVING_COST = "What those joiners and leavers cost"
+NONE_BROKEN = "none"
+WHOLE_JOB = "over all phases"
+NOTHING_BROKEN = "Every crew is workable."
+LINE_TIPS = {
+    LineKind.WORK: "Room: the most extra work the crew could deliver with every other line kept",
+    LineKind.SUPERVISION: "Room: hours of supervision to spare",
+    LineKind.PRESENCE: "Room: people above what the rule asks for",
+    LineKind.RATIO: "Room: people that could be added before the ratio is reached",
+    LineKind.SHARE: "Room: people above what the share asks for",
+    LineKind.BUDGET: "Room: money left",
+    LineKind.BOUND: "Room: people before the limit of the category is reached",
+}
+
+
+def of_lines(broken: int, count: int) -> str:
+    """Verdict of one crew."""
+    return f"{broken} of {count}"
+
+
+def line_short(line: str, policy: str, amount: str) -> str:
+    """A broken cell."""
+    return f"{line} is {amount} short under {policy}."
+
+
+def line_holds(line: str, policy: str, room: str) -> str:
+    """A cell that is not broken."""
+    return f"{line} holds under {policy}, {f'with {room} to spare' if room else 'with no room left'}."
+
+
+def cell_title(row: str, policy: str) -> str:
+    """Over the waterfall."""
+    return f"{row}, {policy}"

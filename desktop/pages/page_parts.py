@@ -51,6 +51,14 @@ def thin_rule() -> QFrame:
     return made
 
 
+def _scrolling(inside: QWidget) -> QScrollArea:
+    made = QScrollArea()
+    made.setWidget(inside)
+    made.setWidgetResizable(True)
+    made.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+    return made
+
+
 class AnswerPage(QWidget):
     """A page about the answer: a scrolled body, what to do where there is none, the caution at the foot.
 
@@ -64,10 +72,7 @@ class AnswerPage(QWidget):
         self.inside = QWidget()
         self.body = QVBoxLayout(self.inside)
         self.caution = label(CAUTION, Size.SMALL, "faint")
-        self._scroll = QScrollArea()
-        self._scroll.setWidget(self.inside)
-        self._scroll.setWidgetResizable(True)
-        self._scroll.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+        self._holder = _scrolling(self.inside)
         self._fade = QGraphicsOpacityEffect(self.inside)
         self._fade.setOpacity(_FADED)
         self._fade.setEnabled(False)
@@ -83,7 +88,7 @@ class AnswerPage(QWidget):
         outer.setContentsMargins(theme.px(2), theme.px(1), theme.px(2), theme.px(1))
         outer.setSpacing(theme.px(1))
         outer.addWidget(self.notice)
-        outer.addWidget(self._scroll, 1)
+        outer.addWidget(self._holder, 1)
         outer.addWidget(thin_rule())
         outer.addWidget(self.caution)
         self.body.setContentsMargins(0, 0, theme.px(1), theme.px(1))
@@ -94,7 +99,7 @@ class AnswerPage(QWidget):
         text = self.notice_text()
         self.notice.setText(text)
         self.notice.setVisible(bool(text))
-        self._scroll.setVisible(self.answers.answer is not None)
+        self._holder.setVisible(self.answers.answer is not None)
         if not self.answers.stale:
             self._fade.setEnabled(False)
         self._fade_soon.start()
@@ -120,7 +125,7 @@ class AnswerPage(QWidget):
     def changeEvent(self, event: QEvent) -> None:
         """Follow the theme."""
         super().changeEvent(event)
-        if event.type() in (QEvent.Type.PaletteChange, QEvent.Type.FontChange) and hasattr(self, "_scroll"):
+        if event.type() in (QEvent.Type.PaletteChange, QEvent.Type.FontChange) and hasattr(self, "_holder"):
             self.retouch()
 
     def retouch(self) -> None:

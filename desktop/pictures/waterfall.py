@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from PySide6.QtCore import QPointF, QRectF, Qt
-from PySide6.QtGui import QColor, QPainter, QPen
+from PySide6.QtGui import QColor, QFont, QPainter, QPen
 from PySide6.QtWidgets import QWidget
 
 from desktop import crew_words as say
@@ -15,8 +15,8 @@ from desktop.pictures.picture import Picture
 from desktop.pictures.waterfall_bars import Bar, BarKind, Miss, waterfall_bars, waterfall_sentence
 from desktop.theme import Size, Theme, current
 
-_LINE = 26.0
-_BAR = 14.0
+_LINE = 23.0
+_BAR = 13.0
 _HEADER = 22.0
 _NAME_SHARE = 0.34
 
@@ -60,7 +60,7 @@ def paint_waterfall(painter: QPainter, rect: QRectF, miss: Miss, theme: Theme) -
     """Draw the waterfall of `miss` into `rect`."""
     bars = waterfall_bars(miss)
     unit = theme.zoom
-    titles = max(text_width(theme.picture_font(), bar_title(b)) for b in bars)
+    titles = max(text_width(_font(bar, theme), bar_title(bar)) for bar in bars)
     name_width = min(titles, rect.width() * _NAME_SHARE)
     number_width = max(text_width(theme.picture_font(bold=True), figures.signed(b.size)) for b in bars)
     left = rect.left() + name_width + number_width + 36 * unit
@@ -80,11 +80,14 @@ def paint_waterfall(painter: QPainter, rect: QRectF, miss: Miss, theme: Theme) -
             _paint_link(painter, line, axis.x(bar.end), theme)
 
 
+def _font(bar: Bar, theme: Theme) -> QFont:
+    return theme.picture_font(bold=bar.kind is BarKind.END)
+
+
 def _paint_words(
     painter: QPainter, line: QRectF, bar: Bar, name_width: float, number: QRectF, theme: Theme
 ) -> None:
-    ends = bar.kind is BarKind.END
-    font = theme.picture_font(bold=ends)
+    font = _font(bar, theme)
     name = QRectF(line.left(), line.top(), name_width, line.height())
     write(painter, name, bar_title(bar), font, theme.ink, LEFT)
     box = QRectF(number.left(), line.top(), number.width(), line.height())

@@ -86,16 +86,17 @@ def waterfall_sentence(miss: Miss) -> str:
     broken = miss.broken
     bars = waterfall_bars(miss)
     moves = sorted((b for b in bars if b.kind is BarKind.MOVE), key=lambda b: -abs(b.size))
-    told = [_move_words(bar, miss) for bar in moves[:_IN_SENTENCE]]
-    rest = sum(b.size for b in moves[_IN_SENTENCE:])
+    most = len(moves) if len(moves) <= _IN_SENTENCE + 1 else _IN_SENTENCE
+    told = [_move_words(bar, miss) for bar in moves[:most]]
+    rest = sum(b.size for b in moves[most:])
     if abs(rest) > _NOTHING:
         told.append(say.others_move(*_amount(rest, broken.unit)))
     given = [
-        say.given_up(figures.quantity(bar.size, broken.unit), bar.name)
+        say.given_up(_quantity(bar.size, broken.unit), bar.name)
         for bar in bars
         if bar.kind is BarKind.GIVEN_UP
     ]
-    short = figures.quantity(broken.short, broken.unit)
+    short = say.counted(_quantity(broken.short, broken.unit), broken.unit)
     end = say.left_short(say.listed(broken.lines), short, miss.phase)
     verb = "" if miss.policy is Policy.OWN else say.ROUNDING
     return say.miss_sentence(verb, say.listed(told), [_start_words(broken), *given], end)
@@ -116,11 +117,16 @@ def _move_words(bar: Bar, miss: Miss) -> str:
 
 def _amount(size: float, unit: str) -> tuple[bool, str]:
     """Whether it gives, and how much."""
-    return size > 0, figures.quantity(abs(size), unit)
+    return size > 0, _quantity(abs(size), unit)
+
+
+def _quantity(amount: float, unit: str) -> str:
+    """`amount` in `unit`, hours in short: how they are counted is told once, at the end."""
+    return figures.quantity(amount, say.short_unit(unit))
 
 
 def _start_words(broken: Break) -> str:
     start = float(broken.fractional_margin)
     if abs(start) <= max(_NOTHING, 1e-3 * broken.short):
         return ""
-    return say.fractional_room(figures.quantity(start, broken.unit))
+    return say.fractional_room(_quantity(start, broken.unit))

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from PySide6.QtCore import QAbstractItemModel, QModelIndex, QPersistentModelIndex, QSize, Qt
-from PySide6.QtGui import QAction, QColor, QGuiApplication, QKeySequence, QPainter
+from PySide6.QtGui import QAction, QColor, QGuiApplication, QKeySequence, QPainter, QResizeEvent
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QHeaderView,
@@ -18,7 +18,9 @@ from desktop import crew_words as say
 from desktop.pictures.picture import data_text
 from desktop.theme import current
 
-_MOST_TITLE = 28  # width of row titles, in steps of the grid
+_MOST_TITLE, _LEAST_TITLE = 34, 14  # width of row titles, in steps of the grid
+_TITLE_SHARE = 0.27
+_LEAST_ROWS = 5
 
 
 class GroundDelegate(QStyledItemDelegate):
@@ -37,9 +39,13 @@ class GroundDelegate(QStyledItemDelegate):
 class QuietView(QTableView):
     """Rows and columns without frames; Ctrl+C copies the selection with its titles."""
 
-    def __init__(self, name: str, row_steps: float = 3.25, parent: QWidget | None = None) -> None:
+    def __init__(
+        self, name: str, row_steps: float = 3.25, parent: QWidget | None = None, *, fitted: bool = True
+    ) -> None:
+        """`fitted`: as high as its rows, for pages that scroll; otherwise it scrolls itself."""
         super().__init__(parent)
         self._row_steps = row_steps
+        self._fitted = fitted
         self.setObjectName("quiet")
         self.setItemDelegate(GroundDelegate(self))
         self.setAccessibleName(name)
@@ -47,9 +53,10 @@ class QuietView(QTableView):
         self.setWordWrap(False)
         self.setShowGrid(False)
         self.setCornerButtonEnabled(False)
-        self.setVerticalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
-        self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Fixed)
-        self.setSizeAdjustPolicy(QAbstractItemView.SizeAdjustPolicy.AdjustToContents)
+        if fitted:
+            self.setVerticalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+            self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Fixed)
+        self.setVerticalScrollMode(QAbstractItemView.ScrollMode.ScrollPerPixel)
         self._set_up_headers()
         copy = QAction(say.COPY_DATA, self)
         copy.setShortcut(QKeySequence.StandardKey.Copy)
@@ -88,13 +95,24 @@ class QuietView(QTableView):
     def refit(self) -> None:
         """Take the height of the rows, after rows or zoom changed."""
         self.verticalHeader().setDefaultSectionSize(current().px(self._row_steps))
-        self.verticalHeader().setMaximumWidth(current().px(_MOST_TITLE))
+        self._limit_titles()
         self.horizontalHeader().setMinimumSectionSize(current().px(8))
         rows = self.model().rowCount() if self.model() is not None else 0
         header = self.horizontalHeader().sizeHint().height()
         scroll = self.horizontalScrollBar()
         bar = scroll.sizeHint().height() if scroll.maximum() > 0 else 0
-        self.setFixedHeight(header + rows * current().px(self._row_steps) + bar + 2)
+        height = header + rows * current().px(self._row_steps) + bar + 2
+        if self._fitted:
+            self.setFixedHeight(height)
+        else:
+            self.setMaximumHeight(height)
+            self.setMinimumHeight(min(height, header + _LEAST_ROWS * current().px(self._row_steps)))
+
+    def _limit_titles(self) -> None:
+        """Row titles take at most their part of the width; longer ones are cut, with a tooltip."""
+        theme = current()
+        most = max(theme.px(_LEAST_TITLE), min(theme.px(_MOST_TITLE), round(self.width() * _TITLE_SHARE)))
+        self.verticalHeader().setMaximumWidth(most)
 
     def setModel(self, model: QAbstractItemModel | None) -> None:
         """Keep the height of the rows of `model`."""
@@ -103,6 +121,11 @@ class QuietView(QTableView):
             model.modelReset.connect(self.refit)
             self.refit()
 
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        """Follow the width."""
+        self._limit_titles()
+        super().resizeEvent(event)
+
     def minimumSizeHint(self) -> QSize:
         """As high as the content needs, narrower."""
-        return QSize(current().px(40), self.height())
+        return QSize(current().px(40), self.height() if self._fitted else current().px(16))
