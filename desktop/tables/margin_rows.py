@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from decimal import Decimal
 
 from desktop import crew_words as say
@@ -27,6 +27,7 @@ class MarginRow:
     unit: str = ""
     margins: Mapping[Policy, float] = field(default_factory=dict)
     texts: Mapping[Policy, str] = field(default_factory=dict)
+    in_full: Mapping[Policy, str] = field(default_factory=dict)
 
     @property
     def reach(self) -> float:
@@ -72,7 +73,9 @@ def _totals(plan: Plan, columns: tuple[CrewReport, ...]) -> list[MarginRow]:
 
     made = [row(say.LINES_BROKEN, say.TIP_LINES_BROKEN, _lines_broken)]
     if len(plan.phases) > 1:
-        made.append(row(say.PHASES_BROKEN, say.TIP_PHASES_BROKEN, lambda r: _phases_broken(r, plan)))
+        phases = row(say.PHASES_BROKEN, say.TIP_PHASES_BROKEN, lambda r: _phases_in_short(r, plan))
+        in_full = {r.policy: ", ".join(_phases_broken(r, plan)) for r in columns if r.crew is not None}
+        made.append(replace(phases, in_full=in_full))
         made.append(row(say.COMING_AND_GOING, say.TIP_COMING_AND_GOING, _coming_and_going))
         title = say.in_unit(say.MOVING_COST, plan.currency)
         made.append(row(title, say.TIP_MOVING_COST, lambda r: figures.money(moving_cost(plan, r.crew or {}))))
@@ -84,12 +87,18 @@ def _lines_broken(report: CrewReport) -> str:
     return say.of_lines(broken, len(report.lines)) if broken else say.NONE_BROKEN
 
 
-def _phases_broken(report: CrewReport, plan: Plan) -> str:
+def _phases_broken(report: CrewReport, plan: Plan) -> list[str]:
     names = {line.phase for line in report.lines if is_broken(line.margin)}
     broken = [phase.name for phase in plan.phases if phase.name in names]
-    if None in names:
-        broken.append(say.WHOLE_JOB)
-    return ", ".join(broken) or say.NONE_BROKEN
+    return [*broken, say.WHOLE_JOB] if None in names else broken
+
+
+def _phases_in_short(report: CrewReport, plan: Plan) -> str:
+    """The phase where there is one; their number where there are several."""
+    broken = _phases_broken(report, plan)
+    if len(broken) < 2:
+        return "".join(broken) or say.NONE_BROKEN
+    return say.of_lines(len(broken), len(plan.phases))
 
 
 def _coming_and_going(report: CrewReport) -> str:

@@ -74,7 +74,8 @@ class MarginTable(QAbstractTableModel):
         if report.crew is None:
             return report.why_none
         if margin is None:
-            return say.cell_tip(row.title, str(report.policy), row.texts.get(report.policy, ""))
+            text = row.in_full.get(report.policy) or row.texts.get(report.policy, "")
+            return say.cell_tip(row.title, str(report.policy), text)
         if is_broken(margin):
             return say.line_short(row.line, str(report.policy), figures.quantity(-margin, row.unit))
         room = figures.quantity(margin, row.unit)

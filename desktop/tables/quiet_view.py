@@ -71,6 +71,7 @@ class QuietView(QTableView):
         across.setHighlightSections(False)
         across.setMinimumSectionSize(current().px(8))
         down.setHighlightSections(False)
+        down.setTextElideMode(Qt.TextElideMode.ElideRight)
         down.setSectionResizeMode(QHeaderView.ResizeMode.Fixed)
         down.setDefaultAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
         down.setMaximumWidth(current().px(_MOST_TITLE))
