@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from PySide6.QtCore import QLocale
 
@@ -14,7 +14,7 @@ from desktop.page.margins import best_loosening, binding_lines
 from desktop.page.recommendation import Amount, Labelled, Recommendation, Stamp, Standing, Words
 from desktop.page.rounding_reasons import rounding_reasons
 from desktop.page.speech import Speech, exact_decimal
-from desktop.page.text import Run, name, plain
+from desktop.page.text import ALL_OF_IT, Run, name, plain
 from desktop.pictures.tally_layout import Tally, tally_of
 from solver.answer import Answer, Conflict, NearBest, NearCrew, Proof, Room, State
 from solver.plan import Plan
@@ -75,7 +75,7 @@ def recommend(
         prepared_by=plain(plan.prepared_by),
         stamp=stamp,
         proof=_proof(answer),
-        currency=plain(plan.currency),
+        currency=name(plan.currency, 12),
         phase_lengths=tuple(speech.periods(p.periods) for p in plan.phases),
         locale=speech.locale,
     )
@@ -107,7 +107,12 @@ def _no_consequence(answer: Answer) -> str:
 
 
 def _tally(plan: Plan, answer: Answer, chosen: Chosen | None) -> Tally | None:
-    return tally_of(plan, answer.fractional, chosen.crew) if chosen else None
+    if chosen is None:
+        return None
+    tally = tally_of(plan, answer.fractional, chosen.crew)
+    rows = tuple(replace(row, name=name(row.name, ALL_OF_IT)) for row in tally.rows)
+    phases = tuple(replace(phase, name=name(phase.name, ALL_OF_IT)) for phase in tally.phases)
+    return replace(tally, rows=rows, phases=phases)
 
 
 def _conflict(speech: Speech, conflict: Conflict | None) -> tuple[Labelled, ...]:

@@ -6,6 +6,7 @@ from collections.abc import Sequence
 from decimal import Decimal
 
 from desktop import figures
+from desktop.page.fullest import fullest
 from desktop.page.recommendation import CrewRow, CrewTable, Recommendation
 from desktop.page.speech import count_of
 from desktop.page.table import Column, Grid
@@ -21,12 +22,18 @@ def crew_grid(what: Recommendation, table: CrewTable, rows: int) -> Grid:
     shown = table.rows if len(table.rows) <= rows else _with_rest(table.rows, rows)
     columns = _Columns(what, table, shown)
     several = len(table.phases) > 1
-    feet = ("People", "Joining", "Leaving") if several else ("Together",)
+    feet = ("Together", "Joining", "Leaving") if several else ("Together",)
     return Grid("Category", tuple(row.name for row in shown), feet, columns.every())
 
 
+def _weight(row: CrewRow) -> Decimal:
+    """How much a row has to say: people there, on the books, coming and going."""
+    return max(row.heads) + row.now + row.joiners + row.leavers
+
+
 def _with_rest(rows: Sequence[CrewRow], most: int) -> tuple[CrewRow, ...]:
-    kept, rest = rows[:most], rows[most:]
+    kept = fullest(rows, [_weight(row) for row in rows], most)
+    rest = [row for row in rows if row not in kept]
     label = f"and {count_of(len(rest), 'more category', 'more categories')}"
     spans = range(len(rest[0].heads))
     summed = CrewRow(
@@ -77,7 +84,8 @@ class _Columns:
         total = sum((row.heads[at] for row in self._table.rows), ZERO)
         title = phase_titles(self._table)[at] if self._several else "Recommended"
         feet = self._feet(total, self._table.joiners[at], self._table.leavers[at])
-        return Column(title, "people", self._people(heads), feet, True)
+        numbered = self._several and phases_numbered(self._table)
+        return Column(title, "people", self._people(heads), feet, True, numbered)
 
     def _moves(self, title: str, counts: list[Decimal], per_phase: tuple[Decimal, ...], foot: int) -> Column:
         total = self._people([sum(per_phase, ZERO)])[0]

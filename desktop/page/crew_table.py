@@ -7,7 +7,7 @@ from decimal import Decimal
 from desktop.page.chosen import ZERO, Chosen, moves
 from desktop.page.recommendation import CrewRow, CrewTable
 from desktop.page.speech import exact_decimal
-from desktop.page.text import plain
+from desktop.page.text import ALL_OF_IT, name
 from solver.plan import Category, Plan
 
 
@@ -17,7 +17,7 @@ def crew_table(plan: Plan, chosen: Chosen) -> CrewTable:
     joined, left = _moves_per_phase(plan, chosen)
     running = _running(plan, chosen)
     total = sum((r.pay + r.one_off for r in rows), ZERO) + sum((money for _, money in running), ZERO)
-    return CrewTable(tuple(plain(p.name) for p in plan.phases), rows, joined, left, running, total)
+    return CrewTable(tuple(name(p.name, ALL_OF_IT) for p in plan.phases), rows, joined, left, running, total)
 
 
 def _row(plan: Plan, category: Category, chosen: Chosen) -> CrewRow:
@@ -26,7 +26,7 @@ def _row(plan: Plan, category: Category, chosen: Chosen) -> CrewRow:
     pay = sum((p.periods * category.pay * n for p, n in zip(plan.phases, heads, strict=True)), ZERO)
     opening = category.open_cost if any(heads) else ZERO
     one_off = joiners * category.join_cost + leavers * category.leave_cost + opening
-    return CrewRow(plain(category.name), category.on_books, heads, joiners, leavers, pay, one_off)
+    return CrewRow(name(category.name, ALL_OF_IT), category.on_books, heads, joiners, leavers, pay, one_off)
 
 
 def _moves_per_phase(plan: Plan, chosen: Chosen) -> tuple[tuple[Decimal, ...], tuple[Decimal, ...]]:

@@ -22,9 +22,8 @@ def binding_lines(speech: Speech, chosen: Chosen, room: Room | None) -> tuple[st
         return tuple(_tight_says(speech, m) for m in tight[:_MOST]) + _more(len(tight) - _MOST)
     works = [(m, share) for m in kept if (share := _share(speech.plan, m)) is not None]
     closest = sorted(works, key=lambda pair: pair[1])[:2]
-    if not closest:
-        return ()
-    return ("No line is without room. The closest:", *(_room_says(speech, m) for m, _ in closest))
+    leads = ("No line is without room. Closest is ", "Next is ")
+    return tuple(lead + _room_says(speech, m) for lead, (m, _) in zip(leads, closest, strict=False))
 
 
 def _more(count: int) -> tuple[str, ...]:

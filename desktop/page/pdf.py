@@ -9,6 +9,7 @@ from pathlib import Path
 from PySide6.QtCore import QBuffer, QIODevice, QMarginsF
 from PySide6.QtGui import QGuiApplication, QPagedPaintDevice, QPainter, QPdfWriter
 
+from desktop.fonts import load_fonts
 from desktop.page.asking import ask_solver
 from desktop.page.compose import recommend
 from desktop.page.layout import Sheet, lay_out
@@ -78,6 +79,7 @@ def write_page(
     plan = read_plan(plan_path)
     answer, details = ask_solver(plan, seconds)
     app = QGuiApplication.instance() or QGuiApplication(_arguments())
+    load_fonts()
     what = recommend(plan, answer, stamp(plan, Path(plan_path)), details=details)
     save_page(what, out, size=size, grey=grey)
     del app

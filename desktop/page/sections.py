@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from decimal import Decimal
+
 from desktop import figures
 from desktop.messages import CAUTION
 from desktop.page.crew_grid import crew_grid, phase_key
@@ -91,11 +93,13 @@ def _sums(what: Recommendation) -> str:
     assert what.table is not None
     if not what.table.running:
         return ""
-    extra = " and ".join(
-        f"{label} {figures.money(money, what.currency, what.locale)}" for label, money in what.table.running
-    )
-    total = figures.money(what.table.total, what.currency, what.locale)
+    extra = " and ".join(f"{label} {_money(what, money)}" for label, money in what.table.running)
+    total = _money(what, what.table.total)
     return f"Beside pay and one-off costs: {extra}; everything together {total}."
+
+
+def _money(what: Recommendation, money: Decimal) -> str:
+    return figures.money(money, what.currency, what.locale)
 
 
 def _phases(what: Recommendation, detail: Detail) -> str:

@@ -24,19 +24,24 @@ from desktop.page.text import (
 _GUTTER = 9.0
 _PAD = 1.6
 _NARROWEST_NAME = 96.0
+_NAME_SHARE = 0.25  # names wrap before columns need a second band
 _WIDEST_HEADER = 62.0
 _WIDER = 14.0
 
 
 @dataclass(frozen=True)
 class Column:
-    """Numbers under a title and a unit; `feet` are the cells of the rows below the sum rule."""
+    """Numbers under a title and a unit; `feet` are the cells of the rows below the sum rule.
+
+    `strong`: the numbers that count; `narrow`: the title wraps rather than widen the column.
+    """
 
     title: str
     unit: str
     cells: tuple[str, ...]
     feet: tuple[str, ...]
     strong: bool = False
+    narrow: bool = False
 
 
 @dataclass(frozen=True)
@@ -67,7 +72,7 @@ def table(grid: Grid, width: float, points: float, name_lines: int) -> Piece:
 
 def _name_floor(grid: Grid, width: float, points: float) -> float:
     natural = max((natural_width(text(n, points)) for n in (*grid.names, *grid.foot_names)), default=0.0)
-    return min(max(natural, _NARROWEST_NAME), width * 0.42)
+    return min(max(natural, _NARROWEST_NAME), width * _NAME_SHARE)
 
 
 def _width(column: Column, points: float) -> float:
@@ -75,16 +80,16 @@ def _width(column: Column, points: float) -> float:
     cells = max((natural_width(t) for t in _cells(column, points)), default=0.0)
     titles = max(widest_word(t) for t in _titles(column, points))
     whole = max(natural_width(t) for t in _titles(column, points))
-    return max(cells, titles, min(whole, _WIDEST_HEADER))
+    return max(cells, titles, 0.0 if column.narrow else min(whole, _WIDEST_HEADER))
 
 
 def _cells(column: Column, points: float) -> list[Text]:
-    return [_cell(column, words, points) for words in (*column.cells, *column.feet)]
+    strong = [_cell(words, points, column.strong) for words in (*column.cells, *column.feet[:1])]
+    return strong + [_cell(words, points) for words in column.feet[1:]]
 
 
-def _cell(column: Column, words: str, points: float) -> Text:
-    role = "exact" if column.strong else "ink"
-    return text(words, points, bold=column.strong, role=role, side=Side.RIGHT)
+def _cell(words: str, points: float, strong: bool = False) -> Text:
+    return text(words, points, bold=strong, role="exact" if strong else "ink", side=Side.RIGHT)
 
 
 def _titles(column: Column, points: float) -> list[Text]:
@@ -124,14 +129,15 @@ def _band(grid: Grid, band: list[_Set], width: float, points: float, name_lines:
     rows = [_header(grid.title, band, names, lefts, points)]
     rows.append(Piece(3.0, (RuleMark(0.0, 1.2, width, 0.7, "ink"),)))
     for at, name in enumerate(grid.names):
-        cells = [c.column.cells[at] for c in band]
-        rows.append(_row(name, cells, band, names, lefts, points, name_lines))
+        cells = [_cell(c.column.cells[at], points, c.column.strong) for c in band]
+        rows.append(_row(name, cells, band, names, lefts, name_lines))
         last = at == len(grid.names) - 1
         line = RuleMark(0.0, 0.9, width, 0.6 if last else 0.25, "ink" if last else "rule")
         rows.append(Piece(1.8, (line,)))
     for at, name in enumerate(grid.foot_names):
-        cells = [c.column.feet[at] for c in band]
-        rows.append(_row(name, cells, band, names, lefts, points, 1))
+        cells = [_cell(c.column.feet[at], points, c.column.strong and at == 0) for c in band]
+        if any(cell.words for cell in cells):
+            rows.append(_row(name, cells, band, names, lefts, 1))
     return stacked(rows)
 
 
@@ -174,18 +180,15 @@ def _title_stack(column: _Set, points: float) -> Piece:
 
 
 def _row(
-    name: str,
-    cells: list[str],
-    band: list[_Set],
-    names: float,
-    lefts: list[float],
-    points: float,
-    lines: int,
+    name: str, cells: list[Text], band: list[_Set], names: float, lefts: list[float], lines: int
 ) -> Piece:
+    points = cells[0].points
     label = shortened(text(name, points), names - 2.0, lines)
     high = line_count(label, names - 2.0) * LEADING * points
     marks: list[Mark] = [TextMark(0.0, _PAD, names - 2.0, label)]
-    for left, words, column in zip(lefts, cells, band, strict=True):
-        cell = _cell(column.column, words, points)
-        marks.append(TextMark(left, _PAD, column.width, cell))
+    marks += [
+        TextMark(left, _PAD, column.width, cell)
+        for left, cell, column in zip(lefts, cells, band, strict=True)
+        if cell.words
+    ]
     return Piece(high + 2 * _PAD - 1.0, tuple(marks))

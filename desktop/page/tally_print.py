@@ -11,6 +11,7 @@ from dataclasses import replace
 from PySide6.QtCore import QLocale
 
 from desktop import figures
+from desktop.page.fullest import fullest
 from desktop.page.marks import NOTHING, FiguresMark, Mark, Piece, TextMark, beside, paragraph, stacked
 from desktop.page.recommendation import Recommendation
 from desktop.page.speech import count_of
@@ -30,7 +31,8 @@ def tally_piece(what: Recommendation, width: float, rows: int) -> Piece:
     """The tally of the first `rows` categories; nothing where there is none."""
     if what.tally is None or not what.tally.rows or rows <= 0:
         return NOTHING
-    tally = replace(what.tally, rows=what.tally.rows[:rows])
+    kept = fullest(what.tally.rows, [_weight(row) for row in what.tally.rows], rows)
+    tally = replace(what.tally, rows=tuple(kept))
     one_phase = len(tally.phases) == 1
     draw = _figures_piece if one_phase else steps_piece
     picture = draw(tally, width, what.locale)
@@ -39,6 +41,10 @@ def tally_piece(what: Recommendation, width: float, rows: int) -> Piece:
         return picture
     rest = f"and {count_of(more, 'more category', 'more categories')} in the table"
     return stacked([picture, paragraph(text(rest, _KEY, role="faint"), width)])
+
+
+def _weight(row: TallyRow) -> float:
+    return max((*(row.fractional or ()), *(row.exact or ()), row.before), default=0.0)
 
 
 def _figures_piece(tally: Tally, width: float, locale: QLocale) -> Piece:

@@ -20,6 +20,8 @@ UNITS = 10  # layout units per point
 LEADING = 1.24  # line distance as a share of the size: fallback fonts are taller than the bundled one
 _RISE = 0.97  # top of the line to the baseline, as a share of the size
 ELLIPSIS = "…"
+ALL_OF_IT = 10**6  # letters
+_JOINERS = "\u200c\u200d"  # Persian and Indian scripts, and joined signs, need them
 
 
 class Side(StrEnum):
@@ -174,10 +176,8 @@ def _cut(what: Text, letters: int) -> Text:
 def plain(words: str) -> str:
     """`words` on one line: no control characters, no formatting marks that could turn the rest around."""
     spaced = "".join(" " if unicodedata.category(c) in ("Cc", "Zl", "Zp") else c for c in words)
-    kept = "".join(
-        c for c in spaced if unicodedata.category(c) not in ("Cf", "Cs", "Co") or c in "\u200c\u200d"
-    )
-    return " ".join(kept.split())
+    kept = (c for c in spaced if c in _JOINERS or unicodedata.category(c) not in ("Cf", "Cs", "Co"))
+    return " ".join("".join(kept).split())
 
 
 def name(words: str, most: int = 48) -> str:
