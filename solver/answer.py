@@ -306,6 +306,81 @@ class Steps:
     exact: bool
 
 
+@dataclass(frozen=True)
+class Critical:
+    """`stops`: the chance that a day is not covered when one given head of `category` is away."""
+
+    category: str
+    stops: float
+
+
+@dataclass(frozen=True)
+class PhaseAttendance:
+    """The days of one phase with the exact crew.
+
+    `covered` is the chance that a day is covered, `by_line` that each line is; `expected_short` is how much
+    of a line is left undone on average, in its unit per period. `error` and `expected_error` are standard
+    errors where `drawn` days were drawn, 0 where all `patterns` of attendance were looked at. `survives`:
+    whoever they are, so many may be away (None: not even everybody together covers the day); `first_miss`
+    is a set of people whose absence does stop it, empty where none was found.
+    """
+
+    phase: str
+    covered: float
+    error: float
+    by_line: Mapping[str, float]
+    expected_short: Mapping[str, float]
+    expected_error: Mapping[str, float]
+    survives: int | None
+    first_miss: Mapping[str, float]
+    critical: tuple[Critical, ...]
+    patterns: int
+    drawn: int
+
+
+@dataclass(frozen=True)
+class CrewChance:
+    """A crew and its chance: `covered` in the worst phase, `by_phase` in each."""
+
+    name: str
+    crew: Crew
+    workable: bool
+    cost: float | None
+    covered: float
+    by_phase: tuple[float, ...]
+
+
+@dataclass(frozen=True)
+class SafeCrew:
+    """The cheapest workable crew known whose days are covered with at least the chance `wanted`, `extra`
+    dearer than the exact crew. `proved`: none is cheaper; else none costs less than `bound`."""
+
+    wanted: float
+    crew: Crew
+    cost: float
+    extra: float
+    covered: float
+    by_phase: tuple[float, ...]
+    proved: bool
+    bound: float
+
+
+@dataclass(frozen=True)
+class Attendance:
+    """Answer of `attend`. `wanted` None: `why_none` says why; `beyond_budget` is then what it would take
+    without the budget. `curve` holds the cheapest crews for rising chances, beginning with the exact crew;
+    `simulated`: some chances are from drawn days."""
+
+    chance: float
+    phases: tuple[PhaseAttendance, ...]
+    wanted: SafeCrew | None
+    why_none: str
+    beyond_budget: SafeCrew | None
+    compared: tuple[CrewChance, ...]
+    curve: tuple[SafeCrew, ...]
+    simulated: bool
+
+
 def _converter() -> cattrs.Converter:
     """cattrs with `from_` written as `from`: JSON keys are words, Python's keywords are not names."""
     made = cattrs.Converter()
