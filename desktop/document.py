@@ -135,7 +135,7 @@ class Document(QObject):
 
         `unsaved`: it counts as modified, as a recovered plan does.
         """
-        self._replace(Plan() if plan is None else plan, None)
+        self._replace(Content(Plan() if plan is None else plan), None)
         if unsaved:
             self._stack.resetClean()
 
@@ -150,7 +150,7 @@ class Document(QObject):
             if problems.plan is None:
                 raise
             plan = problems.plan
-        self._replace(plan, Path(path))
+        self._replace(Content(plan), Path(path))
 
     def save(self, path: Path | None = None) -> None:
         """Write the plan to `path` (None: where it was). Raises CannotSave; ValueError without any path."""
@@ -162,18 +162,18 @@ class Document(QObject):
         self._stack.setClean()
         self.renamed.emit()
 
-    def belongs_to(self, path: Path | None) -> None:
-        """Say where the plan is to be saved, without saving: for a plan recovered after a crash."""
-        self._path = path
-        self.renamed.emit()
+    def recover(self, content: Content, path: Path | None) -> None:
+        """Take `content`, typed before a crash, as unsaved changes of the plan at `path`."""
+        self._replace(content, path)
+        self._stack.resetClean()
 
     def put(self, content: Content) -> None:
         """Set the content without history. For undo commands only: everybody else calls `edit`."""
         self._content = content
         self.changed.emit()
 
-    def _replace(self, plan: Plan, path: Path | None) -> None:
-        self._content = Content(plan)
+    def _replace(self, content: Content, path: Path | None) -> None:
+        self._content = content
         self._path = path
         self._stack.clear()
         self.replaced.emit()

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from solver.review import Problem
+
 CAUTION = (
     "Not a legal check. Working time, licences and statutory staffing or supervision ratios are set by local "
     "rules; confirm them with whoever is competent before people are put to work."
@@ -23,23 +25,45 @@ def no_answer(part: str, said: object) -> str:
 
 # the headline
 
-EMPTY_PLAN = "No plan yet"
-EMPTY_NOBODY = "Add a category: a kind of worker, what one costs and delivers."
+EMPTY_PLAN = "No crew yet"
+EMPTY_STATE = "the plan is empty"
+EMPTY_NOBODY = (
+    "Add a category: a kind of worker, what one costs and delivers. Or open an example from the File menu."
+)
 EMPTY_NOTHING_ASKED = "Add a work with its amount, or a rule about who must be there."
+FIRST_ANSWER = "Looking for the cheapest whole crew"
 IN_WORK = "working on it"
 OUT_OF_DATE = "out of date, working on the change"
-OUT_OF_DATE_PROBLEMS = "out of date: this was the crew before the last change"
 PROVED = "proved cheapest"
+PROOF_OWN = "Proved by a complete search; every line was checked again in exact arithmetic."
+PROOF_TWO = "Two solvers agree to the cent; every line was checked again in exact arithmetic."
 BEST_FOUND = "best found, at most {gap} above the cheapest possible"
 BEST_FOUND_NO_BOUND = "best found, not proved"
+STILL_WORKING = "; still working"
 IMPOSSIBLE = "No crew can meet this plan"
 IMPOSSIBLE_WHOLE = "No whole crew can meet this plan; fractional people could"
+IMPOSSIBLE_STATE = "impossible"
+CONFLICT = "These cannot hold together: {lines}"
 NOTHING_FOUND = "No workable crew found yet; one may exist"
 NOBODY_NEEDED = "Nobody is needed"
+NO_ANSWER = "No answer"
+FAILED = "the solver stopped"
+TO_BE_MENDED = "to be mended"
 ONE_PROBLEM = "One entry of the plan must be mended first"
 PROBLEMS = "{count} entries of the plan must be mended first"
 REFUSED_ENTRY = "1 entry was refused and is not counted"
 REFUSED_ENTRIES = "{count} entries were refused and are not counted"
+SEPARATOR = "   \u00b7   "
+RANGE = "{low} to {high}"
+COSTS = "costs {money}"
+FLOOR = "floor {money}"
+WHOLE_PEOPLE = "whole people cost {money} ({percent})"
+JOIN = "{count} join"
+LEAVE = "{count} leave"
+AND_MORE = "and {count} more"
+GO_THERE = "Go there"
+ASK_AGAIN = "Ask again"
+HEADLINE = "Headline"
 
 # grids
 
@@ -115,3 +139,112 @@ MOVE_ROWS = "Move {noun}"
 DELETE_QUESTION = "Delete {names}?"
 DELETE = "Delete"
 KEEP = "Keep"
+
+# rules
+
+RULE = "Rule"
+RULES = "Rules"
+SAYS = "What it says"
+RULE_TITLE = "Rule: {kind}"
+RULE_NAME = "Name"
+RULE_PHASES = "In the phases"
+SENSE = "Sense"
+PEOPLE = "People"
+WHO = "Who counts"
+COUNTED = "Category"
+COUNTS_AS = "One counts as"
+AT_MOST = "At most"
+RATIO_OF = "So many of"
+RATIO_PER = "For each of"
+SHARE_PERCENT = "Per cent"
+SHARE_WITHIN = "Of all these"
+SHARE_OF = "Must be these"
+BY_DAY = "Ask it of those present on each working day too"
+NO_RULES = "No rules yet: presence, ratio, share or budget."
+
+
+def rule_problem(problem: Problem, place: str) -> str:
+    """A problem of a rule in its own dialog, where the field is seen: `at_most: -1 is negative`."""
+    field = problem.place.removeprefix(place).lstrip(".")
+    return f"{RULE_FIELDS.get(field.split('[')[0].split('.')[0], field)}: {problem.says}"
+
+
+RULE_FIELDS = {
+    "name": RULE_NAME,
+    "weights": WHO,
+    "bound": PEOPLE,
+    "of": f"{RATIO_OF} / {SHARE_OF.lower()}",
+    "per": RATIO_PER,
+    "within": SHARE_WITHIN,
+    "at_most": AT_MOST,
+    "fraction": SHARE_PERCENT,
+    "phases": RULE_PHASES,
+}
+
+# the Plan page
+
+LENGTH = "Length, {period}s"
+LENGTH_TIP = "How many periods the whole job lasts; pay and hours are per period, amounts for the whole job."
+NOTES = "Notes"
+NOTES_HINT = "What the plan rests on, in your own words"
+MORE_COLUMNS = "More columns:"
+COLUMNS_USED = "These columns hold something."
+ADD_PHASE = "Add a phase"
+ADD_PHASE_TIP = (
+    "For jobs with a start, a peak and an end: amounts per phase, people join and leave between them."
+)
+ADD_RULE = "Add a rule"
+ADD_RULE_TIP = "A limit on head counts or money: presence, ratio, share, budget."
+
+# dialogs
+
+PROGRAM = "Full Complement"
+OK = "OK"
+CANCEL = "Cancel"
+
+# files
+
+UNTITLED = "Unsaved plan"
+OPEN = "Open"
+PLAN_FILES = "Plans (*.crew.json);;All files (*)"
+SAVE_FIRST = "Save the changes to {name} first?"
+SAVE_FIRST_MORE = "Without saving, the changes since the last save are lost."
+SAVE = "Save"
+DONT_SAVE = "Don't save"
+NOT_OPENED = "{name} was not opened."
+NOT_SAVED = "The plan was not saved."
+OPEN_ELSEWHERE = "{name} is open in another window of this program already."
+OPEN_ELSEWHERE_MORE = "If both save, the later one replaces what the other has saved. A copy has no file yet."
+OPEN_COPY = "Open a copy"
+OPEN_ANYWAY = "Open anyway"
+CHANGED_ON_DISK = "{name} was changed by another program since it was opened here."
+CHANGED_ON_DISK_MORE = "Reading it again replaces what is in the window; that can be undone."
+CHANGED_ON_DISK_SAVE = "Saving replaces what the other program has written."
+GONE_FROM_DISK = "{name} is no longer where it was. Save the plan to keep it."
+READ_AGAIN = "Read it again"
+KEEP_MINE = "Keep what is here"
+REPLACE_IT = "Replace it"
+SAVE_AS = "Save as..."
+READ_FROM_DISK = "Read again from disk"
+SAVED = "Saved as {name}."
+RECOVER = "Recover"
+DISCARD = "Discard"
+LATER = "Ask again at the next start"
+LEFT_BEHIND = "{name} had changes that were not saved when the program ended."
+LEFT_BEHIND_MORE = "The last of them was typed {when}."
+NO_RECOVERY_COPY = "No recovery copy could be written: {why}"
+LAST_PLAN_GONE = "{name}, the plan of last time, is not there any more."
+
+
+def saved(name: str, refused: int) -> str:
+    """That a plan was saved, and what of it was not."""
+    if not refused:
+        return SAVED.format(name=name)
+    entries = "1 refused entry is" if refused == 1 else f"{refused} refused entries are"
+    return f"{SAVED.format(name=name)} {entries} not in the file."
+
+
+def listed_lines(lines: tuple[str, ...], most: int = 12) -> str:
+    """One line each, the rest counted."""
+    shown = "\n".join(lines[:most])
+    return shown if len(lines) <= most else f"{shown}\nand {len(lines) - most} more"

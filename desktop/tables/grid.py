@@ -10,12 +10,12 @@ from PySide6.QtWidgets import (
     QAbstractItemDelegate,
     QAbstractItemView,
     QHeaderView,
-    QMessageBox,
     QTableView,
     QWidget,
 )
 
 from desktop import messages, theme
+from desktop.dialogs.question import Choice, Role, ask
 from desktop.tables.cell_editors import CellDelegate
 from desktop.tables.clipboard import TooLarge, block_of, text_of
 from desktop.tables.grid_model import GridModel
@@ -31,6 +31,7 @@ class Grid(QTableView):
     """
 
     remarked = Signal(str)
+    edits_rows = True  # the Edit menu works on it
 
     def __init__(self, model: GridModel, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -187,17 +188,8 @@ class Grid(QTableView):
 
     def _confirmed(self, rows: list[int], loss: str) -> bool:
         names = messages.listed(tuple(self._model.row_names[row] for row in rows))
-        box = QMessageBox(self)
-        box.setIcon(QMessageBox.Icon.Question)
-        box.setTextFormat(Qt.TextFormat.PlainText)
-        box.setWindowTitle(messages.DELETE_ROWS.format(noun=self._model.table.noun))
-        box.setText(messages.DELETE_QUESTION.format(names=names))
-        box.setInformativeText(loss)
-        yes = box.addButton(messages.DELETE, QMessageBox.ButtonRole.AcceptRole)
-        box.addButton(messages.KEEP, QMessageBox.ButtonRole.RejectRole)
-        box.setDefaultButton(yes)
-        box.exec()
-        return box.clickedButton() is yes
+        choices = (Choice("delete", messages.DELETE), Choice("cancel", messages.KEEP, Role.RejectRole))
+        return ask(self, messages.DELETE_QUESTION.format(names=names), loss, choices) == "delete"
 
     def _change(self, step: str, change: Callable[[Plan], Plan]) -> None:
         self._model.change_rows(step.format(noun=self._model.table.noun), change)

@@ -3,7 +3,7 @@ from decimal import Decimal
 
 import pytest
 
-from desktop.document import Document, Refusal
+from desktop.document import Content, Document, Refusal
 from solver.plan import Category, Plan
 from solver.planfile import CannotSave, PlanProblems, UnreadableFile, read_plan
 
@@ -113,7 +113,6 @@ def test_saving_where_nothing_can_be_written_is_a_sentence(document, tmp_path):
 
 
 def test_a_recovered_plan_counts_as_unsaved(document, tmp_path):
-    document.new(PLAN, unsaved=True)
-    document.belongs_to(tmp_path / "x.crew.json")
+    document.recover(Content(PLAN, {("a", "b", "c"): Refusal("x", "y")}), tmp_path / "x.crew.json")
     assert document.modified
     assert document.path == tmp_path / "x.crew.json"

@@ -1,0 +1,142 @@
+"""The headline above every page: the exact crew, what it costs, and how much that is worth."""
+
+from __future__ import annotations
+
+from PySide6.QtCore import QEvent, QSize, Qt, QTimer, Signal
+from PySide6.QtGui import QFontMetrics, QResizeEvent
+from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QPushButton, QSizePolicy, QVBoxLayout, QWidget
+
+from desktop import messages, theme
+from desktop.answers import Answers
+from desktop.document import Document
+from desktop.headline_words import Action, Headline, headline
+from desktop.pictures.picture import plain_tip
+from desktop.theme import Size
+
+PATIENCE = 150  # ms: an answer that comes at once never makes the headline flicker
+_BUTTONS = {Action.GO_TO: messages.GO_THERE, Action.ASK_AGAIN: messages.ASK_AGAIN}
+
+
+class HeadlineBar(QFrame):
+    """Always true: what is out of date looks it within 150 ms, and a fresh answer stands at once.
+
+    `go_to(place)` asks to show an entry of the plan.
+    """
+
+    go_to = Signal(str)
+
+    def __init__(self, document: Document, answers: Answers, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.setObjectName("headline")
+        self._document = document
+        self._answers = answers
+        self._said = headline(document, answers)
+        self.crew = _label(Size.LARGE)
+        self.facts = _label()
+        self.facts.setWordWrap(True)
+        self.state = _label()
+        self.note = _label(Size.SMALL, "short")
+        self.button = QPushButton()
+        self.button.clicked.connect(self._act)
+        self._soon = QTimer(self, singleShot=True, interval=PATIENCE)
+        self._soon.timeout.connect(self._show)
+        self._lay_out()
+        answers.changed.connect(self._on_changed)
+        document.changed.connect(self._on_changed)
+        self._show()
+
+    @property
+    def said(self) -> Headline:
+        """What is shown, as data."""
+        return self._said
+
+    def _lay_out(self) -> None:
+        step = theme.current().px(1)
+        left, right = QVBoxLayout(), QVBoxLayout()
+        for widget in (self.crew, self.facts):
+            widget.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
+            left.addWidget(widget)
+        self.state.setAlignment(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter)
+        self.note.setAlignment(Qt.AlignmentFlag.AlignRight)
+        right.addWidget(self.state)
+        right.addWidget(self.note)
+        right.addWidget(self.button, 0, Qt.AlignmentFlag.AlignRight)
+        right.addStretch(1)
+        whole = QHBoxLayout(self)
+        whole.setContentsMargins(2 * step, step, 2 * step, step)
+        whole.addLayout(left, 1)
+        whole.addSpacing(2 * step)
+        whole.addLayout(right)
+
+    def _on_changed(self) -> None:
+        """Show what changed, a step back only if nothing better follows at once."""
+        coming = headline(self._document, self._answers)
+        if coming.loud or not self._said.loud:
+            self._soon.stop()
+            self._show()
+        elif not self._soon.isActive():
+            self._soon.start()
+
+    def _show(self) -> None:
+        self._said = headline(self._document, self._answers)
+        said = self._said
+        theme.dress(self.crew, tone=said.tone if said.loud else "faint")
+        theme.dress(self.state, tone=said.tone)
+        self._fit_crew()
+        self.facts.setText(said.facts)
+        self.facts.setToolTip("")
+        self.state.setText(f"{said.sign} {said.state}")
+        self.state.setToolTip(said.tooltip)
+        self.note.setText(said.note)
+        self.note.setVisible(bool(said.note))
+        self.button.setText(_BUTTONS.get(said.action, ""))
+        self.button.setVisible(said.action is not Action.NONE)
+        self.setAccessibleName(messages.HEADLINE)
+        self.setAccessibleDescription(f"{', '.join(said.crew)}. {said.facts}. {said.state}. {said.note}")
+
+    def _fit_crew(self) -> None:
+        """As many categories as there is room for, and how many are left out."""
+        parts = self._said.crew
+        metrics = QFontMetrics(theme.current().font(Size.LARGE))
+        room = max(self.crew.width(), theme.current().px(40))
+        for count in range(len(parts), 0, -1):
+            text = _joined(parts, count)
+            if metrics.horizontalAdvance(text) <= room or count == 1:
+                break
+        self.crew.setText(metrics.elidedText(text, Qt.TextElideMode.ElideRight, room))
+        self.crew.setToolTip("" if count == len(parts) else plain_tip(", ".join(parts)))
+        self.crew.setAccessibleName(", ".join(parts))
+
+    def _act(self) -> None:
+        if self._said.action is Action.GO_TO:
+            self.go_to.emit(self._said.place)
+        elif self._said.action is Action.ASK_AGAIN:
+            self._answers.again()
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        """Fit the crew into the new width."""
+        super().resizeEvent(event)
+        self._fit_crew()
+
+    def changeEvent(self, event: QEvent) -> None:
+        """Follow the theme and the zoom."""
+        super().changeEvent(event)
+        if event.type() in (QEvent.Type.FontChange, QEvent.Type.PaletteChange) and hasattr(self, "_soon"):
+            self._fit_crew()
+
+    def minimumSizeHint(self) -> QSize:
+        """Never the reason why a window cannot be narrower."""
+        return QSize(theme.current().px(60), super().minimumSizeHint().height())
+
+
+def _label(size: Size = Size.BODY, tone: str | None = None) -> QLabel:
+    made = QLabel()
+    made.setTextFormat(Qt.TextFormat.PlainText)
+    made.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
+    return theme.dress(made, size, tone)
+
+
+def _joined(parts: tuple[str, ...], count: int) -> str:
+    shown = ", ".join(parts[:count])
+    left = len(parts) - count
+    return f"{shown} {messages.AND_MORE.format(count=left)}" if left else shown

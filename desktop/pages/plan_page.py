@@ -1,0 +1,197 @@
+"""The Plan page: what is asked, in fields, grids and sentences."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+
+from PySide6.QtCore import QSettings, Qt, Signal
+from PySide6.QtWidgets import (
+    QHBoxLayout,
+    QLabel,
+    QPushButton,
+    QSplitter,
+    QToolButton,
+    QVBoxLayout,
+    QWidget,
+)
+
+from desktop import messages, theme
+from desktop.answers import Answers
+from desktop.document import Document
+from desktop.edits import phases
+from desktop.pages.page_parts import heading, label, thin_rule
+from desktop.pages.plan_fields import PlanFields
+from desktop.rules.rule_list import RuleList
+from desktop.tables.category_table import CATEGORIES
+from desktop.tables.grid import Grid
+from desktop.tables.grid_model import GridModel
+from desktop.tables.phase_table import PHASES
+from desktop.tables.table import Table
+from desktop.tables.work_table import WORKS
+
+_GROUPS = "plan page/columns"
+
+
+class PlanPage(QWidget):
+    """Fields, the grids of categories and works, the rules, and the phases where there are several.
+
+    `remarked(sentence)` tells what a planner should know about an entry.
+    """
+
+    remarked = Signal(str)
+
+    def __init__(self, document: Document, answers: Answers, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._document = document
+        self._answers = answers
+        self.fields = PlanFields(document)
+        self.categories = self._grid(CATEGORIES)
+        self.works = self._grid(WORKS)
+        self.phases = self._grid(PHASES)
+        self.rules = RuleList(document)
+        self._group_buttons: dict[str, QToolButton] = {}
+        self._phase_part = _part(PHASES.title, [], self.phases)
+        self._lay_out()
+        self._restore_groups()
+        document.changed.connect(self._follow)
+        answers.changed.connect(self._show_problems)
+        self._follow()
+        self._show_problems()
+
+    def show_place(self, place: str) -> None:
+        """Go to the entry a problem is about, opening the columns it is in."""
+        group = self.categories_model.hidden_group_of(place)
+        if group:
+            self._group_buttons[group].setChecked(True)
+        for part in (self.fields, self.categories, self.works, self.phases, self.rules):
+            if part.show_place(place):
+                return
+        self.categories.setFocus()
+
+    @property
+    def categories_model(self) -> GridModel:
+        """The model of the grid of categories."""
+        model = self.categories.model()
+        assert isinstance(model, GridModel)
+        return model
+
+    def add_phase(self) -> None:
+        """One more phase at the end; the only one so far keeps its amounts."""
+        plan = self._document.plan
+        self._document.edit(messages.INSERT_ROW.format(noun="phase"), phases.insert(plan, len(plan.phases)))
+        self.phases.setFocus()
+        self.phases.setCurrentIndex(self.phases.model().index(len(plan.phases), 0))
+
+    # parts
+
+    def _grid(self, table: Table) -> Grid:
+        grid = Grid(GridModel(self._document, table, self), self)
+        grid.remarked.connect(self.remarked)
+        return grid
+
+    def _lay_out(self) -> None:
+        step = theme.current().px(1)
+        below = QSplitter(Qt.Orientation.Horizontal)
+        below.addWidget(self._phase_part)
+        below.addWidget(_part(WORKS.title, [self._phase_button()], self.works))
+        below.addWidget(_part(messages.RULES, [self._rule_button()], self.rules))
+        for at, share in enumerate((3, 6, 6)):
+            below.setStretchFactor(at, share)
+            below.setCollapsible(at, False)
+        whole = QSplitter(Qt.Orientation.Vertical)
+        whole.addWidget(_part(CATEGORIES.title, self._category_buttons(), self.categories))
+        whole.addWidget(below)
+        for at, share in enumerate((5, 4)):
+            whole.setStretchFactor(at, share)
+            whole.setCollapsible(at, False)
+        layout = QVBoxLayout(self)
+        layout.setContentsMargins(2 * step, step, 2 * step, step)
+        layout.setSpacing(step)
+        layout.addWidget(self.fields)
+        layout.addWidget(whole, 1)
+        layout.addWidget(thin_rule())
+        layout.addWidget(label(messages.CAUTION, theme.Size.SMALL, "faint"))
+
+    def _category_buttons(self) -> list[QWidget]:
+        made: list[QWidget] = [theme.dress(QLabel(messages.MORE_COLUMNS), theme.Size.SMALL, "faint")]
+        for key, title, tooltip in CATEGORIES.groups:
+            button = _button(title, tooltip)
+            button.setCheckable(True)
+            button.toggled.connect(self._on_groups)
+            self._group_buttons[key] = button
+            made.append(button)
+        notes = _button(messages.NOTES, messages.NOTES_HINT)
+        notes.setCheckable(True)
+        notes.toggled.connect(self.fields.notes.setVisible)
+        return [*made, notes]
+
+    def _phase_button(self) -> QToolButton:
+        button = _button(messages.ADD_PHASE, messages.ADD_PHASE_TIP)
+        button.clicked.connect(self.add_phase)
+        return button
+
+    def _rule_button(self) -> QPushButton:
+        button = QPushButton(messages.ADD_RULE)
+        button.setToolTip(messages.ADD_RULE_TIP)
+        button.setMenu(self.rules.menu())
+        return button
+
+    # following
+
+    def _on_groups(self) -> None:
+        chosen = [key for key, button in self._group_buttons.items() if button.isChecked()]
+        self.categories_model.show_groups(chosen)
+        QSettings().setValue(_GROUPS, " ".join(chosen))
+        self._mark_used_groups()
+
+    def _restore_groups(self) -> None:
+        chosen = str(QSettings().value(_GROUPS, "")).split()
+        for key, button in self._group_buttons.items():
+            button.setChecked(key in chosen)
+
+    def _follow(self) -> None:
+        self._phase_part.setVisible(len(self._document.plan.phases) > 1)
+        self._mark_used_groups()
+
+    def _mark_used_groups(self) -> None:
+        """A dot where hidden columns hold something, so that nobody overlooks a limit."""
+        plan = self._document.plan
+        titles = {key: title for key, title, _ in CATEGORIES.groups}
+        for key, button in self._group_buttons.items():
+            columns = [c for c in CATEGORIES.columns(plan) if c.group == key]
+            rows = range(len(plan.categories))
+            used = any(c.get(plan, row) not in (c.blank, 0) for c in columns for row in rows)
+            button.setText(f"{titles[key]} \u2022" if used else titles[key])
+            button.setAccessibleDescription(messages.COLUMNS_USED if used else "")
+
+    def _show_problems(self) -> None:
+        problems: Mapping[str, str] = {p.place: p.says for p in reversed(self._answers.problems)}
+        for grid in (self.categories, self.works, self.phases):
+            model = grid.model()
+            if isinstance(model, GridModel):
+                model.show_problems(problems)
+        self.rules.rule_model.show_problems(problems)
+
+
+def _button(title: str, tooltip: str) -> QToolButton:
+    made = QToolButton()
+    made.setText(title)
+    made.setToolTip(tooltip)
+    made.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+    return made
+
+
+def _part(title: str, buttons: Sequence[QWidget], view: QWidget) -> QWidget:
+    """A heading with its buttons over a view."""
+    made = QWidget()
+    head = QHBoxLayout()
+    head.addWidget(heading(title))
+    head.addStretch(1)
+    for button in buttons:
+        head.addWidget(button)
+    layout = QVBoxLayout(made)
+    layout.setContentsMargins(0, 0, 0, 0)
+    layout.setSpacing(theme.current().px(0.5))
+    layout.addLayout(head)
+    layout.addWidget(view, 1)
+    return made
