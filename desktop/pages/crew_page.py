@@ -37,7 +37,6 @@ class CrewPage(AnswerPage):
         self.clear_own = QPushButton(say.CLEAR_OWN)
         self._connect()
         self._fill()
-        self.refresh()
 
     def _connect(self) -> None:
         self.from_exact.clicked.connect(self.table.start_from_exact)

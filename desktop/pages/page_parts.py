@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from PySide6.QtCore import QEvent, Qt, QTimer
+from PySide6.QtGui import QShowEvent
 from PySide6.QtWidgets import (
     QFrame,
     QGraphicsOpacityEffect,
@@ -95,7 +96,9 @@ class AnswerPage(QWidget):
         self.body.setSpacing(theme.px(1.5))
 
     def refresh(self) -> None:
-        """Show what `answers` holds now."""
+        """Show what `answers` holds now; a page nobody sees waits until it is seen."""
+        if not self.isVisible():
+            return
         text = self.notice_text()
         self.notice.setText(text)
         self.notice.setVisible(bool(text))
@@ -122,10 +125,16 @@ class AnswerPage(QWidget):
         """Fill the body from `answers`."""
         raise NotImplementedError
 
+    def showEvent(self, event: QShowEvent) -> None:
+        """Catch up."""
+        super().showEvent(event)
+        self.refresh()
+
     def changeEvent(self, event: QEvent) -> None:
         """Follow the theme."""
         super().changeEvent(event)
-        if event.type() in (QEvent.Type.PaletteChange, QEvent.Type.FontChange) and hasattr(self, "_holder"):
+        touched = event.type() in (QEvent.Type.PaletteChange, QEvent.Type.FontChange)
+        if touched and self.isVisible():
             self.retouch()
 
     def retouch(self) -> None:

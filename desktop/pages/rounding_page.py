@@ -39,7 +39,6 @@ class RoundingPage(AnswerPage):
         self.waterfall = WaterfallPicture()
         for widget, stretch in ((self.view, 1), (self.title, 0), (self.sentence, 0), (self.waterfall, 0)):
             self.body.addWidget(widget, stretch)
-        self.refresh()
 
     def show_answer(self) -> None:
         """Fill the grid, and keep the chosen cell where it still is."""

@@ -1,0 +1,126 @@
+"""What the pages of long questions say: whole-people cost, room to move, near-best crews, steps and map.
+
+Sentences take ready-made texts of numbers (`desktop.figures`), never numbers.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+from desktop.crew_words import CATEGORY, COST, NO_CREW, in_unit, listed
+
+__all__ = ["CATEGORY", "COST", "NO_CREW", "in_unit", "listed"]
+
+PROGRESS = "Progress"
+CANCEL = "Cancel"
+ASK = "Work it out"
+CANCELLED = "Cancelled."
+NEEDS_CREW = "This needs an exact crew first."
+
+# whole-people cost
+
+CREW = "Crew"
+ABOVE_FLOOR = "above the floor"
+LADDER = "What each crew costs above the floor"
+SAVINGS = "Where the cost of whole people comes from"
+SAVING = "Saving"
+NOT_WORKABLE = "not workable"
+IF_FRACTIONAL = "if part of a person could be had"
+IF_HALF_LOT = "if the lot were half as large"
+WHOLE_PEOPLE_FREE = "Whole people cost nothing extra: the exact crew costs as much as the floor."
+NO_ONE_SAVES = "No category alone would save anything by being shared or part time."
+COST_METHOD = (
+    "The floor is the cost of the fractional crew, the optimum of the linear relaxation; no whole crew costs "
+    "less. Each saving is worked out anew with that one category fractional, or with half its lot, and all "
+    "others whole. The savings do not add up."
+)
+
+
+def breaks(lines: Sequence[str]) -> str:
+    """Beside a crew that is not workable."""
+    return f"breaks {listed(lines)}"
+
+
+def whole_people_cost(absolute: str, percent: str) -> str:
+    """The headline of the page."""
+    return f"That people are whole costs {absolute}, which is {percent} of the exact crew's cost."
+
+
+def shared(category: str, saving: str) -> str:
+    """The category worth talking about."""
+    return f"Sharing one {category} with another site, or part time, would save up to {saving}."
+
+
+# room to move
+
+ROOM_LINES = "Lines"
+ROOM_PAY = "Pay"
+LINE = "Line"
+TIGHTEN = "Can tighten\nby"
+TIP_TIGHTEN = "How far the line can tighten before the exact crew is no longer workable"
+LOOSEN = "Loosen\nby"
+TIP_LOOSEN = "The least loosening that makes a cheaper whole crew possible; none where no loosening does"
+WOULD_SAVE = "Would\nsave"
+TIP_WOULD_SAVE = "What the cheapest whole crew at that loosening costs less than the exact crew"
+NEXT_CREW = "With the crew"
+TIP_NEXT_CREW = "The cheapest whole crew at that loosening"
+DUAL = "Price for\nfractional people"
+TIP_DUAL = (
+    "Dual price: what one unit less of the line would save if people could be divided. "
+    "It does not hold for whole people."
+)
+DUAL_RANGE = "holds\nfrom, to"
+TIP_DUAL_RANGE = "The range of the line's own limit in which that price holds, for fractional people"
+NOT_BY_LOOSENING = "none"
+ROOM_INTRO = "How far each line can move: worked out with whole people, one line at a time."
+PAY_INTRO = "The pay at which the exact crew stays the cheapest, one category at a time."
+PAY_NOW = "Pay now"
+TIP_PAY_NOW = "Pay per person and period as planned"
+PAY_FROM = "Stays cheapest\nfrom"
+PAY_TO = "to"
+TIP_PAY_FROM = "Below this pay another whole crew is cheaper"
+TIP_PAY_TO = "Above this pay another whole crew is cheaper"
+NO_LIMIT = "no limit"
+CHOOSE_LINE = "Choose a line to read what loosening it would do."
+
+
+def no_cheaper(line: str) -> str:
+    """A line whose loosening helps nobody."""
+    return f"{line}: no loosening makes a cheaper whole crew possible."
+
+
+# near-best crews
+
+WITHIN = "Within"
+WITHIN_TIP = "How much more than the exact crew a crew may cost, in per cent"
+MOST = "At most"
+MOST_TIP = "How many crews are listed"
+CREWS_UNIT = " crews"
+OVER = "Above\nexact"
+TIP_OVER = "What the crew costs above the exact crew"
+TIP_NEAR_COST = "Cost of the crew"
+JOINERS = "Joiners"
+LEAVERS = "Leavers"
+PEOPLE = "People"
+TIP_PEOPLE = "Head count; over several phases, of the fullest one"
+TIGHTEST = "Tightest line"
+TIP_TIGHTEST = "The line with the least room under this crew"
+TAKE_THIS = "Take this one as own"
+TIP_TAKE_THIS = "Copy the chosen crew into your own crew, where it is appraised and can be printed"
+COMPLETE = "These are all the crews within the limit."
+NOT_COMPLETE = "There are more crews within the limit than are listed; these are the cheapest."
+NO_OTHER = "No other whole crew is within the limit."
+
+
+def taken(cost: str) -> str:
+    """After 'take this one'."""
+    return f"Now your own crew: {cost} above the exact crew."
+
+
+TAKEN_FREE = "Now your own crew; it costs as much as the exact crew."
+EDIT_TAKE = "take a near-best crew as own"
+
+
+def count_of(category: str) -> str:
+    """What a column of head counts means."""
+    return f"People of {category}"
