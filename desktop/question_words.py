@@ -26,6 +26,7 @@ SAVINGS = "Where the cost of whole people comes from"
 SAVING = "Saving"
 NOT_WORKABLE = "not workable"
 IF_FRACTIONAL = "if part of a person could be had"
+NO_SAVING = "neither way"
 IF_HALF_LOT = "if the lot were half as large"
 WHOLE_PEOPLE_FREE = "Whole people cost nothing extra: the exact crew costs as much as the floor."
 NO_ONE_SAVES = "No category alone would save anything by being shared or part time."
@@ -69,7 +70,7 @@ TIP_DUAL = (
     "Dual price: what one unit less of the line would save if people could be divided. "
     "It does not hold for whole people."
 )
-DUAL_RANGE = "holds\nfrom, to"
+DUAL_RANGE = "holds while the\nline asks for"
 TIP_DUAL_RANGE = "The range of the line's own limit in which that price holds, for fractional people"
 NOT_BY_LOOSENING = "none"
 ROOM_INTRO = "How far each line can move: worked out with whole people, one line at a time."
@@ -84,9 +85,9 @@ NO_LIMIT = "no limit"
 CHOOSE_LINE = "Choose a line to read what loosening it would do."
 
 
-def no_cheaper(line: str) -> str:
-    """A line whose loosening helps nobody."""
-    return f"{line}: no loosening makes a cheaper whole crew possible."
+def from_to(low: str, high: str) -> str:
+    """A range."""
+    return f"{low} to {high}"
 
 
 # near-best crews

@@ -23,6 +23,7 @@ QHeaderView::section {{
 }}
 QHeaderView::section:horizontal {{ padding: {half}px 3px; }}
 QTableView#quiet {{ background: {paper}; }}
+QTableView#quiet QHeaderView::section:horizontal {{ padding-left: {one}px; }}
 QTableView#quiet::item {{ border-bottom: 1px solid {rule}; padding: 0 3px; }}
 QTableView#quiet::item:focus {{ border: 2px solid {focus}; }}
 QTableCornerButton::section {{ background: {paper}; border: 0; border-bottom: 1px solid {rule}; }}
@@ -38,11 +39,12 @@ QPushButton:hover, QToolButton:hover {{ background: {selected}; }}
 QPushButton:focus, QToolButton:focus {{ border: 2px solid {focus}; padding: {half_less}px {button_less}px; }}
 QPushButton:disabled, QToolButton:disabled {{ color: {faint}; background: {paper}; }}
 QPushButton:checked, QToolButton:checked {{ background: {selected}; border-color: {ink}; }}
-QLineEdit, QPlainTextEdit, QComboBox, QAbstractSpinBox {{
+QLineEdit, QPlainTextEdit {{
   background: {cell}; color: {ink}; border: 1px solid {rule}; border-radius: 2px; padding: 2px {half}px;
 }}
-QLineEdit:focus, QPlainTextEdit:focus, QComboBox:focus, QAbstractSpinBox:focus {{
-  border: 2px solid {focus}; }}
+QLineEdit:focus, QPlainTextEdit:focus {{ border: 2px solid {focus}; }}
+QAbstractSpinBox QLineEdit, QAbstractSpinBox QLineEdit:focus, QComboBox QLineEdit {{
+  border: 0; background: transparent; }}
 QFrame[frameShape="4"], QFrame[frameShape="5"] {{ color: {rule}; }}
 QMenuBar {{ background: {paper}; color: {ink}; }}
 QMenuBar::item:selected, QMenu::item:selected {{ background: {selected}; color: {ink}; }}

@@ -35,10 +35,13 @@ def _rung(rung: Rung, detail: WholePeopleDetail) -> NamedBar:
 
 
 def saving_bars(savings: tuple[CategorySaving, ...], currency: str) -> NamedBars:
-    """Two bars per category: if it alone could be fractional, and if its lot were halved."""
+    """Two bars per category: if it alone could be fractional, and if its lot were halved; none for none."""
     bars: list[NamedBar] = []
     for saving in savings:
         first, second = saving.if_fractional, saving.if_half_lot
+        if max(first, second) < _FEW_CENTS:
+            bars.append(NamedBar(saving.category, figures.NIL, None, Tone.PLAIN, say.NO_SAVING))
+            continue
         bars.append(
             NamedBar(saving.category, figures.money(first), first, Tone.FRACTIONAL, say.IF_FRACTIONAL)
         )

@@ -133,6 +133,7 @@ class NearPage(QuestionPage):
             return
         if self.table.rows != detail.crews or not self.table.columns:
             self.table.show(detail.crews, near_columns(plan))
+            self.view.share_width([len(self.table.columns) - 1])
             if detail.crews:
                 self.view.setCurrentIndex(self.table.index(0, 0))
             self.told.setText(_completeness(detail))

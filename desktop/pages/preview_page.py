@@ -48,8 +48,8 @@ class PreviewPage(AnswerPage):
         super().__init__(answers, parent)
         self._document = document
         self._what: Recommendation | None = None
-        self.size = _choice(say.SIZE, say.TIP_SIZE, [size.value for size in PaperSize])
-        self.ink = _choice(say.INK, say.TIP_INK, [say.COLOUR, say.GREYSCALE])
+        self.paper_choice = _choice(say.SIZE, say.TIP_SIZE, [size.value for size in PaperSize])
+        self.ink_choice = _choice(say.INK, say.TIP_INK, [say.COLOUR, say.GREYSCALE])
         self.own = QCheckBox(say.OWN)
         self.own.setToolTip(say.TIP_OWN)
         self.more = _button(say.MORE, say.TIP_MORE, self.work_out_more)
@@ -65,7 +65,7 @@ class PreviewPage(AnswerPage):
     def _fill(self) -> None:
         bar = QHBoxLayout()
         bar.setSpacing(current().px(1))
-        for widget in (self.size, self.ink, self.own):
+        for widget in (self.paper_choice, self.ink_choice, self.own):
             bar.addWidget(widget)
         bar.addStretch(1)
         for button in (self.more, self.print_button, self.pdf_button):
@@ -79,8 +79,8 @@ class PreviewPage(AnswerPage):
         self.body.addStretch(1)
 
     def _connect(self) -> None:
-        self.size.currentIndexChanged.connect(self._on_choice)
-        self.ink.currentIndexChanged.connect(self._on_choice)
+        self.paper_choice.currentIndexChanged.connect(self._on_choice)
+        self.ink_choice.currentIndexChanged.connect(self._on_choice)
         self.own.toggled.connect(self.show_answer)
         self.answers.detail_changed.connect(self._on_detail)
         self._document.renamed.connect(self.show_answer)
@@ -90,7 +90,7 @@ class PreviewPage(AnswerPage):
     @property
     def grey(self) -> bool:
         """True for greyscale."""
-        return self.ink.currentIndex() == 1
+        return self.ink_choice.currentIndex() == 1
 
     def show_answer(self) -> None:
         """Lay the page out anew; only while it can be seen."""
@@ -122,7 +122,7 @@ class PreviewPage(AnswerPage):
             self.view.show_sheet(None)
             return
         try:
-            self.view.show_sheet(lay_out(self._what, paper(self.size.currentText())), self.grey)
+            self.view.show_sheet(lay_out(self._what, paper(self.paper_choice.currentText())), self.grey)
         except PageTooFull:
             self.view.show_sheet(None)
             self.tell(say.TOO_FULL)
@@ -181,7 +181,7 @@ class PreviewPage(AnswerPage):
             return
         target = path if path.suffix else path.with_suffix(".pdf")
         try:
-            save_page(self._what, target, size=self.size.currentText(), grey=self.grey)
+            save_page(self._what, target, size=self.paper_choice.currentText(), grey=self.grey)
         except CannotSave as refusal:
             self.tell(str(refusal))
         else:
@@ -209,12 +209,12 @@ class PreviewPage(AnswerPage):
         settings = QSettings()
         letter = QLocale().measurementSystem() is QLocale.MeasurementSystem.ImperialUSSystem
         size = str(settings.value(_SIZE_KEY, PaperSize.LETTER if letter else PaperSize.A4))
-        self.size.setCurrentIndex(max(0, self.size.findText(size)))
-        self.ink.setCurrentIndex(1 if settings.value(_GREY_KEY, "no") == "yes" else 0)
+        self.paper_choice.setCurrentIndex(max(0, self.paper_choice.findText(size)))
+        self.ink_choice.setCurrentIndex(1 if settings.value(_GREY_KEY, "no") == "yes" else 0)
 
     def _on_choice(self) -> None:
         settings = QSettings()
-        settings.setValue(_SIZE_KEY, self.size.currentText())
+        settings.setValue(_SIZE_KEY, self.paper_choice.currentText())
         settings.setValue(_GREY_KEY, "yes" if self.grey else "no")
         self.show_answer()
 
@@ -223,6 +223,7 @@ class PreviewPage(AnswerPage):
             self.show_answer()
 
     def showEvent(self, event: QShowEvent) -> None:
+        """Lay the page out when first seen."""
         super().showEvent(event)
         self.refresh()
 

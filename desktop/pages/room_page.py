@@ -48,8 +48,14 @@ def _next_crew(plan: Plan, room: LineRoom) -> str:
 def _dual_range(room: LineRoom) -> str:
     if not room.dual_price:
         return ""
-    low, high = (say.NO_LIMIT if x is None else figures.number(x) for x in (room.dual_from, room.dual_to))
-    return f"{low}, {high}"
+    return say.from_to(_limit(room.dual_from), _limit(room.dual_to))
+
+
+def _limit(x: float | None) -> str:
+    """One end of a range; here zero is a number, not nothing."""
+    if x is None:
+        return say.NO_LIMIT
+    return figures.number(x) if x else "0"
 
 
 def pay_columns(plan: Plan) -> list[ShownColumn[PayRange]]:
@@ -112,18 +118,8 @@ class RoomPage(QuestionPage):
             return
         self.lines.show(by_saving(detail.lines), line_columns(plan))
         self.pay.show(detail.pay, pay_columns(plan))
-        self._share_width()
+        self.line_view.share_width(i for i, column in enumerate(self.lines.columns) if column.left)
         self.line_view.setCurrentIndex(self.lines.index(0, 0))
-
-    def _share_width(self) -> None:
-        """Crews need more room than numbers."""
-        header = self.line_view.horizontalHeader()
-        at = next(i for i, c in enumerate(self.lines.columns) if c.left)
-        for column in range(len(self.lines.columns)):
-            stretch = column == at
-            header.setSectionResizeMode(
-                column, header.ResizeMode.Stretch if stretch else header.ResizeMode.ResizeToContents
-            )
 
     def _on_row(self, now: QModelIndex, _before: QModelIndex) -> None:
         self.sentence.setText(self.lines.rows[now.row()].says if now.isValid() else say.CHOOSE_LINE)

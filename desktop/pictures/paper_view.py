@@ -71,22 +71,27 @@ class PaperView(QWidget):
         return image
 
     def hasHeightForWidth(self) -> bool:
+        """True: the sheet keeps its proportions."""
         return True
 
     def heightForWidth(self, width: int) -> int:
+        """Height of the whole sheet at `width`."""
         if self._sheet is None:
             return 0
         return round(self._sheet.paper.height * self._scale(width)) + 2
 
     def sizeHint(self) -> QSize:
+        """The sheet at its widest."""
         wide = round(_WIDEST * current().zoom * (self._sheet.paper.width if self._sheet else 595))
         return QSize(wide, self.heightForWidth(wide))
 
     def resizeEvent(self, event: QResizeEvent) -> None:
+        """Draw anew at the new size."""
         self._drawn = None
         super().resizeEvent(event)
 
     def paintEvent(self, event: QPaintEvent) -> None:
+        """The sheet with a thin line around it; a thicker one shows the focus."""
         if self._sheet is None:
             return
         page = self._page()

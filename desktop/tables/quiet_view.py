@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterable
+
 from PySide6.QtCore import QAbstractItemModel, QModelIndex, QPersistentModelIndex, QSize, Qt
 from PySide6.QtGui import QAction, QColor, QGuiApplication, QKeySequence, QPainter, QResizeEvent
 from PySide6.QtWidgets import (
@@ -75,6 +77,13 @@ class QuietView(QTableView):
         down.setSectionResizeMode(QHeaderView.ResizeMode.Fixed)
         down.setDefaultAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
         down.setMaximumWidth(current().px(_MOST_TITLE))
+
+    def share_width(self, wide: Iterable[int]) -> None:
+        """Columns as narrow as their content, but those in `wide`, which share what is left."""
+        header, chosen = self.horizontalHeader(), set(wide)
+        for column in range(header.count()):
+            mode = header.ResizeMode.Stretch if column in chosen else header.ResizeMode.ResizeToContents
+            header.setSectionResizeMode(column, mode)
 
     def copy_selection(self) -> None:
         """Put the selected cells, or all where nothing is selected, on the clipboard with their titles."""
