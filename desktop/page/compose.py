@@ -14,7 +14,7 @@ from desktop.page.margins import best_loosening, binding_lines
 from desktop.page.recommendation import Amount, Labelled, Recommendation, Stamp, Standing, Words
 from desktop.page.rounding_reasons import rounding_reasons
 from desktop.page.speech import Speech, exact_decimal
-from desktop.page.text import ALL_OF_IT, Run, name, plain
+from desktop.page.text import ALL_OF_IT, Run, name, plain, sentence
 from desktop.pictures.tally_layout import Tally, tally_of
 from solver.answer import Answer, Conflict, NearBest, NearCrew, Proof, Room, State
 from solver.plan import Plan
@@ -69,7 +69,7 @@ def recommend(
         method=_method(answer, own=own),
         binding=binding_lines(speech, chosen, extra.room) if chosen else (),
         loosening=best_loosening(extra.room) if chosen and not own else "",
-        attendance=plain(extra.attendance) if chosen else "",
+        attendance=sentence(extra.attendance) if chosen else "",
         alternatives=_alternatives(speech, answer, chosen, extra.near),
         assumptions=assumptions(speech),
         prepared_by=plain(plan.prepared_by),
@@ -122,9 +122,9 @@ def _conflict(speech: Speech, conflict: Conflict | None) -> tuple[Labelled, ...]
     made = []
     for line in conflict.lines:
         where = f" in {name(line.phase, 32)}" if line.phase and phased else ""
-        repair = plain(line.repair)
+        repair = sentence(line.repair)
         way = f"Repair: {repair}." if line.move is not None and repair else "Moving it alone is not enough."
-        made.append(Labelled(f"{plain(line.says)}{where}", way.replace("..", ".")))
+        made.append(Labelled(f"{sentence(line.says)}{where}", way.replace("..", ".")))
     return tuple(made)
 
 

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from desktop.page.chosen import Chosen
 from desktop.page.speech import Speech
-from desktop.page.text import name, plain
+from desktop.page.text import name, sentence
 from solver.answer import LineKind, LineMargin, LineRoom, Room
 from solver.plan import Plan
 
@@ -15,9 +15,9 @@ _MOST = 6
 def binding_lines(speech: Speech, chosen: Chosen, room: Room | None) -> tuple[str, ...]:
     """Lines without room, most expensive first where that is known; else the tightest one."""
     kept = [m for m in chosen.lines() if m.margin >= 0]
-    prices = {(r.line, r.phase): abs(r.dual_price) for r in room.lines} if room else {}
+    savings = {(r.line, r.phase): r.saving or 0.0 for r in room.lines} if room else {}
     tight = [m for m in kept if m.margin < _NO_ROOM]
-    tight.sort(key=lambda m: -prices.get((m.line, m.phase), 0.0))  # an order only: no price is printed
+    tight.sort(key=lambda m: -savings.get((m.line, m.phase), 0.0))
     if tight:
         return tuple(_tight_says(speech, m) for m in tight[:_MOST]) + _more(len(tight) - _MOST)
     works = [(m, share) for m in kept if (share := _share(speech.plan, m)) is not None]
@@ -62,4 +62,4 @@ def best_loosening(room: Room | None) -> str:
     if not helping:
         return ""
     best: LineRoom = max(helping, key=lambda line: line.saving or 0.0)
-    return plain(best.says)
+    return sentence(best.says)

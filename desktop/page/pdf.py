@@ -24,6 +24,10 @@ DPI = 96  # the screen's: pictures keep their proportions on every device
 SECONDS = 60.0  # what the exact solve may take; the page then says "not proved"
 
 
+class CannotPaint(Exception):
+    """The device does not let itself be painted on: a printer that is gone or refuses."""
+
+
 def paint_page(painter: QPainter, sheet: Sheet, *, grey: bool = False) -> None:
     """Paint `sheet` with the painter's unit set to points of paper (1/72 inch)."""
     paint_sheet(painter, sheet, print_theme(grey))
@@ -43,10 +47,12 @@ def page_bytes(what: Recommendation, *, size: str = "A4", grey: bool = False) ->
 
 
 def paint_on(device: QPdfWriter | QPagedPaintDevice, sheet: Sheet, *, grey: bool = False) -> None:
-    """Print `sheet` on a paged device (PDF or printer), filling the paper to its edges."""
+    """Print `sheet` on a PDF file or printer, filling the paper to its edges. Raises CannotPaint."""
     device.setPageSize(sheet.paper.qt)
     device.setPageMargins(QMarginsF(0, 0, 0, 0))
-    painter = QPainter(device)
+    painter = QPainter()
+    if not painter.begin(device):
+        raise CannotPaint
     try:
         scale = device.logicalDpiX() / 72
         painter.scale(scale, scale)

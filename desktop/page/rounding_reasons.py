@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from desktop.page.recommendation import Labelled
 from desktop.page.speech import Speech, count_of, listed
-from desktop.page.text import name, plain
+from desktop.page.text import name, sentence
 from solver.answer import Answer, Break, CrewReport, LineKind, Policy, State
 from solver.plan import Plan
 
@@ -47,7 +47,7 @@ def _reason(speech: Speech, answer: Answer, group: list[CrewReport]) -> Labelled
 
 def _says(speech: Speech, answer: Answer, report: CrewReport) -> str:
     if report.crew is None:
-        return plain(report.why_none) or "There is no such crew."
+        return sentence(report.why_none) or "There is no such crew."
     if report.workable and report.cost is not None:
         return _dearer(speech, answer, report, report.cost)
     broken = sum(1 for m in report.lines if m.margin < 0)

@@ -180,6 +180,12 @@ def plain(words: str) -> str:
     return " ".join("".join(kept).split())
 
 
+def sentence(words: str, most: int = 300) -> str:
+    """A sentence made elsewhere, at most `most` letters: no plan can fill the page with one of them."""
+    shown = plain(words)
+    return shown if len(shown) <= most else shown[: most - 1].rstrip() + ELLIPSIS
+
+
 def name(words: str, most: int = 48) -> str:
     """A planner's name inside a sentence: at most `most` letters; right-to-left ones kept to themselves."""
     shown = plain(words)
