@@ -10,7 +10,7 @@ from desktop import messages, theme
 from desktop.answers import Answers
 from desktop.document import Document
 from desktop.headline_words import Action, Headline, headline
-from desktop.pictures.picture import plain_tip
+from desktop.pictures.copyable import plain_tip
 from desktop.theme import Size
 
 PATIENCE = 150  # ms: an answer that comes at once never makes the headline flicker

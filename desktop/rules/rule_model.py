@@ -10,7 +10,7 @@ from PySide6.QtGui import QBrush
 
 from desktop import messages, theme
 from desktop.document import Document
-from desktop.pictures.picture import plain_tip
+from desktop.pictures.copyable import plain_tip
 from desktop.rules.kinds import sentence
 
 Index = QModelIndex | QPersistentModelIndex

@@ -14,7 +14,7 @@ from PySide6.QtCore import QAbstractTableModel, QModelIndex, QObject, QPersisten
 
 from desktop import crew_words as say
 from desktop.document import Document
-from desktop.pictures.picture import plain_tip
+from desktop.pictures.copyable import plain_tip
 from desktop.tables.crew_rows import CrewColumn, CrewRow, RowKind, crew_columns, crew_rows
 from desktop.tables.numbers import Refused
 from desktop.tables.own_crew import own_count, own_started, with_own

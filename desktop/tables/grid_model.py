@@ -10,7 +10,7 @@ from PySide6.QtGui import QBrush
 
 from desktop import messages, theme
 from desktop.document import Document, Refusal
-from desktop.pictures.picture import plain_tip
+from desktop.pictures.copyable import plain_tip
 from desktop.tables import numbers
 from desktop.tables.column import Column
 from desktop.tables.entries import Entry, enter, restored

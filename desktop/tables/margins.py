@@ -12,8 +12,8 @@ from PySide6.QtWidgets import QStyle, QStyledItemDelegate, QStyleOptionViewItem
 from desktop import crew_words as say
 from desktop import figures
 from desktop.pictures.brush import RIGHT, rule, write
+from desktop.pictures.copyable import plain_tip
 from desktop.pictures.margin_bars import is_broken, paint_absent, paint_margin
-from desktop.pictures.picture import plain_tip
 from desktop.tables.margin_rows import MarginRow, margin_columns, margin_rows
 from desktop.theme import Size, current
 from solver.answer import Answer, CrewReport

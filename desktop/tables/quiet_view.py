@@ -17,7 +17,7 @@ from PySide6.QtWidgets import (
 )
 
 from desktop import crew_words as say
-from desktop.pictures.picture import data_text
+from desktop.pictures.copyable import data_text
 from desktop.theme import current
 
 _MOST_TITLE, _LEAST_TITLE = 34, 14  # width of row titles, in steps of the grid

@@ -8,7 +8,7 @@ from typing import Any, Generic, TypeVar
 
 from PySide6.QtCore import QAbstractTableModel, QModelIndex, QPersistentModelIndex, Qt
 
-from desktop.pictures.picture import plain_tip
+from desktop.pictures.copyable import plain_tip
 from desktop.theme import current
 
 Index = QModelIndex | QPersistentModelIndex
