@@ -248,3 +248,33 @@ def listed_lines(lines: tuple[str, ...], most: int = 12) -> str:
     """One line each, the rest counted."""
     shown = "\n".join(lines[:most])
     return shown if len(lines) <= most else f"{shown}\nand {len(lines) - most} more"
+
+
+# the window
+
+PAGES = "Pages"
+HELP = "Help"
+HELP_WORDS = "Words"
+HELP_KEYS = "Keys"
+ABOUT_TITLE = "About Full Complement"
+ABOUT = "Turns a workload into a whole number of people of each category, proved cheapest."
+NOT_INSTALLED = "not installed"
+NO_RECENT = "No plans yet"
+
+# what nobody expected
+
+UNEXPECTED = "Something unexpected went wrong. What you typed is still here."
+UNEXPECTED_MORE = "Please save the plan. The details are in the log file: {log}"
+COPY_DETAILS = "Copy details"
+GO_ON = "Go on"
+
+# the command
+
+USAGE = """\
+full-complement                     open the window with the last plan, or an example
+full-complement PLAN                open the window with this plan
+full-complement page PLAN OUT.pdf   write the page that gets signed; needs no display
+full-complement --version           say which version this is
+Everything else: python -m solver --help"""
+NO_DISPLAY = "No display was found, so the page and the answer of {name} are written here: {page} and {text}."
+PAGE_WRITTEN = "The page was written to {out}."

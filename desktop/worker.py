@@ -18,9 +18,19 @@ _LAST_WORDS = 8_000  # bytes of the error stream that are kept for the log
 
 def worker_command() -> tuple[str, ...]:
     """How a solver process is started: the bundle starts itself, everything else starts Python."""
+    return solver_command("worker")
+
+
+def solver_command(verb: str) -> tuple[str, ...]:
+    """The command that runs `verb` of the solver, from `solver_folder()`."""
     if getattr(sys, "frozen", False):
-        return (sys.executable, "--worker")
-    return (sys.executable, "-m", "solver", "worker")
+        return (sys.executable, f"--{verb}")
+    return (sys.executable, "-m", "solver", verb)
+
+
+def solver_folder() -> str:
+    """The folder `python -m` looks in first: ours, never the user's, which may hold a json.py of its own."""
+    return str(Path(solver.__file__).parents[1])
 
 
 class Worker(QObject):
@@ -40,8 +50,7 @@ class Worker(QObject):
         self._process = QProcess(self)
         self._process.setProgram((command or worker_command())[0])
         self._process.setArguments(list((command or worker_command())[1:]))
-        # the folder `python -m` looks in first: ours, never the user's, which may hold a json.py of its own
-        self._process.setWorkingDirectory(str(Path(solver.__file__).parents[1]))
+        self._process.setWorkingDirectory(solver_folder())
         self._process.readyReadStandardOutput.connect(self._read)
         self._process.readyReadStandardError.connect(self._listen)
         self._process.finished.connect(self._on_finished)

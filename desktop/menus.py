@@ -1,0 +1,105 @@
+"""The menus of the window: what they hold, and what their entries call."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from functools import partial
+from pathlib import Path
+
+from PySide6.QtGui import QAction, QActionGroup, QKeySequence
+from PySide6.QtWidgets import QMenu, QMenuBar, QWidget
+
+import resources
+from desktop import messages, recent
+from desktop.dialogs.about_dialog import about_dialog
+from desktop.dialogs.help_dialog import help_dialog
+from desktop.files import Files
+from desktop.look import Look, Palette
+from desktop.rail import PageSpec
+
+Keys = QKeySequence.StandardKey
+_PALETTES = {Palette.SYSTEM: "As the &system", Palette.LIGHT: "&Light", Palette.DARK: "&Dark"}
+
+
+def add(
+    menu: QMenu, text: str, do: Callable[[], object], keys: QKeySequence.StandardKey | str | None = None
+) -> QAction:
+    """One entry of `menu`."""
+    action = menu.addAction(text)
+    if isinstance(keys, str):
+        action.setShortcut(keys)
+    elif keys is not None:
+        action.setShortcuts(keys)
+    action.triggered.connect(lambda _checked=False: do())
+    return action
+
+
+def fill_file_menu(menu: QMenu, files: Files, close: Callable[[], object]) -> None:
+    """New, open, save, and leave."""
+    add(menu, "&New", files.new, Keys.New)
+    add(menu, "&Open...", files.ask_and_open, Keys.Open)
+    latest = menu.addMenu("Open &recent")
+    latest.aboutToShow.connect(lambda: _fill_recent(latest, files))
+    examples = menu.addMenu("Open an &example")
+    for path in resources.example_paths():
+        add(examples, _example_title(path), partial(files.open_example, path))
+    menu.addSeparator()
+    add(menu, "&Save", files.save, Keys.Save)
+    add(menu, "Save &as...", files.save_as, Keys.SaveAs)
+    menu.addSeparator()
+    leave = add(menu, "&Quit", close, Keys.Quit)
+    leave.setMenuRole(QAction.MenuRole.QuitRole)
+
+
+def _fill_recent(menu: QMenu, files: Files) -> None:
+    menu.clear()
+    paths = recent.recent()
+    for path in paths:
+        entry = add(menu, _plain(path.name), partial(files.open, path))
+        entry.setStatusTip(str(path))
+    if not paths:
+        menu.addAction(messages.NO_RECENT).setEnabled(False)
+        return
+    menu.addSeparator()
+    add(menu, "&Clear the list", recent.forget_all)
+
+
+def _example_title(path: Path) -> str:
+    words = path.name.split(".")[0].replace("-", " ")
+    return words[:1].upper() + words[1:]
+
+
+def _plain(text: str) -> str:
+    """A name in a menu, where & would underline the next letter."""
+    return text.replace("&", "&&")
+
+
+def fill_view_menu(menu: QMenu, pages: tuple[PageSpec, ...], go: Callable[[int], object], look: Look) -> None:
+    """The pages, zoom and palette."""
+    for at, page in enumerate(pages):
+        add(menu, _plain(page.title), partial(go, at), page.shortcut).setStatusTip(page.tooltip)
+    menu.addSeparator()
+    add(menu, "Zoom &in", partial(look.zoom_by, 1), Keys.ZoomIn)
+    add(menu, "Zoom &out", partial(look.zoom_by, -1), Keys.ZoomOut)
+    add(menu, "&Normal size", partial(look.zoom_to, 1.0), "Ctrl+0")
+    colours = menu.addMenu("&Colours")
+    group = QActionGroup(menu)
+    for palette, title in _PALETTES.items():
+        action = add(colours, title, partial(look.choose, palette))
+        action.setCheckable(True)
+        action.setChecked(look.palette is palette)
+        group.addAction(action)
+
+
+def fill_help_menu(menu: QMenu, window: QWidget) -> None:
+    """Help and About."""
+    add(menu, "&Words and keys", lambda: help_dialog(window).exec(), Keys.HelpContents)
+    about = add(menu, "&About Full Complement", lambda: about_dialog(window).exec())
+    about.setMenuRole(QAction.MenuRole.AboutRole)
+
+
+def menu_of(bar: QMenuBar, title: str) -> QMenu:
+    """One more menu of `bar`."""
+    menu = bar.addMenu(title)
+    menu.setToolTipsVisible(True)
+    return menu

@@ -1,0 +1,101 @@
+"""The pages of the window: which there are, and the rail at the left that leads to them."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+from importlib import import_module
+
+from PySide6.QtCore import QSize, Qt, Signal
+from PySide6.QtWidgets import QListWidget, QListWidgetItem, QStackedWidget, QWidget
+
+from desktop import messages, theme
+from desktop.answers import Answers
+from desktop.document import Document
+
+Factory = Callable[[Document, Answers], QWidget]
+
+
+@dataclass(frozen=True)
+class PageSpec:
+    """One page: its title, what it is for, the keys that lead to it, and where its class is.
+
+    The module is imported when the page is first shown, so that the window is there sooner.
+    """
+
+    title: str
+    tooltip: str
+    shortcut: str
+    module: str
+    name: str
+
+    def make(self, document: Document, answers: Answers) -> QWidget:
+        """A new page."""
+        factory: Factory = getattr(import_module(self.module), self.name)
+        return factory(document, answers)
+
+
+_HOME = "desktop.pages"
+
+PAGES: tuple[PageSpec, ...] = (
+    PageSpec("Plan", "What is asked", "Ctrl+1", f"{_HOME}.plan_page", "PlanPage"),
+    PageSpec("Crew", "Who, and how many", "Ctrl+2", f"{_HOME}.crew_page", "CrewPage"),
+    PageSpec("Rounding", "What rounding breaks, and why", "Ctrl+3", f"{_HOME}.rounding_page", "RoundingPage"),
+    PageSpec("Whole people", "What whole people cost", "Ctrl+4", f"{_HOME}.cost_page", "CostPage"),
+    PageSpec("Room", "How far each line can move", "Ctrl+5", f"{_HOME}.room_page", "RoomPage"),
+    PageSpec("Near best", "Other good crews", "Ctrl+6", f"{_HOME}.near_page", "NearPage"),
+    PageSpec("The page", "As it is printed", "Ctrl+P", f"{_HOME}.preview_page", "PreviewPage"),
+)
+
+
+class Rail(QListWidget):
+    """Titles of the pages, one above the other."""
+
+    def __init__(self, pages: Sequence[PageSpec], parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.setObjectName("rail")
+        self.setAccessibleName(messages.PAGES)
+        self.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        for page in pages:
+            item = QListWidgetItem(page.title, self)
+            item.setToolTip(f"{page.tooltip} ({page.shortcut})")
+        self.setCurrentRow(0)
+        self.fit()
+
+    def fit(self) -> None:
+        """As wide as the longest title, after the zoom changed."""
+        self.setFixedWidth(self.sizeHintForColumn(0) + theme.current().px(1))
+
+    def sizeHint(self) -> QSize:
+        """Narrow: pages need the width."""
+        return QSize(self.width(), theme.current().px(30))
+
+
+class PageStack(QStackedWidget):
+    """The pages themselves, each made when it is first shown. `shown(page)` when another one is."""
+
+    shown = Signal(QWidget)
+
+    def __init__(
+        self, pages: Sequence[PageSpec], document: Document, answers: Answers, parent: QWidget | None = None
+    ) -> None:
+        super().__init__(parent)
+        self._pages = pages
+        self._document = document
+        self._answers = answers
+        self._made: dict[int, QWidget] = {}
+
+    def show_page(self, at: int) -> QWidget:
+        """Bring the page at `at` to the front."""
+        if at not in self._made:
+            page = self._pages[at].make(self._document, self._answers)
+            self._made[at] = page
+            self.addWidget(page)
+        self.setCurrentWidget(self._made[at])
+        self.shown.emit(self._made[at])
+        return self._made[at]
+
+    def made(self, title: str) -> QWidget | None:
+        """The page called `title`, None while nobody has looked at it."""
+        found = (at for at, page in enumerate(self._pages) if page.title == title)
+        return self._made.get(next(found, -1))
