@@ -125,3 +125,57 @@ EDIT_TAKE = "take a near-best crew as own"
 def count_of(category: str) -> str:
     """What a column of head counts means."""
     return f"People of {category}"
+
+
+# workload steps
+
+STAIRCASE = "Cost over workload"
+STEPS = "Steps"
+FROM = "From"
+TO = "To"
+ALL_WORKS = "All works together"
+WORK = "Work"
+WORKLOAD = "Workload"
+TIP_WORKLOAD = "Type a workload, or drag the line in the picture, or move it with the arrow keys"
+RANGE = "Range"
+RANGE_TIP = "Which part of the workload is looked at, in per cent of today's"
+RANGE_TO = "to"
+CHANGE = "Against the step before"
+TIP_STEP_FROM = "The least workload of the step"
+TIP_STEP_TO = "The largest workload its crew serves at least cost"
+TIP_STEP_CREW = "The cheapest crew in this step"
+TIP_STEP_COST = "Cost of the crew at the end of the step"
+TIP_CHANGE = "Who is added or no longer needed"
+BEYOND_STEPS = "No crew of the staircase serves this workload."
+ANOTHER_SPREAD = "the same people, spread otherwise"
+STEPS_EXACT = "Every border of a step is exact."
+STEPS_SLOPING = (
+    "Overtime or bought-in work makes the cost slope within a step; borders are right to 0.1 % of the range."
+)
+TODAY = "today"
+KEY_EXACT, KEY_FLOOR, KEY_UP = "cheapest whole crew", "fractional crew", "fractional crew rounded up"
+
+
+def workload_axis(work: str | None, unit: str) -> str:
+    """Title of the axis of workloads."""
+    return in_unit(work, unit) if work else "All works, % of today"
+
+
+def stairs_described(count: int, today: str) -> str:
+    """The staircase in words."""
+    return f"{count} steps; today's workload is {today}. The table lists every step."
+
+
+def crew_at(amount: str, crew: str, cost: str) -> str:
+    """The crew at the workload looked at."""
+    return f"At {amount}: {crew}, {cost}."
+
+
+def holds_up_to(amount: str, change: str, more: str) -> str:
+    """How far a crew holds and what comes then."""
+    return f"Holds up to {amount}; then {change}, for {more} more."
+
+
+def holds_to_the_end(amount: str) -> str:
+    """The last step."""
+    return f"Holds up to {amount}, the end of the range."

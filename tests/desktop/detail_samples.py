@@ -2,8 +2,11 @@
 
 from __future__ import annotations
 
+from itertools import pairwise
+
 from solver.answer import (
     CategorySaving,
+    FloorPoint,
     LineKind,
     LineRoom,
     NearBest,
@@ -11,6 +14,8 @@ from solver.answer import (
     PayRange,
     Room,
     Rung,
+    Step,
+    Steps,
     WholePeopleDetail,
 )
 from tests.desktop.samples import crew
@@ -102,3 +107,16 @@ def near_detail() -> NearBest:
         ),
         complete=True,
     )
+
+
+def steps_detail() -> Steps:
+    """A staircase of the planting work: 1 more hand per step, one step sloping with overtime."""
+    borders = (26000, 34000, 41000, 48000, 53400, 66000, 80000, 104000)
+    made = []
+    for at, (low, high) in enumerate(pairwise(borders)):
+        cost = 70000.0 + 9000 * at
+        slope = 1500.0 if at == 4 else 0.0
+        made.append(Step(low, high, crew(2 + at // 3, 4 + at, 6, 8, 0.5), cost + slope, cost))
+    floor = tuple(FloorPoint(x, 64000 + 0.76 * (x - 26000)) for x in (26000, 60000, 104000))
+    up = tuple(FloorPoint(p.amount, p.cost + 9000) for p in floor)
+    return Steps("Planting", "trees", 52000, tuple(made), floor, up, False)

@@ -1,0 +1,93 @@
+"""The base of pictures with axes. Only pictures import pyqtgraph's drawing widgets."""
+
+from __future__ import annotations
+
+from typing import Any
+
+import pyqtgraph as pg
+from PySide6.QtCore import QEvent, Qt
+from PySide6.QtGui import QFocusEvent, QPixmap
+from PySide6.QtWidgets import QVBoxLayout, QWidget
+
+from desktop.pictures.copyable import Copyable
+from desktop.theme import Size, Theme, current
+
+
+class PlotPicture(Copyable):
+    """A plot in the current theme. Subclasses give `redraw(theme)`, which fills the emptied plot."""
+
+    def __init__(self, name: str, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.plot = pg.PlotWidget(self)
+        self.plot.setMenuEnabled(False)
+        self.plot.hideButtons()
+        self.plot.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+        self.plot.getPlotItem().getViewBox().setMouseEnabled(x=False, y=False)
+        layout = QVBoxLayout(self)
+        layout.setContentsMargins(2, 2, 2, 2)
+        layout.addWidget(self.plot)
+        self.setAccessibleName(name)
+        self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+        self.offer_copies()
+        self.touch()
+
+    def redraw(self, theme: Theme) -> None:
+        """Draw everything into the emptied plot."""
+        raise NotImplementedError
+
+    def touch(self) -> None:
+        """Draw anew in the current theme."""
+        theme = current()
+        self.plot.clear()
+        self.plot.setBackground(theme.paper)
+        for side in ("left", "bottom"):
+            axis = self.plot.getAxis(side)
+            axis.setPen(pg.mkPen(theme.rule))
+            axis.setTextPen(pg.mkPen(theme.faint))
+            axis.setTickFont(theme.font(Size.SMALL))
+        self._show_focus()
+        self.redraw(theme)
+
+    def title_axes(self, bottom: str, left: str) -> None:
+        """Titles of both axes, as typed: pyqtgraph would read them as HTML."""
+        theme = current()
+        style: dict[str, Any] = {"color": theme.faint.name(), "font-size": f"{theme.points(Size.SMALL)}pt"}
+        self.plot.setLabel("bottom", _escaped(bottom), **style)
+        self.plot.setLabel("left", _escaped(left), **style)
+
+    def fresh_legend(self) -> None:
+        """An empty legend at the top left, filled by the names of what is plotted next."""
+        theme = current()
+        legend = self.plot.addLegend(offset=(theme.px(1), theme.px(1)))
+        legend.clear()
+        legend.setLabelTextColor(theme.ink)
+        legend.setLabelTextSize(f"{theme.points(Size.SMALL)}pt")
+
+    def pixmap(self) -> QPixmap:
+        """The picture as on the screen."""
+        return QPixmap(self.plot.grab())
+
+    def _show_focus(self) -> None:
+        theme = current()
+        colour = theme.focus if self.hasFocus() else theme.paper
+        self.plot.setStyleSheet(f"border: 2px solid {colour.name()};")
+
+    def focusInEvent(self, event: QFocusEvent) -> None:
+        """Show the focus."""
+        super().focusInEvent(event)
+        self._show_focus()
+
+    def focusOutEvent(self, event: QFocusEvent) -> None:
+        """Hide the focus."""
+        super().focusOutEvent(event)
+        self._show_focus()
+
+    def changeEvent(self, event: QEvent) -> None:
+        """Follow the theme; Qt sends palette changes before there is a plot."""
+        super().changeEvent(event)
+        if event.type() == QEvent.Type.PaletteChange and hasattr(self, "plot"):
+            self.touch()
+
+
+def _escaped(text: str) -> str:
+    return text.replace("&", "&amp;").replace("<", "&lt;").replace(">", "&gt;")
