@@ -16,7 +16,7 @@ from desktop.page.rounding_reasons import rounding_reasons
 from desktop.page.speech import Speech, exact_decimal
 from desktop.page.text import ALL_OF_IT, Run, name, plain, sentence
 from desktop.pictures.tally_layout import Tally, tally_of
-from solver.answer import Answer, Conflict, NearBest, NearCrew, Proof, Room, State
+from solver.answer import Answer, Conflict, Conflicting, NearBest, NearCrew, Proof, Room, State
 from solver.plan import Plan
 
 
@@ -115,6 +115,17 @@ def _tally(plan: Plan, answer: Answer, chosen: Chosen | None) -> Tally | None:
     return replace(tally, rows=rows, phases=phases)
 
 
+_SHARE = "Repair: share people with another site, or have them part time."
+
+
+def _repair(line: Conflicting) -> str:
+    """How this member of the conflict alone could give; whole people themselves may be one."""
+    if line.kind is None:
+        return _SHARE
+    repair = sentence(line.repair).rstrip(".")
+    return f"Repair: {repair}." if line.move is not None and repair else "Moving it alone is not enough."
+
+
 def _conflict(speech: Speech, conflict: Conflict | None) -> tuple[Labelled, ...]:
     if conflict is None:
         return ()
@@ -122,24 +133,24 @@ def _conflict(speech: Speech, conflict: Conflict | None) -> tuple[Labelled, ...]
     made = []
     for line in conflict.lines:
         where = f" in {name(line.phase, 32)}" if line.phase and phased else ""
-        repair = sentence(line.repair)
-        way = f"Repair: {repair}." if line.move is not None and repair else "Moving it alone is not enough."
-        made.append(Labelled(f"{sentence(line.says)}{where}", way.replace("..", ".")))
+        says = sentence(line.says)
+        made.append(Labelled(f"{says[:1].upper()}{says[1:]}{where}", _repair(line)))
     return tuple(made)
 
 
 def _costs(speech: Speech, answer: Answer, chosen: Chosen | None, *, own: bool) -> tuple[Amount, ...]:
-    made = []
+    made: list[Amount] = []
+    if answer.exact is None:
+        return ()
     if answer.floor is not None:
         made.append(Amount("Floor (fractional people)", speech.money(answer.floor)))
-    if answer.exact is not None:
-        proved = answer.state is State.PROVED
-        label = "Exact cost (whole people)" if proved else "Cost of the best crew found"
-        made.append(Amount(label, speech.money(answer.exact.cost), not own))
-        if answer.whole_people_cost is not None:
-            gap = answer.whole_people_cost
-            share = f" ({speech.percent(gap.percent)})" if gap.percent else ""
-            made.append(Amount("Whole-people cost", f"{speech.money(gap.absolute)}{share}"))
+    proved = answer.state is State.PROVED
+    label = "Exact cost (whole people)" if proved else "Cost of the best crew found"
+    made.append(Amount(label, speech.money(answer.exact.cost), not own))
+    if answer.whole_people_cost is not None:
+        gap = answer.whole_people_cost
+        share = f" ({speech.percent(gap.percent)})" if gap.percent else ""
+        made.append(Amount("Whole-people cost", f"{speech.money(gap.absolute)}{share}"))
     if own and chosen is not None and chosen.cost is not None:
         made.append(Amount("This crew, chosen by hand", speech.money(chosen.cost), True))
     return tuple(made)

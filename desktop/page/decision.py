@@ -156,7 +156,7 @@ def banner(speech: Speech, answer: Answer, chosen: Chosen | None, *, own: bool) 
     if own and chosen is not None:
         return _own_banner(speech, answer, chosen)
     if answer.state is State.IMPOSSIBLE:
-        return Banner("No workable crew exists", _impossible(answer))
+        return Banner("No workable crew exists", _impossible(speech, answer))
     if answer.exact is None:
         says = "No crew that keeps every line was found in the time given; it is not proved that none exists."
         return Banner("No crew to recommend yet", says)
@@ -165,9 +165,10 @@ def banner(speech: Speech, answer: Answer, chosen: Chosen | None, *, own: bool) 
     return None
 
 
-def _impossible(answer: Answer) -> str:
+def _impossible(speech: Speech, answer: Answer) -> str:
     if answer.conflict is not None and answer.conflict.whole_people:
-        return "No whole number of people keeps every line of this plan; parts of people would."
+        price = f", at {speech.money(answer.floor)}" if answer.floor is not None else ""
+        return f"No whole number of people keeps every line of this plan; parts of people would{price}."
     return "No number of people, whole or not, keeps every line of this plan."
 
 

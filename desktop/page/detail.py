@@ -1,8 +1,9 @@
 """How much of the recommendation is printed, and the order in which detail goes when the page is full.
 
-The order: air and type size (never below 8 pt) - outputs and other assumptions - the tally's rows - near-best
-crews - reasons against the less usual roundings - binding lines - rows of the table, which then share one
-line ("and 7 more categories"). Decision, totals, costs, caution, signatures and origin always stay.
+The order: air and type size (never below 8 pt) - outputs and other assumptions - the tally's counts per
+phase, then its rows - near-best crews - reasons against the less usual roundings - binding lines - rows of the
+table, which then share one line ("and 7 more categories"). Decision, totals, costs, caution, signatures and
+origin always stay.
 """
 
 from __future__ import annotations
@@ -24,6 +25,7 @@ class Detail:
     assumptions: int = ALL
     listed: bool = True
     tally: int = ALL
+    compact: bool = False
     alternatives: int = 2
     rounding: int = ALL
     binding: int = ALL
@@ -42,14 +44,15 @@ _DROPS: tuple[dict[str, float | int | bool], ...] = (
     {"tally": 12},
     {"assumptions": 8},
     {"headline": 13.0, "body": 8.0, "air": 0.55},
+    {"compact": True},
     {"tally": 8},
     {"assumptions": 5},
     {"name_lines": 2},
-    {"wording": 1},
     {"tally": 6},
     {"assumptions": 3},
     {"alternatives": 1},
     {"tally": 4},
+    {"wording": 1},
     {"rounding": 4},
     {"binding": 3},
     {"assumptions": 0},

@@ -50,7 +50,7 @@ def _upper(what: Recommendation, width: float, detail: Detail) -> list[Piece]:
         sections.banner(what, width),
         sections.decision(what, width, detail),
         sections.conflict(what, width, detail) if what.table is None else NOTHING,
-        tally_piece(what, width, detail.tally),
+        tally_piece(what, width, detail),
         sections.crew(what, width, detail),
         _two_columns(what, width, detail),
         sections.assumptions(what, width, detail),

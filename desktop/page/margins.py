@@ -3,13 +3,14 @@
 from __future__ import annotations
 
 from desktop.page.chosen import Chosen
-from desktop.page.speech import Speech
+from desktop.page.speech import Speech, listed
 from desktop.page.text import name, sentence
 from solver.answer import LineKind, LineMargin, LineRoom, Room
 from solver.plan import Plan
 
 _NO_ROOM = 5e-4  # below what is printed of any margin
 _MOST = 6
+_PHASES_NAMED = 3
 
 
 def binding_lines(speech: Speech, chosen: Chosen, room: Room | None) -> tuple[str, ...]:
@@ -19,7 +20,10 @@ def binding_lines(speech: Speech, chosen: Chosen, room: Room | None) -> tuple[st
     tight = [m for m in kept if m.margin < _NO_ROOM]
     tight.sort(key=lambda m: -savings.get((m.line, m.phase), 0.0))
     if tight:
-        return tuple(_tight_says(speech, m) for m in tight[:_MOST]) + _more(len(tight) - _MOST)
+        told = [
+            _tight_says(speech, line, [m.phase for m in tight if m.line == line]) for line in _names(tight)
+        ]
+        return tuple(told[:_MOST]) + _more(len(told) - _MOST)
     works = [(m, share) for m in kept if (share := _share(speech.plan, m)) is not None]
     closest = sorted(works, key=lambda pair: pair[1])[:2]
     leads = ("No line is without room. Closest is ", "Next is ")
@@ -36,8 +40,21 @@ def _where(speech: Speech, margin: LineMargin) -> str:
     return f"{name(margin.line, 40)} in {name(margin.phase, 24)}"
 
 
-def _tight_says(speech: Speech, margin: LineMargin) -> str:
-    return f"{_where(speech, margin)}: no room left"
+def _names(margins: list[LineMargin]) -> list[str]:
+    """The lines, each once, in order."""
+    return list(dict.fromkeys(m.line for m in margins))
+
+
+def _tight_says(speech: Speech, line: str, phases: list[str | None]) -> str:
+    """One sentence per line, however many phases it is tight in."""
+    every = speech.plan.phases
+    named = [name(p.name, 24) for p in every if p.name in phases]
+    if len(every) == 1 or not named:
+        return f"{name(line, 40)}: no room left"
+    where = "every phase" if len(named) == len(every) else listed(named)
+    if len(named) > _PHASES_NAMED and len(named) < len(every):
+        where = f"{len(named)} of {len(every)} phases"
+    return f"{name(line, 40)}: no room left in {where}"
 
 
 def _room_says(speech: Speech, margin: LineMargin) -> str:

@@ -22,10 +22,10 @@ _STEP = 15.0
 _KEY = 8.0
 
 
-def steps_piece(tally: Tally, width: float, locale: QLocale) -> Piece:
-    """The steps of every category of `tally`."""
+def steps_piece(tally: Tally, width: float, locale: QLocale, *, compact: bool) -> Piece:
+    """The steps of every category of `tally`; `compact` leaves the counts per phase to the table."""
     wide = _Wide(tally, width, locale)
-    if len(tally.rows) <= _WIDE_ROWS and wide.fits:
+    if not compact and len(tally.rows) <= _WIDE_ROWS and wide.fits:
         return stacked([wide.piece(), _key(width, "")], 4.0)
     each = (width - _GUTTER) / 2
     share = -(-len(tally.rows) // 2)

@@ -63,9 +63,12 @@ class _Set:
 
 
 def table(grid: Grid, width: float, points: float, name_lines: int) -> Piece:
-    """`grid` in one band, or in as many as its columns need."""
-    measured = [_Set(c, _width(c, points)) for c in grid.columns]
-    bands = _bands(measured, width, _name_floor(grid, width, points))
+    """`grid` in one band, or in as many as its columns need; titles wrap before a second band is made."""
+    names = _name_floor(grid, width, points)
+    bands = _bands([_Set(c, _width(c, points)) for c in grid.columns], width, names)
+    if len(bands) > 1:
+        tight = [replace(c, narrow=True) for c in grid.columns]
+        bands = _bands([_Set(c, _width(c, points)) for c in tight], width, names)
     pieces = [_band(grid, band, width, points, name_lines) for band in bands]
     return stacked(pieces, points)
 

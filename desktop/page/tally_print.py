@@ -11,6 +11,7 @@ from dataclasses import replace
 from PySide6.QtCore import QLocale
 
 from desktop import figures
+from desktop.page.detail import Detail
 from desktop.page.fullest import fullest
 from desktop.page.marks import NOTHING, FiguresMark, Mark, Piece, TextMark, beside, paragraph, stacked
 from desktop.page.recommendation import Recommendation
@@ -27,15 +28,16 @@ _ONE_COLUMN = 4  # more rows stand in two columns; fewer only where every figure
 _KEY = 8.0
 
 
-def tally_piece(what: Recommendation, width: float, rows: int) -> Piece:
-    """The tally of the first `rows` categories; nothing where there is none."""
-    if what.tally is None or not what.tally.rows or rows <= 0:
+def tally_piece(what: Recommendation, width: float, detail: Detail) -> Piece:
+    """The tally of as many categories as `detail` leaves; nothing where there is none."""
+    if what.tally is None or not what.tally.rows or detail.tally <= 0:
         return NOTHING
-    kept = fullest(what.tally.rows, [_weight(row) for row in what.tally.rows], rows)
+    kept = fullest(what.tally.rows, [_weight(row) for row in what.tally.rows], detail.tally)
     tally = replace(what.tally, rows=tuple(kept))
-    one_phase = len(tally.phases) == 1
-    draw = _figures_piece if one_phase else steps_piece
-    picture = draw(tally, width, what.locale)
+    if len(tally.phases) == 1:
+        picture = _figures_piece(tally, width, what.locale)
+    else:
+        picture = steps_piece(tally, width, what.locale, compact=detail.compact)
     more = len(what.tally.rows) - len(tally.rows)
     if not more:
         return picture
