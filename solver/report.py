@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
+from decimal import Decimal
 
 from solver.answer import Answer, Break, Crew, CrewReport, State
 from solver.plan import Plan
@@ -18,6 +19,12 @@ def number(value: float, digits: int = 2) -> str:
     text = f"{value:,.{digits}f}"
     text = text.rstrip("0").rstrip(".") if "." in text else text
     return "-" if text in ("0", "-0") else text
+
+
+def figure(value: float | Decimal) -> str:
+    """A number in a sentence: every digit it has, thousands set apart, zero as 0."""
+    text = format(Decimal(repr(value)) if isinstance(value, float) else value, ",f")
+    return text.rstrip("0").rstrip(".") if "." in text else text
 
 
 def table(rows: Iterable[Sequence[str]]) -> str:

@@ -13,6 +13,7 @@ import numpy as np
 from solver import heads
 from solver.answer import (
     Answer,
+    Conflict,
     CrewReport,
     ExactCrew,
     Policy,
@@ -21,6 +22,7 @@ from solver.answer import (
     WholePeopleCost,
 )
 from solver.appraisal import Appraiser
+from solver.conflict import find_conflict
 from solver.engine import EngineName, LpStatus, WholeStatus, whole
 from solver.ledger import Counts
 from solver.plan import Plan
@@ -177,6 +179,11 @@ class Case:
             reports.append(self._report(Policy.OWN, heads.lots_of(self.program, self.plan.own)))
         return reports
 
+    @cached_property
+    def conflict(self) -> Conflict | None:
+        """Why no crew is workable, None unless that is proved."""
+        return find_conflict(self.plan) if self.proved.state is State.IMPOSSIBLE else None
+
     # ---- answer ------------------------------------------------------------------------------
 
     def fractional(self) -> dict[str, Any]:
@@ -201,7 +208,7 @@ class Case:
             bound if bound is not None else (relaxed.floor if relaxed and exact else None),
             gap,
             tuple(crews),
-            None,
+            self.conflict,
             seconds,
         )
 
