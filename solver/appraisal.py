@@ -16,6 +16,7 @@ from solver.engine import LpStatus, Relaxation
 from solver.ledger import Counts
 from solver.matrix import Floats, Matrix
 from solver.program import Line, Program
+from solver.search import tie_width
 from solver.shortfall import SHORT, Aim, Prices, Shortfall
 
 _UNUSED = dict[str, tuple[float, ...]]()
@@ -187,7 +188,7 @@ class Appraiser:
         if not self.program.costs_hours:
             return float(at_most - paper)
         margin = float(at_most) - cost
-        return 0.0 if abs(margin) < 1e-6 else margin
+        return 0.0 if abs(margin) <= tie_width(cost) else margin
 
     def _over_budget(self, paper: Fraction, cost: float) -> bool:
         return any(self._budget_margin(line, paper, cost) < 0 for line in self.program.budget_of)

@@ -434,6 +434,11 @@ class Program:
         running = (*self.overtime.values(), *self.bought.values())
         return any(self.matrix.cost[column] for column in running)
 
+    def running_cost(self, x: Sequence[float]) -> float:
+        """What overtime and bought-in units cost in a solution of the matrix."""
+        running = (*self.overtime.values(), *self.bought.values())
+        return float(sum(self.matrix.cost[column] * x[column] for column in running))
+
     @cached_property
     def hours_lines(self) -> list[tuple[Line, int, LineKind, int, int]]:
         """Work and supervision lines: (line, matrix row, kind, index of work or group, phase)."""

@@ -118,7 +118,21 @@ class Search:
         if (fixed < self._lower[self._columns]).any() or (fixed > self._upper[self._columns]).any():
             return None
         self._apply(_Node(-inf, 0, fixed, fixed))
-        return self.relaxation.objective if self.relaxation.solve() is LpStatus.OPTIMAL else None
+        if self.relaxation.solve() is not LpStatus.OPTIMAL or self._over_budget(lots):
+            return None
+        return self.relaxation.objective
+
+    def _over_budget(self, lots: Sequence[int]) -> bool:
+        """Budgets, in exact money: a row of millions lets a cent pass as rounding."""
+        program = self.program
+        if not program.budget_of or self._head_lines is not program.head_lines:
+            return False
+        cost = program.ledger.paper_cost(lots)
+        allowed = 0.0
+        if program.costs_hours:
+            cost += Fraction(program.running_cost(self.relaxation.x))
+            allowed = tie_width(float(cost)) / 2
+        return any(cost > at_most + Fraction(allowed) for at_most in program.budget_of.values())
 
     def cheapest(
         self,
