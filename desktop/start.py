@@ -7,7 +7,7 @@ import sys
 from pathlib import Path
 from typing import TYPE_CHECKING
 
-from PySide6.QtCore import QTimer
+from PySide6.QtCore import QLocale, QTimer
 from PySide6.QtWidgets import QApplication
 
 import resources
@@ -27,6 +27,7 @@ def run(plan: Path | None) -> int:
     app.setApplicationName("full-complement")
     app.setApplicationDisplayName(messages.PROGRAM)
     app.setDesktopFileName("full-complement")
+    _name_locale()
     workers = Workers()
     window = open_window(app, workers, plan)
     for number in (signal.SIGINT, signal.SIGTERM):
@@ -38,6 +39,12 @@ def run(plan: Path | None) -> int:
     workers.close()
     window.deleteLater()
     return code
+
+
+def _name_locale() -> None:
+    """Where the system names no language ("C"), numbers are still grouped: 52,000."""
+    if QLocale().language() == QLocale.Language.C:
+        QLocale.setDefault(QLocale(QLocale.Language.English, QLocale.Country.UnitedKingdom))
 
 
 def open_window(app: QApplication, workers: Workers, plan: Path | None) -> Window:

@@ -78,6 +78,7 @@ class Grid(QTableView):
         self.verticalHeader().setDefaultSectionSize(round(3.25 * step))
         self.resizeColumnsToContents()
         header = self.horizontalHeader()
+        header.setStretchLastSection(not self._model.columns[-1].is_number)
         for at in range(self._model.columnCount()):
             least = 17 * step if at == 0 else 7 * step
             header.resizeSection(at, max(least, min(header.sectionSize(at) + step, 26 * step)))

@@ -35,10 +35,12 @@ def qapp_cls():
 @pytest.fixture(autouse=True)
 def own_places(tmp_path, monkeypatch):
     """Settings, recovery copies and logs of this test alone."""
-    QStandardPaths.setTestModeEnabled(True)
+    if sys.platform not in ("linux", "freebsd"):
+        QStandardPaths.setTestModeEnabled(True)  # elsewhere Qt takes no folders from the environment
+    for name in ("XDG_STATE_HOME", "XDG_CONFIG_HOME", "XDG_DATA_HOME", "XDG_CACHE_HOME"):
+        monkeypatch.setenv(name, str(tmp_path / name.lower()))
     QSettings.setDefaultFormat(QSettings.Format.IniFormat)
     QSettings.setPath(QSettings.Format.IniFormat, QSettings.Scope.UserScope, str(tmp_path / "settings"))
-    monkeypatch.setenv("FULL_COMPLEMENT_STATE", str(tmp_path / "state"))
 
 
 @pytest.fixture(autouse=True)
