@@ -68,7 +68,7 @@ def _without_display() -> None:
 
 def _told(option: str) -> int:
     from desktop import messages
-    from desktop.version import program_version
+    from solver.version import program_version
 
     print(f"{messages.PROGRAM} {program_version()}" if option == "--version" else messages.USAGE)
     return OK

@@ -14,7 +14,7 @@ from PySide6.QtWidgets import QApplication, QMessageBox
 
 from desktop import messages
 from desktop.state_folder import state_folder
-from desktop.version import program_version
+from solver.version import program_version
 
 LOG_FILE = "full-complement.log"
 _LARGEST_LOG = 1_000_000  # bytes; one older log is kept

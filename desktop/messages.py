@@ -2,12 +2,8 @@
 
 from __future__ import annotations
 
+from solver.caution import CAUTION as CAUTION
 from solver.review import Problem
-
-CAUTION = (
-    "Not a legal check. Working time, licences and statutory staffing or supervision ratios are set by local "
-    "rules; confirm them with whoever is competent before people are put to work."
-)
 
 # the solver process
 

@@ -5,13 +5,9 @@ from __future__ import annotations
 from collections.abc import Iterable, Sequence
 from decimal import Decimal
 
-from solver.answer import Answer, Break, Crew, CrewReport, State
+from solver.answer import Answer, Break, Conflict, Crew, CrewReport, State
+from solver.caution import CAUTION
 from solver.plan import Plan
-
-CAUTION = (
-    "Not a legal check. Working time, licences and statutory staffing or supervision ratios are set by "
-    "local rules; confirm them with whoever is competent before people are put to work."
-)
 
 
 def number(value: float, digits: int = 2) -> str:
@@ -52,7 +48,7 @@ def solve(plan: Plan, answer: Answer) -> str:
     """The headline, the crews side by side, and what each breaks."""
     parts = [_headline(plan, answer)]
     if answer.conflict is not None:
-        parts.append(_conflict(answer))
+        parts.append(conflict_words(answer.conflict))
     if answer.fractional is not None:
         parts.append(_crews(plan, answer))
         parts += [_breaks(report) for report in answer.crews if report.breaks]
@@ -78,9 +74,9 @@ def _headline(plan: Plan, answer: Answer) -> str:
     return f"{words}\nBest found, at most {number(above)} {plan.currency} above the cheapest possible."
 
 
-def _conflict(answer: Answer) -> str:
-    assert answer.conflict is not None
-    lines = [f"  {c.says}{f' - {c.repair}' if c.repair else ''}" for c in answer.conflict.lines]
+def conflict_words(conflict: Conflict) -> str:
+    """What cannot hold together, each member with its repair."""
+    lines = [f"  {c.says} - {c.repair}" for c in conflict.lines]
     return "\n".join(["These cannot hold together:", *lines])
 
 

@@ -12,7 +12,7 @@ from PySide6.QtWidgets import QWidget
 import resources
 from desktop import messages
 from desktop.dialogs.help_dialog import TextDialog
-from desktop.version import program_version
+from solver.version import program_version
 
 # what the program is made with: distribution -> its licence in words
 PARTS = {

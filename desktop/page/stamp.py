@@ -10,9 +10,9 @@ from PySide6.QtCore import QDate, QLocale, QTime
 from desktop.page.compose import page_locale
 from desktop.page.recommendation import Stamp
 from desktop.page.text import plain
-from desktop.version import program_version
 from solver.plan import Plan
 from solver.planfile import content_hash
+from solver.version import program_version
 
 UNSAVED = "plan not saved yet"
 
