@@ -75,7 +75,7 @@ def read_table(path: str | os.PathLike[str]) -> tuple[Sheet, ...]:
     """
     name = Path(path).name or str(path)
     try:
-        return _tables_in(_bytes_of(Path(path)), Path(name))
+        return tables_in(_bytes_of(Path(path)), Path(name))
     except UnreadableTable as refused:
         raise UnreadableTable(f"{name}: {refused}") from None
 
@@ -106,7 +106,8 @@ def _bytes_of(path: Path) -> bytes:
     return raw
 
 
-def _tables_in(raw: bytes, name: Path) -> tuple[Sheet, ...]:
+def tables_in(raw: bytes, name: Path) -> tuple[Sheet, ...]:
+    """The tables in the content of a file called `name`. Raises UnreadableTable."""
     if raw.startswith(b"PK"):
         from solver.workbook import sheets_of_workbook
 

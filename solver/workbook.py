@@ -207,7 +207,7 @@ def _looked_over(content: bytes, look: Any) -> None:
     parser.StartDoctypeDeclHandler = _no_doctype
     try:
         parser.Parse(content, True)
-    except (expat.ExpatError, ValueError, KeyError, RecursionError):
+    except (expat.ExpatError, ValueError, LookupError, RecursionError):  # LookupError: an unknown encoding
         raise UnreadableTable("It is a damaged workbook; open and save it again, then import it.") from None
 
 
