@@ -84,6 +84,10 @@ class DualBound:
         self._ceiling = np.array([0.0 if r.sense is RowSense.AT_MOST else np.inf for r in matrix.rows])
         self._cost = np.array(matrix.cost)
 
+    def set_rhs(self, row: int, rhs: float) -> None:
+        """Follow a change of one row's right-hand side."""
+        self._rhs[row] = rhs
+
     def value(self, prices: Floats, lower: Floats, upper: Floats) -> float:
         """The bound for row prices `prices` (clipped to their signs) and the columns' bounds."""
         y = np.clip(prices, self._floor, self._ceiling)

@@ -110,6 +110,11 @@ class Search:
         """Fresh copies of the integer columns' bounds: head counts first, then switches."""
         return self._lower[self._columns].copy(), self._upper[self._columns].copy()
 
+    def set_rhs(self, row: int, rhs: float) -> None:
+        """Change the right-hand side of one row, also of the nodes still open."""
+        self.relaxation.set_rhs(row, rhs)
+        self._dual_bound.set_rhs(row, rhs)
+
     def evaluate(self, lots: Sequence[int]) -> float | None:
         """The objective of a whole crew, None if it is not workable."""
         if any(line.margin(lots) < 0 for line in self._head_lines):
