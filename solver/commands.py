@@ -14,13 +14,14 @@ from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from typing import IO, Any, NoReturn
 
-from solver import report
+from solver import report, report_cost, report_near, report_room
 from solver.answer import Answer, State, to_json
 from solver.engine import EngineFailure, quiet_native_output
 from solver.plan import Plan
 from solver.planfile import PlanProblems, UnreadableFile, read_plan
 from solver.questions import QUESTIONS, BadOption
 from solver.review import Problem
+from solver.unanswered import Unanswered
 
 OK, NO, UNUSABLE = 0, 1, 2
 
@@ -43,10 +44,25 @@ def _solve_arguments(parser: argparse.ArgumentParser) -> None:
     parser.add_argument("--seconds", type=float, default=None, help="time limit of the exact solve")
 
 
+def _long_arguments(parser: argparse.ArgumentParser) -> None:
+    parser.add_argument("--seconds", type=float, default=None, help="time limit of all solves together")
+
+
+def _near_arguments(parser: argparse.ArgumentParser) -> None:
+    _long_arguments(parser)
+    parser.add_argument(
+        "--within", type=float, default=2.0, metavar="PCT", help="per cent above the best cost (default 2)"
+    )
+    parser.add_argument("--most", type=int, default=20, metavar="N", help="how many crews (default 20)")
+
+
 VERBS: tuple[Verb, ...] = (
     Verb(
         "solve", "the exact crew, its proof, and what every rounding breaks", _solve_arguments, report.solve
     ),
+    Verb("cost", "what whole people cost, and each category's part", _long_arguments, report_cost.cost),
+    Verb("room", "how far lines can tighten, and which loosening pays", _long_arguments, report_room.room),
+    Verb("near", "every whole crew that costs little more", _near_arguments, report_near.near),
 )
 
 
@@ -102,6 +118,8 @@ def _one(asked: argparse.Namespace, path: str, out: IO[str]) -> int:
         return _ask(asked, plan, path, out)
     except PlanProblems as found:
         return _problems(asked, path, out, found.problems)
+    except Unanswered as why:
+        return _print(asked, path, out, why.document, str(why), NO)
     except (UnreadableFile, BadOption) as refusal:
         return _refused(asked, path, out, str(refusal))
     except EngineFailure as failure:

@@ -2,19 +2,11 @@
 
 from __future__ import annotations
 
-from typing import Any
-
 from solver.answer import CrewReport, State, to_json
+from solver.report import conflict_words
 from solver.search import Found
 from solver.solve import Case
-
-
-class NoExactCrew(ValueError):
-    """The plan has no exact crew, or none proved in time. `document` tells the same to machines."""
-
-    def __init__(self, says: str, document: dict[str, Any]) -> None:
-        super().__init__(says)
-        self.document = document
+from solver.unanswered import NoExactCrew
 
 
 def exact_crew(case: Case) -> tuple[Found, CrewReport]:
@@ -22,10 +14,9 @@ def exact_crew(case: Case) -> tuple[Found, CrewReport]:
     proved, report = case.proved, case.exact_report
     if proved.state is State.PROVED and proved.best is not None and report is not None:
         return proved.best, report
+    document = {"state": proved.state.value, "conflict": to_json(case.conflict)}
     if proved.state is State.IMPOSSIBLE:
-        conflict = case.conflict
-        lines = [f"  {one.says}" for one in conflict.lines] if conflict else []
-        says = "\n".join(["No workable crew exists. These cannot hold together:", *lines])
-        raise NoExactCrew(says, {"state": proved.state.value, "conflict": to_json(conflict)})
+        told = "" if case.conflict is None else f"\n{conflict_words(case.conflict)}"
+        raise NoExactCrew(f"No workable crew exists.{told}", document)
     says = "The cheapest crew was not proved in the time given; without it this cannot be told."
-    raise NoExactCrew(says, {"state": proved.state.value, "conflict": None})
+    raise NoExactCrew(says, document)

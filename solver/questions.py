@@ -4,10 +4,14 @@ from __future__ import annotations
 
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
+from math import isfinite
 from typing import Any
 
+from solver.nearbest import near_best
 from solver.plan import Plan
+from solver.room import room
 from solver.solve import Heard, solve
+from solver.wholecost import whole_cost
 
 Options = Mapping[str, Any]
 
@@ -28,4 +32,34 @@ def _solve(plan: Plan, options: Options, heard: Heard) -> Any:
     return solve(plan, seconds=options.get("seconds"), heard=heard)
 
 
-QUESTIONS: Mapping[str, Question] = {q.name: q for q in (Question("solve", _solve),)}
+def _cost(plan: Plan, options: Options, heard: Heard) -> Any:
+    return whole_cost(plan, seconds=options.get("seconds"), heard=heard)
+
+
+def _room(plan: Plan, options: Options, heard: Heard) -> Any:
+    return room(plan, seconds=options.get("seconds"), heard=heard)
+
+
+def _near(plan: Plan, options: Options, heard: Heard) -> Any:
+    within, most = options.get("within", 2.0), options.get("most", 20)
+    if not _is_number(within) or not 0 <= within <= 1000:
+        raise BadOption(f"{within} is no usable per cent of the best cost; allowed is 0 to 1000.")
+    if not _is_number(most) or most != int(most) or not 1 <= most <= 1000:
+        raise BadOption(f"{most} is no usable number of crews; allowed is 1 to 1000.")
+    seconds = options.get("seconds")
+    return near_best(plan, within=float(within), most=int(most), seconds=seconds, heard=heard)
+
+
+def _is_number(value: Any) -> bool:
+    return isinstance(value, (int, float)) and not isinstance(value, bool) and isfinite(value)
+
+
+QUESTIONS: Mapping[str, Question] = {
+    q.name: q
+    for q in (
+        Question("solve", _solve),
+        Question("cost", _cost),
+        Question("room", _room),
+        Question("near", _near),
+    )
+}

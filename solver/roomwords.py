@@ -52,7 +52,13 @@ def _told(plan: Plan, line: Line, loosened: Loosening, crew: Crew, exact: Crew) 
     told = f"{asked} would let you do with {_crew(plan, crew, exact)} and save {_money(plan, saving)}"
     if by == loosened.by:
         return f"{told}."
-    return f"{told}; the first saving comes at {counted(upwards(float(loosened.by)), line.unit)}."
+    return f"{told}; the first saving comes at {_onset(plan, line, loosened.by)}."
+
+
+def _onset(plan: Plan, line: Line, by: Fraction) -> str:
+    if line.kind is not LineKind.SUPERVISION:
+        return counted(upwards(float(by)), line.unit)
+    return f"{counted(_each_period(plan, line, by), line.unit)} a {plan.period}"
 
 
 def _money(plan: Plan, amount: float) -> str:
@@ -87,10 +93,14 @@ def _work(plan: Plan, line: Line, by: Fraction, crew: Crew) -> str:
 
 
 def _supervision(plan: Plan, line: Line, by: Fraction, crew: Crew) -> str:
-    length = next(float(p.periods) for p in plan.phases if p.name == line.phase)
-    each = figure(upwards(float(by) / length))
+    each = figure(_each_period(plan, line, by))
     group = line.name.removeprefix("Supervision by ")
     return f"{each} more hours of supervision a {plan.period}, given by others than {group},"
+
+
+def _each_period(plan: Plan, line: Line, by: Fraction) -> float:
+    """Hours of a phase as hours a period."""
+    return upwards(float(by / Fraction(plan.phases[_phase(plan, line)].periods)))
 
 
 def _presence(plan: Plan, line: Line, by: Fraction, crew: Crew) -> str:

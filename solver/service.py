@@ -18,6 +18,7 @@ from solver.answer import to_json
 from solver.engine import quiet_native_output
 from solver.planfile import PlanProblems, UnreadableFile, exact_json, plan_from_document
 from solver.questions import QUESTIONS, BadOption
+from solver.unanswered import Unanswered
 
 RECORD = "\x1e"
 
@@ -38,7 +39,7 @@ def _answer(line: str, replies: IO[str]) -> None:
         result = question.ask(plan, _plain(request.get("options") or {}), say)
     except PlanProblems as problems:
         say("problems", [{"place": p.place, "says": p.says} for p in problems.problems])
-    except (UnreadableFile, BadOption) as refusal:
+    except (UnreadableFile, BadOption, Unanswered) as refusal:
         say("refused", str(refusal))
     except Exception:  # the window shows it and goes on: one broken plan must not end the worker
         say("failed", traceback.format_exc())

@@ -197,7 +197,7 @@ class Case:
         relaxed, proved, exact = self.relaxed, self.proved, self._exact()
         gap = None
         if relaxed is not None and exact is not None:
-            gap = _gap(exact.cost, relaxed.floor)
+            gap = whole_people_cost(exact.cost, relaxed.floor)
         bound = proved.bound if np.isfinite(proved.bound) else None
         return Answer(
             proved.state,
@@ -223,7 +223,8 @@ class Case:
         )
 
 
-def _gap(cost: float, floor: float) -> WholePeopleCost:
+def whole_people_cost(cost: float, floor: float) -> WholePeopleCost:
+    """The gap between an exact crew's cost and the floor; 0 where only floating point tells them apart."""
     absolute = max(cost - floor, 0.0)
     absolute = 0.0 if absolute < 1e-7 * max(1.0, abs(cost)) else absolute
     return WholePeopleCost(absolute, 100 * absolute / cost if cost else 0.0)
