@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from solver.answer import NearBest
+from solver.caution import CAUTION
 from solver.plan import Plan
-from solver.report import CAUTION, crew_words, number, table
+from solver.report import crew_words, number, table
 
 
 def near(plan: Plan, answer: NearBest) -> str:

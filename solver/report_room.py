@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from solver.answer import LineRoom, PayRange, Room
+from solver.caution import CAUTION
 from solver.plan import Plan
-from solver.report import CAUTION, number, table
+from solver.report import number, table
 
 HEADER = [
     "",
