@@ -7,9 +7,9 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from desktop.crew_words import CATEGORY, COST, NO_CREW, in_unit, listed
+from desktop.crew_words import CATEGORY, COST, FRACTIONAL, NO_CREW, in_unit, listed
 
-__all__ = ["CATEGORY", "COST", "NO_CREW", "in_unit", "listed"]
+__all__ = ["CATEGORY", "COST", "FRACTIONAL", "NO_CREW", "in_unit", "listed"]
 
 PROGRESS = "Progress"
 CANCEL = "Cancel"
@@ -179,3 +179,54 @@ def holds_up_to(amount: str, change: str, more: str) -> str:
 def holds_to_the_end(amount: str) -> str:
     """The last step."""
     return f"Holds up to {amount}, the end of the range."
+
+
+# the crew map
+
+CREW_MAP = "Crew map"
+ACROSS = "Across"
+UPWARDS = "Upwards"
+PHASE = "Phase"
+WORKABLE = "Workable"
+BREAKS = "Breaks"
+YES, NO = "yes", "no"
+KEY_WORKABLE = "workable whole crew"
+KEY_NOT_WORKABLE = "not workable"
+KEY_EQUAL_COST = "as dear as the exact crew"
+MAP_HINT = (
+    "All other categories as in the exact crew. Point at a crew, or move with the arrow keys; "
+    "click, or press Space, to make it your own."
+)
+NEEDS_TWO = "The map needs at least two categories."
+SAME_TWICE = "Choose two different categories."
+EDIT_FROM_MAP = "take a crew of the map as own"
+
+
+def people_axis(category: str) -> str:
+    """Title of an axis of the map."""
+    return in_unit(category, "people")
+
+
+def map_described(workable: int, count: int) -> str:
+    """The map in words."""
+    return f"{workable} of {count} whole crews on the map are workable. The table lists them all."
+
+
+def pair(x: str, across: str, y: str, up: str) -> str:
+    """Two head counts."""
+    return f"{x} {across} and {y} {up}"
+
+
+def spot_costs(crew: str, cost: str) -> str:
+    """A workable crew."""
+    return f"{crew}: workable, {cost}."
+
+
+def spot_breaks(crew: str, lines: str) -> str:
+    """A crew that is not workable."""
+    return f"{crew}: breaks {lines}."
+
+
+def spot_not_workable(crew: str) -> str:
+    """A crew that is not workable, without its lines."""
+    return f"{crew}: not workable."

@@ -2,15 +2,34 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+from math import floor, log10
 from typing import Any
 
 import pyqtgraph as pg
 from PySide6.QtCore import QEvent, Qt
-from PySide6.QtGui import QFocusEvent, QPixmap
+from PySide6.QtGui import QColor, QFocusEvent, QPen, QPixmap
 from PySide6.QtWidgets import QVBoxLayout, QWidget
 
+from desktop import figures
 from desktop.pictures.copyable import Copyable
 from desktop.theme import Size, Theme, current
+
+
+def cosmetic(colour: QColor, width: float, style: Qt.PenStyle = Qt.PenStyle.SolidLine) -> QPen:
+    """A pen whose width is in pixels, not in units of the axes."""
+    pen = QPen(colour, width, style)
+    pen.setCosmetic(True)
+    return pen
+
+
+class PlainAxis(pg.AxisItem):  # type: ignore[misc] # pyqtgraph ships no types
+    """An axis with numbers as everywhere else in the program."""
+
+    def tickStrings(self, values: Sequence[float], scale: float, spacing: float) -> list[str]:
+        """Numbers in the user's locale; on an axis zero is a number."""
+        places = max(0, -floor(log10(spacing * scale))) if spacing * scale > 0 else 0
+        return [figures.number(v * scale, places) if v else "0" for v in values]
 
 
 class PlotPicture(Copyable):
@@ -18,7 +37,8 @@ class PlotPicture(Copyable):
 
     def __init__(self, name: str, parent: QWidget | None = None) -> None:
         super().__init__(parent)
-        self.plot = pg.PlotWidget(self)
+        axes = {side: PlainAxis(side) for side in ("left", "bottom")}
+        self.plot = pg.PlotWidget(self, axisItems=axes)
         self.plot.setMenuEnabled(False)
         self.plot.hideButtons()
         self.plot.setFocusPolicy(Qt.FocusPolicy.NoFocus)
@@ -45,6 +65,8 @@ class PlotPicture(Copyable):
             axis.setPen(pg.mkPen(theme.rule))
             axis.setTextPen(pg.mkPen(theme.faint))
             axis.setTickFont(theme.font(Size.SMALL))
+            axis.enableAutoSIPrefix(False)
+        self.plot.getAxis("bottom").setHeight(theme.px(6))
         self._show_focus()
         self.redraw(theme)
 

@@ -9,7 +9,7 @@ from PySide6.QtWidgets import QWidget
 
 from desktop import figures
 from desktop import question_words as say
-from desktop.pictures.plot_picture import PlotPicture
+from desktop.pictures.plot_picture import PlotPicture, cosmetic
 from desktop.pictures.stairs import amount_text, cost_at, point_path, stair_path, step_at
 from desktop.tables.crew_text import crew_text
 from desktop.theme import Theme
@@ -17,12 +17,6 @@ from solver.answer import Steps
 from solver.plan import Plan
 
 _KEY_SHARE = 0.01  # of the range, for one press of an arrow key
-
-
-def _pen(colour: QColor, width: float, style: Qt.PenStyle = Qt.PenStyle.SolidLine) -> QPen:
-    pen = QPen(colour, width, style)
-    pen.setCosmetic(True)  # width in pixels, not in units of the axes
-    return pen
 
 
 class Staircase(PlotPicture):
@@ -73,13 +67,13 @@ class Staircase(PlotPicture):
         self.title_axes(say.workload_axis(steps.work, steps.unit), say.in_unit(say.COST, plan.currency))
         dash, dot = Qt.PenStyle.DashLine, Qt.PenStyle.DotLine
         self.fresh_legend()
-        self._line(point_path(steps.rounded_up), _pen(theme.faint, 1, dot), say.KEY_UP)
-        self._line(stair_path(steps.steps), _pen(theme.exact, 2), say.KEY_EXACT)
-        self._line(point_path(steps.floor), _pen(theme.fractional, 2, dash), say.KEY_FLOOR)
+        self._line(point_path(steps.rounded_up), cosmetic(theme.faint, 1, dot), say.KEY_UP)
+        self._line(stair_path(steps.steps), cosmetic(theme.exact, 2), say.KEY_EXACT)
+        self._line(point_path(steps.floor), cosmetic(theme.fractional, 2, dash), say.KEY_FLOOR)
         ends = [(step.to, step.cost) for step in steps.steps]
         self._dots(ends, theme.exact, theme.exact)
         options = {"position": 0.04, "color": theme.faint, "movable": False}
-        today = pg.InfiniteLine(steps.today, pen=_pen(theme.faint, 1), label=say.TODAY, labelOpts=options)
+        today = pg.InfiniteLine(steps.today, pen=cosmetic(theme.faint, 1), label=say.TODAY, labelOpts=options)
         self.plot.addItem(today)
         self._add_marker(theme)
 
@@ -93,8 +87,8 @@ class Staircase(PlotPicture):
         return item
 
     def _add_marker(self, theme: Theme) -> None:
-        self._marker = pg.InfiniteLine(self._amount, movable=True, pen=_pen(theme.ink, 2))
-        self._marker.setHoverPen(_pen(theme.exact, 3))
+        self._marker = pg.InfiniteLine(self._amount, movable=True, pen=cosmetic(theme.ink, 2))
+        self._marker.setHoverPen(cosmetic(theme.exact, 3))
         self._marker.sigPositionChanged.connect(self._on_dragged)
         self.plot.addItem(self._marker)
         self._dot = self._dots([], theme.ink, theme.paper)
