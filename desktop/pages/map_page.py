@@ -74,7 +74,8 @@ def _shared(found: list[tuple[SpotKind, str, float, float]]) -> tuple[NamedSpot,
             spots.append(NamedSpot(kind, (name,), x, y))
             continue
         best = min(kind, there.kind, key=rank.index)
-        spots[spots.index(there)] = NamedSpot(best, (*there.names, name), there.x, there.y)
+        names = (name, *there.names) if kind is SpotKind.EXACT else (*there.names, name)
+        spots[spots.index(there)] = NamedSpot(best, names, there.x, there.y)
     return tuple(spots)
 
 
@@ -112,6 +113,7 @@ class MapPage(QuestionPage):
         parts = ((QLabel(say.ACROSS), self.across), (QLabel(say.UPWARDS), self.up))
         for title, box in (*parts, (self._phase_title, self.phase)):
             box.setAccessibleName(title.text())
+            box.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToContents)
             line.addWidget(title)
             line.addWidget(box)
         line.addStretch(1)

@@ -98,6 +98,7 @@ class StepsPage(QuestionPage):
             box.setAccessibleName(say.RANGE)
             box.valueChanged.connect(self._asked_soon.start)
         self.work.setAccessibleName(say.WORK)
+        self.work.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToContents)
         self.work.currentIndexChanged.connect(self._asked_soon.start)
         self.amount.setAccessibleName(say.WORKLOAD)
         self.amount.setToolTip(say.TIP_WORKLOAD)

@@ -31,6 +31,14 @@ _SHAPES: dict[SpotKind, tuple[str, int]] = {
     SpotKind.EXACT: ("o", 15),
     SpotKind.OWN: ("s", 13),
 }
+# where the name stands, as the corner of its text that touches the point: kinds keep out of each other's way
+_ANCHORS: dict[SpotKind, tuple[float, float]] = {
+    SpotKind.FRACTIONAL: (1.2, 0.5),
+    SpotKind.ROUNDED: (-0.1, -0.2),
+    SpotKind.PATCHED: (1.1, -0.2),
+    SpotKind.EXACT: (-0.06, 1.3),
+    SpotKind.OWN: (1.1, 1.2),
+}
 _STEPS = {
     Qt.Key.Key_Left: (-1, 0),
     Qt.Key.Key_Right: (1, 0),
@@ -121,7 +129,7 @@ class CrewMap(PlotPicture):
         colour = _tone(named.kind, theme)
         fill = colour if named.kind in (SpotKind.EXACT, SpotKind.FRACTIONAL) else theme.paper
         self._scatter([(named.x, named.y)], symbol, size, colour, fill)
-        text = pg.TextItem(", ".join(named.names), color=colour, anchor=(-0.1, 1.1))
+        text = pg.TextItem(", ".join(named.names), color=colour, anchor=_ANCHORS[named.kind])
         text.setFont(theme.font(Size.SMALL, bold=named.kind is SpotKind.EXACT))
         text.setPos(named.x, named.y)
         self.plot.addItem(text)

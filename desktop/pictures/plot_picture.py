@@ -66,7 +66,8 @@ class PlotPicture(Copyable):
             axis.setTextPen(pg.mkPen(theme.faint))
             axis.setTickFont(theme.font(Size.SMALL))
             axis.enableAutoSIPrefix(False)
-        self.plot.getAxis("bottom").setHeight(theme.px(6))
+        below = theme.px(1)  # pyqtgraph lets the title hang over the edge
+        self.plot.getPlotItem().layout.setContentsMargins(below, below, below, below)
         self._show_focus()
         self.redraw(theme)
 
@@ -82,6 +83,8 @@ class PlotPicture(Copyable):
         theme = current()
         legend = self.plot.addLegend(offset=(theme.px(1), theme.px(1)))
         legend.clear()
+        legend.setBrush(theme.paper)
+        legend.setPen(pg.mkPen(theme.rule))
         legend.setLabelTextColor(theme.ink)
         legend.setLabelTextSize(f"{theme.points(Size.SMALL)}pt")
 
