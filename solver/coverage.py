@@ -11,10 +11,12 @@ covered, so are all patterns that differ by more people of categories nobody has
 
 from __future__ import annotations
 
+from dataclasses import dataclass
+
 import numpy as np
 import numpy.typing as npt
 
-from solver.day import FIRST_SERVED, HEAVY, Day
+from solver.day import FIRST_SERVED, HEAVY, Day, DayRule
 from solver.engine import EngineFailure, LpStatus, Relaxation
 from solver.matrix import Floats, Ints, Matrix, RowSense
 from solver.program import Program
@@ -25,6 +27,16 @@ Bools = npt.NDArray[np.bool_]
 EVEN = 1e-9
 _BLOCK = 2_000_000
 _REMEMBERED = 400
+
+
+@dataclass(frozen=True)
+class Inequality:
+    """sum each[j] m_j >= need on every covered day, in people; `work[k]` is what `need` falls by per hour at
+    best output of work k that is taken off the day."""
+
+    each: Floats
+    need: float
+    work: Floats
 
 
 class Coverage:
@@ -62,10 +74,13 @@ class Coverage:
     def rules_kept(self, day: Day, patterns: Ints) -> Bools:
         """Whether those present keep every rule of the day."""
         kept = np.ones(len(patterns), dtype=bool)
-        people = patterns * day.size
         for rule in day.rules:
-            kept &= _keeps(people @ rule.each, rule.sense, rule.rhs)
+            kept &= self.rule_kept(rule, day, patterns)
         return kept
+
+    def rule_kept(self, rule: DayRule, day: Day, patterns: Ints) -> Bools:
+        """Whether those present keep one rule."""
+        return _keeps((patterns * day.size) @ rule.each, rule.sense, rule.rhs)
 
     def maybe(self, day: Day, patterns: Ints, loose: Bools | None = None) -> Bools:
         """False only where a day is surely not covered. In `loose` categories fewer may be present: what
@@ -130,12 +145,25 @@ class Coverage:
     def _at_least(self, people: Floats, covered: Floats) -> Bools:
         """Rows with the people of `covered`, or more where more cannot hurt."""
         ahead = people - covered
-        return (ahead[:, self._solo] >= -EVEN).all(axis=1) & (abs(ahead[:, ~self._solo]) <= EVEN).all(axis=1)
+        more: Bools = (ahead[:, self._solo] >= -EVEN).all(axis=1)
+        return more & (np.abs(ahead[:, ~self._solo]) <= EVEN).all(axis=1)
 
     def _remember(self, key: tuple[bytes, bytes], covered: Floats) -> None:
         known = self._known.get(key, np.zeros((0, len(covered))))
         if len(known) < _REMEMBERED:
             self._known[key] = np.vstack([known, covered])
+
+    def inequalities(self, day: Day) -> list[Inequality]:
+        """All that is known: from the pool, and from the rules of the day."""
+        none = np.zeros(len(day.demand))
+        base, each = self._inequalities(day)
+        found = [Inequality(-a, float(d), y) for a, d, y in zip(each, base, self._work, strict=True)]
+        for rule in day.rules:
+            if rule.sense is not RowSense.AT_MOST:
+                found.append(Inequality(rule.each, rule.rhs, none))
+            if rule.sense is not RowSense.AT_LEAST:
+                found.append(Inequality(-rule.each, -rule.rhs, none))
+        return found
 
     # ---- the pool ----------------------------------------------------------------------------
 

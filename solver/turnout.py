@@ -8,7 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
-from math import exp, lgamma, log, log1p
+from math import comb, exp, lgamma, log, log1p
 
 import numpy as np
 import numpy.typing as npt
@@ -19,6 +19,8 @@ from solver.matrix import Floats, Ints
 # each category's rarest numbers, together rarer than this, are left out of an enumeration
 RARE = 1e-13
 SEED = 20_011
+# beyond this many heads the ways to choose some outgrow floats
+MOST_WAYS = 500
 
 
 @dataclass(frozen=True)
@@ -33,17 +35,23 @@ class Turnout:
 def binomial(heads: int, away: float) -> Floats:
     """Chances of 0, 1, ..., `heads` present, each away with chance `away`."""
     if heads == 0 or away <= 0.0:
-        return np.eye(1, heads + 1, heads)[0]
+        sure: Floats = np.zeros(heads + 1)
+        sure[heads] = 1.0
+        return sure
+    if heads <= MOST_WAYS:
+        return np.array([comb(heads, i) * (1 - away) ** i * away ** (heads - i) for i in range(heads + 1)])
     ways = [lgamma(heads + 1) - lgamma(i + 1) - lgamma(heads - i + 1) for i in range(heads + 1)]
     present, absent = log1p(-away), log(away)
     chances = np.array([exp(w + i * present + (heads - i) * absent) for i, w in enumerate(ways)])
-    return chances / chances.sum()
+    total: Floats = chances / chances.sum()
+    return total
 
 
 class Turnouts:
     """Turnouts of days. Draws are common to all crews: a larger crew meets the same days, plus more heads."""
 
-    def __init__(self, most_patterns: int, draws: int) -> None:
+    def __init__(self, most_patterns: int, draws: int, rare: float = RARE) -> None:
+        self.rare = rare
         self.most_patterns = most_patterns
         self.draws = draws
         self._binomials: dict[tuple[int, float], tuple[int, Floats]] = {}
@@ -64,9 +72,9 @@ class Turnouts:
         key = (heads, away)
         if key not in self._binomials:
             chances = binomial(heads, away)
-            first = int(np.searchsorted(np.cumsum(chances), RARE))
+            first = int(np.searchsorted(np.cumsum(chances), self.rare))
             rest = np.cumsum(chances[::-1])[::-1]
-            last = int(np.nonzero(rest > RARE)[0][-1])
+            last = int(np.nonzero(rest > self.rare)[0][-1])
             self._binomials[key] = first, chances[first : last + 1]
         return self._binomials[key]
 
