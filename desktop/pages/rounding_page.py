@@ -17,6 +17,7 @@ from desktop.tables.quiet_view import QuietView
 from solver.answer import Policy
 
 _ROW_STEPS = 4.25
+_ALL_ROOM = 1000  # the grid takes what there is, up to its own height
 
 
 class RoundingPage(AnswerPage):
@@ -37,8 +38,14 @@ class RoundingPage(AnswerPage):
         self.title = heading("")
         self.sentence = label()
         self.waterfall = WaterfallPicture()
-        for widget, stretch in ((self.view, 1), (self.title, 0), (self.sentence, 0), (self.waterfall, 0)):
+        for widget, stretch in (
+            (self.view, _ALL_ROOM),
+            (self.title, 0),
+            (self.sentence, 0),
+            (self.waterfall, 0),
+        ):
             self.body.addWidget(widget, stretch)
+        self.body.addStretch(1)
 
     def show_answer(self) -> None:
         """Fill the grid, and keep the chosen cell where it still is."""

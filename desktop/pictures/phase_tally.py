@@ -150,7 +150,7 @@ def _paint_cell(painter: QPainter, frame: _Frame, at: int) -> None:
     left = cell.left()
     large = theme.picture_font(Size.LARGE, bold=True)
     texts = [(figures.people(row.exact[at]) if row.exact else "", large, theme.exact)]
-    fractional = figures.people(row.fractional[at]) if row.fractional else ""
+    fractional = figures.people(row.fractional[at]) if row.fractional and row.fractional[at] else ""
     texts.append((fractional, theme.picture_font(), theme.fractional))
     for text, font, colour in texts:
         wide = text_width(font, text)
