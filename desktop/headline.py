@@ -99,13 +99,16 @@ class HeadlineBar(QFrame):
         parts = self._said.crew
         metrics = QFontMetrics(theme.current().font(Size.LARGE))
         room = max(self.crew.width(), theme.current().px(40))
-        for count in range(len(parts), 0, -1):
-            text = _joined(parts, count)
-            if metrics.horizontalAdvance(text) <= room or count == 1:
-                break
-        self.crew.setText(metrics.elidedText(text, Qt.TextElideMode.ElideRight, room))
-        self.crew.setToolTip("" if count == len(parts) else plain_tip(", ".join(parts)))
-        self.crew.setAccessibleName(", ".join(parts))
+        fitting = (
+            n for n in range(len(parts), 1, -1) if metrics.horizontalAdvance(_joined(parts, n)) <= room
+        )
+        count = next(fitting, 1)
+        if count == 1:  # one long name gives way, never the number of those left out
+            rest = room - metrics.horizontalAdvance(_joined(("", *parts[1:]), 1))
+            parts = (metrics.elidedText(parts[0], Qt.TextElideMode.ElideRight, rest), *parts[1:])
+        self.crew.setText(_joined(parts, count))
+        self.crew.setToolTip("" if count == len(parts) > 1 else plain_tip(", ".join(self._said.crew)))
+        self.crew.setAccessibleName(", ".join(self._said.crew))
 
     def _act(self) -> None:
         if self._said.action is Action.GO_TO:

@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QEvent, QSettings, Qt
+from PySide6.QtCore import QEvent, QPoint, QSettings, Qt
 from PySide6.QtGui import QCloseEvent, QIcon
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QApplication,
     QHBoxLayout,
+    QHeaderView,
     QMainWindow,
     QVBoxLayout,
     QWidget,
@@ -80,7 +81,8 @@ class Window(QMainWindow):
         """Give the focus to the next part: the rail, then the grids and lists of the page."""
         page = self.stack.currentWidget() or self.stack
         inside = page.findChildren(QAbstractItemView)
-        parts = [self.rail, *(view for view in inside if view.isVisible() and view.isEnabled())]
+        usable = [v for v in inside if v.isVisible() and v.isEnabled() and not isinstance(v, QHeaderView)]
+        parts = [self.rail, *sorted(usable, key=lambda view: _reading_order(view, page))]
         here = next((at for at, part in enumerate(parts) if part.hasFocus()), 0)
         part = parts[(here + 1) % len(parts)]
         part.setFocus(Qt.FocusReason.ShortcutFocusReason)
@@ -155,3 +157,9 @@ class Window(QMainWindow):
         self.files.close()
         self._workers.close()
         event.accept()
+
+
+def _reading_order(view: QWidget, page: QWidget) -> tuple[int, int]:
+    """From top to bottom, then from left to right."""
+    at = view.mapTo(page, QPoint(0, 0))
+    return at.y(), at.x()

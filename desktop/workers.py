@@ -6,6 +6,7 @@ import itertools
 from collections.abc import Sequence
 
 from PySide6.QtCore import QObject
+from shiboken6 import isValid
 
 from desktop.worker import Worker
 
@@ -25,6 +26,7 @@ class Workers(QObject):
         self._command = command
         self._idle: list[Worker] = []
         self._all: list[Worker] = []
+        self._leaving: list[Worker] = []
         self._numbers = itertools.count(1)
         self._closed = False
         self._start()
@@ -67,7 +69,7 @@ class Workers(QObject):
         ended = list(self._all)
         for worker in ended:
             worker.stop()
-        for worker in ended:
+        for worker in (*ended, *filter(isValid, self._leaving)):
             worker.join(milliseconds)
         self._idle.clear()
         self._all.clear()
@@ -88,5 +90,7 @@ class Workers(QObject):
             self._discard(worker)
 
     def _discard(self, worker: Worker) -> None:
+        """It is being ended: until it is gone, the end of the program waits for it."""
         if worker in self._all:
             self._all.remove(worker)
+        self._leaving = [w for w in self._leaving if isValid(w) and w.alive] + [worker]

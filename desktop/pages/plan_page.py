@@ -4,11 +4,11 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 
-from PySide6.QtCore import QSettings, Qt, Signal
+from PySide6.QtCore import QSettings, Qt, QTimer, Signal
+from PySide6.QtGui import QResizeEvent
 from PySide6.QtWidgets import (
     QHBoxLayout,
     QLabel,
-    QPushButton,
     QSplitter,
     QToolButton,
     QVBoxLayout,
@@ -49,14 +49,20 @@ class PlanPage(QWidget):
         self.works = self._grid(WORKS)
         self.phases = self._grid(PHASES)
         self.rules = RuleList(document)
+        self._share_soon = QTimer(self, singleShot=True, interval=0)
+        self._share_soon.timeout.connect(self._share_width)
         self._group_buttons: dict[str, QToolButton] = {}
-        self._phase_part = _part(PHASES.title, [], self.phases)
+        self._below = QSplitter(Qt.Orientation.Horizontal)
+        self._first_phase = self._phase_button()
+        self._phase_part = _part(PHASES.title, [self._phase_button()], self.phases)
         self._lay_out()
         self._restore_groups()
         document.changed.connect(self._follow)
         answers.changed.connect(self._show_problems)
+        document.replaced.connect(self._share_soon.start)
         self._follow()
         self._show_problems()
+        self._share_soon.start()
 
     def show_place(self, place: str) -> None:
         """Go to the entry a problem is about, opening the columns it is in."""
@@ -91,11 +97,11 @@ class PlanPage(QWidget):
 
     def _lay_out(self) -> None:
         step = theme.current().px(1)
-        below = QSplitter(Qt.Orientation.Horizontal)
+        below = self._below
         below.addWidget(self._phase_part)
-        below.addWidget(_part(WORKS.title, [self._phase_button()], self.works))
+        below.addWidget(_part(WORKS.title, [self._first_phase], self.works))
         below.addWidget(_part(messages.RULES, [self._rule_button()], self.rules))
-        for at, share in enumerate((3, 6, 6)):
+        for at, share in enumerate((0, 0, 1)):
             below.setStretchFactor(at, share)
             below.setCollapsible(at, False)
         whole = QSplitter(Qt.Orientation.Vertical)
@@ -130,9 +136,9 @@ class PlanPage(QWidget):
         button.clicked.connect(self.add_phase)
         return button
 
-    def _rule_button(self) -> QPushButton:
-        button = QPushButton(messages.ADD_RULE)
-        button.setToolTip(messages.ADD_RULE_TIP)
+    def _rule_button(self) -> QToolButton:
+        button = _button(messages.ADD_RULE, messages.ADD_RULE_TIP)
+        button.setPopupMode(QToolButton.ToolButtonPopupMode.InstantPopup)
         button.setMenu(self.rules.menu())
         return button
 
@@ -150,8 +156,19 @@ class PlanPage(QWidget):
             button.setChecked(key in chosen)
 
     def _follow(self) -> None:
-        self._phase_part.setVisible(len(self._document.plan.phases) > 1)
+        several = len(self._document.plan.phases) > 1
+        if several == self._phase_part.isHidden():
+            self._phase_part.setVisible(several)
+            self._first_phase.setVisible(not several)
+            self._share_width()
         self._mark_used_groups()
+
+    def _share_width(self) -> None:
+        """The grids below as wide as they are, the rules the rest, but never less than a quarter of it."""
+        whole = self._below.width()
+        phases_wide = self.phases.whole_width() if not self._phase_part.isHidden() else 0
+        works_wide = min(self.works.whole_width(), whole * 3 // 4 - phases_wide)
+        self._below.setSizes([phases_wide, works_wide, whole - phases_wide - works_wide])
 
     def _mark_used_groups(self) -> None:
         """A dot where hidden columns hold something, so that nobody overlooks a limit."""
@@ -171,6 +188,11 @@ class PlanPage(QWidget):
             if isinstance(model, GridModel):
                 model.show_problems(problems)
         self.rules.rule_model.show_problems(problems)
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        """The first size a page gets decides how wide its grids start."""
+        super().resizeEvent(event)
+        self._share_soon.start()
 
 
 def _button(title: str, tooltip: str) -> QToolButton:

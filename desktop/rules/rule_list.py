@@ -2,9 +2,18 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QModelIndex, QPoint, Qt
+from PySide6.QtCore import QEvent, QModelIndex, QPersistentModelIndex, QPoint, QSize, Qt
 from PySide6.QtGui import QGuiApplication, QKeyEvent
-from PySide6.QtWidgets import QAbstractItemView, QDialog, QHeaderView, QMenu, QTableView, QWidget
+from PySide6.QtWidgets import (
+    QAbstractItemView,
+    QDialog,
+    QHeaderView,
+    QMenu,
+    QStyledItemDelegate,
+    QStyleOptionViewItem,
+    QTableView,
+    QWidget,
+)
 
 from desktop import messages, theme
 from desktop.document import Document
@@ -15,6 +24,17 @@ from desktop.rules.rule_dialog import RuleDialog
 from desktop.rules.rule_model import RuleModel
 from desktop.tables.clipboard import text_of
 from solver.plan import Rule
+
+
+_NAMES = 19  # width of the column of names, in steps of the grid
+
+
+class AiryDelegate(QStyledItemDelegate):
+    """Sentences of several lines with some air between them."""
+
+    def sizeHint(self, option: QStyleOptionViewItem, index: QModelIndex | QPersistentModelIndex) -> QSize:
+        """A little higher than the text."""
+        return super().sizeHint(option, index) + QSize(0, theme.current().px(1))
 
 
 class RuleList(QTableView):
@@ -36,10 +56,11 @@ class RuleList(QTableView):
         self.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.verticalHeader().hide()
         self.verticalHeader().setSectionResizeMode(QHeaderView.ResizeMode.ResizeToContents)
+        self.setItemDelegate(AiryDelegate(self))
         header = self.horizontalHeader()
         header.setHighlightSections(False)
         header.setSectionResizeMode(1, QHeaderView.ResizeMode.Stretch)
-        header.resizeSection(0, theme.current().px(20))
+        header.resizeSection(0, theme.current().px(_NAMES))
         self.doubleClicked.connect(self._edit_at)
 
     @property
@@ -146,3 +167,10 @@ class RuleList(QTableView):
             self.edit_current()
         else:
             super().keyPressEvent(event)
+
+    def changeEvent(self, event: QEvent) -> None:
+        """The column of names follows the zoom."""
+        super().changeEvent(event)
+        if event.type() == QEvent.Type.FontChange and hasattr(self, "_model"):
+            self.horizontalHeader().resizeSection(0, theme.current().px(_NAMES))
+            self.resizeRowsToContents()

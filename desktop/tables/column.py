@@ -15,6 +15,8 @@ from solver.exact import TypedNumber
 from solver.plan import Plan
 from solver.review import quoted
 
+_SHORT = 11  # characters of a title that stay in one line
+
 Value = str | Decimal | tuple[str, ...] | None
 
 
@@ -54,8 +56,9 @@ class Column:
 
     @property
     def header(self) -> str:
-        """Title over unit."""
-        return f"{self.title}\n{self.unit}" if self.unit else self.title
+        """Title, in two lines where it is long, over unit."""
+        title = in_two_lines(self.title)
+        return f"{title}\n{self.unit}" if self.unit else title
 
     @property
     def is_number(self) -> bool:
@@ -105,6 +108,15 @@ class Column:
                     raise Refused(messages.NO_SUCH_CATEGORY.format(name=quoted(name)))
                 found[known[name.casefold()]] = None
         return tuple(found)
+
+
+def in_two_lines(title: str) -> str:
+    """`title` cut at the space that makes its longer line shortest; short titles stay in one line."""
+    cuts = [at for at, character in enumerate(title) if character == " "]
+    if len(title) <= _SHORT or not cuts:
+        return title
+    cut = min(cuts, key=lambda at: max(at, len(title) - at - 1))
+    return f"{title[:cut]}\n{title[cut + 1 :]}"
 
 
 def share_of(percent: Decimal) -> Decimal:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 
-from PySide6.QtCore import Qt, QTimer, Signal
+from PySide6.QtCore import QEvent, Qt, QTimer, Signal
 from PySide6.QtGui import QGuiApplication, QKeyEvent
 from PySide6.QtWidgets import (
     QAbstractItemDelegate,
@@ -82,6 +82,11 @@ class Grid(QTableView):
         for at in range(self._model.columnCount()):
             least = 17 * step if at == 0 else 7 * step
             header.resizeSection(at, max(least, min(header.sectionSize(at) + step, 26 * step)))
+
+    def whole_width(self) -> int:
+        """Pixels that show every column without scrolling."""
+        bar = self.verticalScrollBar().sizeHint().width()
+        return self.horizontalHeader().length() + bar + 2 * self.frameWidth()
 
     def show_place(self, place: str) -> bool:
         """Select the cell a problem's place means; False if it is in another table."""
@@ -245,6 +250,12 @@ class Grid(QTableView):
             self.focusPreviousChild()
         else:
             super().keyPressEvent(event)
+
+    def changeEvent(self, event: QEvent) -> None:
+        """Rows and columns follow the zoom."""
+        super().changeEvent(event)
+        if event.type() == QEvent.Type.FontChange and hasattr(self, "_growing"):
+            self.fit_columns()
 
     def closeEditor(self, editor: QWidget, hint: QAbstractItemDelegate.EndEditHint) -> None:
         """After Return the cell below is next, as in a column of figures."""

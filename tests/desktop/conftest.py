@@ -13,6 +13,7 @@ from PySide6.QtWidgets import QApplication
 from shiboken6 import isValid
 
 from desktop import theme
+from desktop.fonts import load_fonts
 from desktop.workers import Workers
 
 FAKE_WORKER = Path(__file__).with_name("fake_worker.py")
@@ -23,6 +24,7 @@ def qapp(qapp_cls):
     app = qapp_cls.instance() or qapp_cls(["full-complement"])
     app.setApplicationName("full-complement-tests")
     QLocale.setDefault(QLocale(QLocale.Language.English, QLocale.Country.UnitedStates))
+    load_fonts()
     theme.apply(app, theme.light())
     return app
 
