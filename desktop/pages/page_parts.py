@@ -79,7 +79,7 @@ class AnswerPage(QWidget):
         self._fade.setEnabled(False)
         self.inside.setGraphicsEffect(self._fade)
         self._fade_soon = QTimer(self, singleShot=True, interval=_FADE_AFTER)
-        self._fade_soon.timeout.connect(lambda: self._fade.setEnabled(self.answers.stale))
+        self._fade_soon.timeout.connect(self._look_old)
         self._lay_out()
         answers.changed.connect(self.refresh)
 
@@ -99,14 +99,24 @@ class AnswerPage(QWidget):
         """Show what `answers` holds now; a page nobody sees waits until it is seen."""
         if not self.isVisible():
             return
+        self._holder.setVisible(self.answers.answer is not None)
+        if not self.answers.stale:
+            self._fade_soon.stop()
+            self._fade.setEnabled(False)
+        elif not self._fade_soon.isActive() and not self._fade.isEnabled():
+            self._fade_soon.start()
+        self._show_notice()
+        self.show_answer()
+
+    def _look_old(self) -> None:
+        """Fade what still belongs to the plan before the last change, and say so."""
+        self._fade.setEnabled(self.answers.stale)
+        self._show_notice()
+
+    def _show_notice(self) -> None:
         text = self.notice_text()
         self.notice.setText(text)
         self.notice.setVisible(bool(text))
-        self._holder.setVisible(self.answers.answer is not None)
-        if not self.answers.stale:
-            self._fade.setEnabled(False)
-        self._fade_soon.start()
-        self.show_answer()
 
     def notice_text(self) -> str:
         """What to do next where there is nothing to show, or what is wrong with what is shown."""

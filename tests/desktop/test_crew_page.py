@@ -223,3 +223,36 @@ def test_nothing_yet_says_what_to_do(make):
     page, _, _ = make(Plan())
     assert page.notice.isVisible()
     assert "Plan page" in page.notice.text()
+
+
+def test_what_is_out_of_date_looks_it(hillside, qtbot):
+    from dataclasses import replace
+
+    page, document, answers = hillside
+    plan = document.plan
+    first = replace(plan.categories[0], pay=D(1000))
+    document.edit("pay", replace(plan, categories=(first, *plan.categories[1:])))
+    assert answers.stale
+    qtbot.waitUntil(lambda: page.inside.graphicsEffect().isEnabled())
+    assert "before the last change" in page.notice.text()
+    assert page.notice.isVisible()
+    answers.receive(document.plan, samples.hillside_answer())
+    assert not page.inside.graphicsEffect().isEnabled()
+    assert not page.notice.isVisible()
+
+
+def test_a_page_follows_theme_and_zoom(hillside, qapp):
+    from dataclasses import replace
+
+    from desktop import theme
+
+    page, _, _ = hillside
+    before = page.tally.sizeHint().height()
+    theme.apply(qapp, replace(theme.dark(), zoom=1.5))
+    try:
+        assert page.tally.sizeHint().height() > 1.4 * before
+        colour = page.table.index(0, 0).data(Qt.ItemDataRole.ForegroundRole)
+        assert colour == theme.dark().fractional
+        assert page.view.verticalHeader().defaultSectionSize() == theme.current().px(3.25)
+    finally:
+        theme.apply(qapp, theme.light())
