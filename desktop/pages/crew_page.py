@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QModelIndex, Qt
+from PySide6.QtCore import QModelIndex, Qt, Signal
 from PySide6.QtWidgets import QAbstractItemView, QHBoxLayout, QLabel, QPushButton, QVBoxLayout, QWidget
 
 from desktop import crew_words as say
@@ -18,7 +18,12 @@ from desktop.theme import Size, current
 
 
 class CrewPage(AnswerPage):
-    """What the plan comes to: who, how many, and what every other crew would be."""
+    """What the plan comes to: who, how many, and what every other crew would be.
+
+    `remarked(text)` when an entry was refused, for the foot of the window.
+    """
+
+    remarked = Signal(str)
 
     def __init__(self, document: Document, answers: Answers, parent: QWidget | None = None) -> None:
         super().__init__(answers, parent)
@@ -117,6 +122,8 @@ class CrewPage(AnswerPage):
     def _on_told(self, text: str) -> None:
         self.refusal.setText(text)
         self.refusal.setVisible(bool(text))
+        if text:
+            self.remarked.emit(text)
 
     def choose_own(self) -> None:
         """Put the cursor on the first cell of the own column."""

@@ -20,7 +20,7 @@ from desktop.messages import CAUTION
 from desktop.theme import Size, current, dress
 
 _FADE_AFTER = 400  # ms: an answer that comes at once never makes the page flicker
-_FADED = 0.45
+_FADED = 0.6
 
 
 def label(text: str = "", size: Size | None = None, tone: str | None = None) -> QLabel:

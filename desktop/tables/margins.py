@@ -112,10 +112,12 @@ class MarginTable(QAbstractTableModel):
             side = Qt.AlignmentFlag.AlignRight if across else Qt.AlignmentFlag.AlignLeft
             return side | Qt.AlignmentFlag.AlignVCenter
         if across:
-            policy = self._columns[section].policy
+            report = self._columns[section]
+            policy = report.policy
+            tip = "\n".join(part for part in (say.POLICY_TIPS[policy], report.why_none) if part)
             texts = {
                 Qt.ItemDataRole.DisplayRole: say.policy_title(policy),
-                Qt.ItemDataRole.ToolTipRole: plain_tip(say.POLICY_TIPS[policy]),
+                Qt.ItemDataRole.ToolTipRole: plain_tip(tip),
             }
         else:
             row = self._rows[section]

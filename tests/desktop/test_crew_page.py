@@ -93,7 +93,11 @@ def test_the_first_count_typed_starts_from_the_exact_crew(hillside):
 )
 def test_a_refused_count_stays_with_its_reason(hillside, row, typed, why):
     page, document, _ = hillside
+    remarks = []
+    page.remarked.connect(remarks.append)
     assert not type_own(page, row, typed)
+    assert len(remarks) == 1
+    assert why in remarks[0]
     assert document.plan.own == {}
     assert text(page, row, Policy.OWN) == typed
     assert page.refusal.isVisible()

@@ -78,6 +78,9 @@ def test_why_there_is_no_crew(hillside):
     hillside.view.setCurrentIndex(cell(hillside, "Planting (trees)", Policy.BEST_CORNER))
     assert hillside.sentence.text() == "No choice of down or up is workable: Planting stays short."
     assert hillside.waterfall.miss is None
+    column = cell(hillside, "Planting (trees)", Policy.BEST_CORNER).column()
+    tip = hillside.table.headerData(column, Qt.Orientation.Horizontal, Qt.ItemDataRole.ToolTipRole)
+    assert "Planting stays short" in tip
 
 
 def test_the_chosen_cell_stays_chosen_with_the_next_answer(make, qtbot):
