@@ -145,8 +145,8 @@ class Coverage:
     def _at_least(self, people: Floats, covered: Floats) -> Bools:
         """Rows with the people of `covered`, or more where more cannot hurt."""
         ahead = people - covered
-        more: Bools = (ahead[:, self._solo] >= -EVEN).all(axis=1)
-        return more & (np.abs(ahead[:, ~self._solo]) <= EVEN).all(axis=1)
+        more = np.asarray((ahead[:, self._solo] >= -EVEN).all(axis=1))
+        return more & np.asarray((np.abs(ahead[:, ~self._solo]) <= EVEN).all(axis=1))
 
     def _remember(self, key: tuple[bytes, bytes], covered: Floats) -> None:
         known = self._known.get(key, np.zeros((0, len(covered))))
