@@ -18,7 +18,7 @@ from solver import report, report_cost, report_near, report_room
 from solver.answer import Answer, State, to_json
 from solver.engine import EngineFailure, quiet_native_output
 from solver.plan import Plan
-from solver.planfile import PlanProblems, UnreadableFile, read_plan
+from solver.planfile import CannotSave, PlanProblems, UnreadableFile, read_plan
 from solver.questions import QUESTIONS, BadOption
 from solver.review import Problem
 from solver.unanswered import Unanswered
@@ -83,6 +83,7 @@ def _parser() -> argparse.ArgumentParser:
         one = verbs.add_parser(verb.name, help=verb.help)
         _plan_arguments(one)
         verb.arguments(one)
+    _export_arguments(verbs.add_parser("export", help="write .xlsx, .csv, .lp or .mps"))
     verbs.add_parser("worker", help="serve requests of the window on standard input")
     return parser
 
@@ -90,6 +91,12 @@ def _parser() -> argparse.ArgumentParser:
 def _plan_arguments(parser: argparse.ArgumentParser) -> None:
     parser.add_argument("plans", nargs="+", metavar="PLAN", help="plan files (.crew.json)")
     parser.add_argument("--json", action="store_true", help="one JSON document a line")
+
+
+def _export_arguments(parser: argparse.ArgumentParser) -> None:
+    parser.add_argument("plans", nargs=1, metavar="PLAN", help="plan file (.crew.json)")
+    parser.add_argument("out", metavar="OUT", help="file to write; its suffix says what")
+    parser.set_defaults(json=False)
 
 
 def main(arguments: Sequence[str]) -> int:
@@ -115,12 +122,14 @@ def _one(asked: argparse.Namespace, path: str, out: IO[str]) -> int:
         plan = read_plan(path)
         if asked.verb == "check":
             return _print(asked, path, out, {"problems": []}, "No problems found.", OK)
+        if asked.verb == "export":
+            return _export(asked, plan, path, out)
         return _ask(asked, plan, path, out)
     except PlanProblems as found:
         return _problems(asked, path, out, found.problems)
     except Unanswered as why:
         return _print(asked, path, out, why.document, str(why), NO)
-    except (UnreadableFile, BadOption) as refusal:
+    except (UnreadableFile, CannotSave, BadOption) as refusal:
         return _refused(asked, path, out, str(refusal))
     except EngineFailure as failure:
         return _refused(asked, path, out, f"The solver gave up: {failure}.")
@@ -133,6 +142,16 @@ def _ask(asked: argparse.Namespace, plan: Plan, path: str, out: IO[str]) -> int:
     verb = next(v for v in VERBS if v.name == asked.verb)
     impossible = isinstance(answer, Answer) and answer.state is State.IMPOSSIBLE
     return _print(asked, path, out, to_json(answer), verb.text(plan, answer), NO if impossible else OK)
+
+
+def _export(asked: argparse.Namespace, plan: Plan, path: str, out: IO[str]) -> int:
+    from solver.export import UnknownFormat  # the workbook writer is loaded only where it is used
+    from solver.exportcommand import export
+
+    try:
+        return _print(asked, path, out, {}, export(plan, path, asked.out), OK)
+    except UnknownFormat as refusal:
+        return _refused(asked, path, out, str(refusal))
 
 
 def _problems(asked: argparse.Namespace, path: str, out: IO[str], problems: Sequence[Problem]) -> int:

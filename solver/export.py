@@ -66,7 +66,8 @@ class NeedsAnswer(Exception):
 
 
 _PROGRAMS: dict[str, Callable[[Plan], str]] = {".lp": lp_text, ".mps": mps_text}
-SUFFIXES = (".xlsx", ".csv", *_PROGRAMS)
+NEED_AN_ANSWER = (".xlsx", ".csv")
+SUFFIXES = (*NEED_AN_ANSWER, *_PROGRAMS)
 
 
 def _origin(plan: Plan, source: str, now: datetime | None) -> Origin:

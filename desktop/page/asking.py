@@ -4,18 +4,16 @@ from __future__ import annotations
 
 import subprocess
 from collections.abc import Mapping, Sequence
-from pathlib import Path
 from typing import Any
 
 import simplejson
 
-import solver
 from desktop.inquiries import KINDS
 from desktop.messages import SOLVER_FAILED
 from desktop.page.compose import Details
 from desktop.replies import Flooded, Reply, ReplyReader
 from desktop.understanding import Rubbish, understood
-from desktop.worker import worker_command
+from desktop.worker import solver_folder, worker_command
 from solver.answer import Answer
 from solver.plan import Plan
 from solver.planfile import plan_to_document
@@ -85,7 +83,7 @@ def _run(command: Sequence[str], requests: str, limit: float) -> bytes:
             capture_output=True,
             timeout=limit,
             check=False,
-            cwd=Path(solver.__file__).parents[1],  # where `python -m` looks first: never the user's folder
+            cwd=solver_folder(),
         )
     except subprocess.TimeoutExpired as late:
         return bytes(late.stdout or b"")

@@ -7,6 +7,7 @@ from dataclasses import dataclass, replace
 from PySide6.QtCore import QLocale
 
 from desktop.page.assumptions import assumptions
+from desktop.page.attendance_line import attendance_line
 from desktop.page.chosen import Chosen, exact_choice, own_choice
 from desktop.page.crew_table import crew_table
 from desktop.page.decision import banner, consequence, crew_words, decisions
@@ -16,7 +17,7 @@ from desktop.page.rounding_reasons import rounding_reasons
 from desktop.page.speech import Speech, exact_decimal
 from desktop.page.text import ALL_OF_IT, Run, name, plain, sentence
 from desktop.pictures.tally_layout import Tally, tally_of
-from solver.answer import Answer, Conflict, Conflicting, NearBest, NearCrew, Proof, Room, State
+from solver.answer import Answer, Attendance, Conflict, Conflicting, NearBest, NearCrew, Proof, Room, State
 from solver.plan import Plan
 
 
@@ -26,7 +27,7 @@ class Details:
 
     room: Room | None = None
     near: NearBest | None = None
-    attendance: str = ""
+    attendance: Attendance | None = None
 
 
 def page_locale(locale: QLocale | None = None) -> QLocale:
@@ -69,7 +70,7 @@ def recommend(
         method=_method(answer, own=own),
         binding=binding_lines(speech, chosen, extra.room) if chosen else (),
         loosening=best_loosening(extra.room) if chosen and not own else "",
-        attendance=sentence(extra.attendance) if chosen else "",
+        attendance=attendance_line(speech, extra.attendance, own=own) if chosen else "",
         alternatives=_alternatives(speech, answer, chosen, extra.near),
         assumptions=assumptions(speech),
         prepared_by=plain(plan.prepared_by),

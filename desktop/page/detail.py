@@ -1,9 +1,9 @@
 """How much of the recommendation is printed, and the order in which detail goes when the page is full.
 
 The order: air and type size (never below 8 pt) - outputs and other assumptions - the tally's counts per
-phase, then its rows - near-best crews - reasons against the less usual roundings - binding lines - rows of the
-table, which then share one line ("and 7 more categories"). Decision, totals, costs, caution, signatures and
-origin always stay.
+phase, then its rows - near-best crews - reasons against the less usual roundings - binding lines - rows of
+the table, which then share one line ("and 7 more categories"). Decision, totals, costs, caution, signatures
+and origin always stay.
 """
 
 from __future__ import annotations

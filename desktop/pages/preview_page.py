@@ -34,7 +34,7 @@ from desktop.page import (
 from desktop.pages.page_parts import AnswerPage, label
 from desktop.pictures.paper_view import PaperView
 from desktop.theme import Size, current
-from solver.answer import Policy
+from solver.answer import Attendance, Policy
 from solver.planfile import CannotSave
 
 _SIZE_KEY, _GREY_KEY = "page/size", "page/grey"
@@ -138,7 +138,10 @@ class PreviewPage(AnswerPage):
         return recommend(plan, answer, mark, own=own, details=details)
 
     def _details(self) -> Details:
-        return Details(room=self.answers.detail("room"), near=self.answers.detail("near"))
+        found = self.answers.detail("attend")
+        attendance = found if isinstance(found, Attendance) else None
+        room, near = (self.answers.detail(question) for question in _MORE)
+        return Details(room=room, near=near, attendance=attendance)
 
     def tell(self, sentence: str) -> None:
         """Say an outcome above the page; empty to take it back."""
@@ -219,7 +222,7 @@ class PreviewPage(AnswerPage):
         self.show_answer()
 
     def _on_detail(self, question: str) -> None:
-        if question in _MORE:
+        if question in _MORE or question == "attend":
             self.show_answer()
 
     def showEvent(self, event: QShowEvent) -> None:

@@ -19,7 +19,21 @@ from desktop.page.fullest import fullest
 from desktop.page.paper import PaperSize
 from desktop.page.text import name, plain, shortened, text
 from resources import example_paths
-from solver.answer import LineKind, LineRoom, NearBest, NearCrew, Policy, Proof, Room, State
+from solver.answer import (
+    Attendance,
+    CrewChance,
+    Critical,
+    LineKind,
+    LineRoom,
+    NearBest,
+    NearCrew,
+    PhaseAttendance,
+    Policy,
+    Proof,
+    Room,
+    SafeCrew,
+    State,
+)
 from solver.plan import Plan
 from solver.planfile import CannotSave, PlanProblems, UnreadableFile, content_hash, read_plan, save_plan
 from solver.solve import solve
@@ -181,10 +195,41 @@ def test_two_other_crews_at_most_and_never_the_same_one(qapp, hillside):
     assert "10\u00a0×\u00a0Contract hand" in what.alternatives[0].says
 
 
+def days(covered, error=0.0, critical=()):
+    return PhaseAttendance("Whole job", covered, error, {}, {}, {}, 0, {}, critical, 40, 0)
+
+
+def attended(*phases, wanted=None, compared=()):
+    return Attendance(0.95, phases, wanted, "", None, compared, (), False)
+
+
 def test_the_attendance_line_stands_where_it_was_worked_out(qapp, hillside):
     assert "If people are away" not in printed(*hillside)
-    words = printed(*hillside, details=Details(attendance="On 93 % of days enough of them are there."))
-    assert "If people are away On 93 % of days enough of them are there." in words
+    crew = samples.crew(4, 10, 6, 8, 0.5)
+    wanted = SafeCrew(0.95, crew, 136000, 2310.0, 0.961, (0.961,), True, 136000)
+    found = attended(days(0.8725, 0.0, (Critical("Lead hand", 0.38),)), wanted=wanted)
+    words = printed(*hillside, details=Details(attendance=found))
+    assert "If people are away Enough of them are there on 87.3 % of days." in words
+    assert "With one Lead hand away, 38 % of days are stopped." in words
+    assert "The cheapest crew for 95 % of days costs EUR 2,310 more: 4 × Lead hand" in words
+
+
+def test_an_attendance_is_never_rounded_up_to_always(qapp, hillside):
+    def line(found, **kept):
+        return spaced(made(*hillside, details=Details(attendance=found), **kept).attendance)
+
+    assert "more than 99.9 % of days" in line(attended(days(0.99999)))
+    assert "on 100 % of days" in line(attended(days(1.0)))
+    assert "(from drawn days, standard error 0.2 %)" in line(attended(days(0.9, 0.002)))
+
+
+def test_the_own_crew_has_its_own_chance(qapp):
+    own = samples.crew(3, 9, 7, 8, 0.5)
+    chance = CrewChance("own", own, True, 134500, 0.91, (0.91,))
+    details = Details(attendance=attended(days(0.8), compared=(chance,)))
+    answer = samples.hillside_answer(own)
+    line = made(samples.hillside_plan(), answer, own=True, details=details).attendance
+    assert spaced(line) == "Enough of them are there on 91 % of days."
 
 
 # the sheet

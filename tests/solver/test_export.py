@@ -14,7 +14,9 @@ import pytest
 from resources import example_paths
 from solver.answer import NearBest, NearCrew, State
 from solver.caution import CAUTION
+from solver.commands import main
 from solver.export import SUFFIXES, NeedsAnswer, UnknownFormat, export_plan
+from solver.exportcommand import export
 from solver.plan import Budget, Plan, Presence, Ratio, Sense, Share
 from solver.planfile import CannotSave, content_hash, read_plan
 from solver.program import Program
@@ -352,3 +354,25 @@ def test_a_failed_write_leaves_nothing(museum, tmp_path):
         with pytest.raises(CannotSave):
             export_plan(plan, answer, tmp_path / "gone" / f"crew{suffix}")
     assert list(tmp_path.iterdir()) == []
+
+
+# the command
+
+
+def test_the_command_writes_what_the_suffix_says(tmp_path):
+    plan = str(next(p for p in example_paths() if "hillside" in p.name))
+    for suffix in SUFFIXES:
+        out = tmp_path / f"crew{suffix}"
+        assert main(["export", plan, str(out)]) == 0
+        assert out.stat().st_size > 500
+    assert export(read_plan(plan), plan, str(out)) == "Wrote crew.mps."
+    rows = opened(tmp_path / "crew.xlsx")[0]["Near-best"]
+    assert rows[1][1] == pytest.approx(0)  # the exact crew stands first
+
+
+def test_the_command_refuses_in_one_line(tmp_path, capfd):
+    plan = str(example_paths()[0])
+    for out in ("crew.doc", "gone/crew.lp"):
+        assert main(["export", plan, str(tmp_path / out)]) == 2
+        assert len(capfd.readouterr().err.strip().splitlines()) == 1
+    assert main(["export", str(tmp_path / "missing.crew.json"), str(tmp_path / "crew.lp")]) == 2
