@@ -1,9 +1,24 @@
 from itertools import pairwise
 
 import pytest
+from pypdf import PdfReader
+from PySide6.QtCore import QRect, QRectF
+from PySide6.QtGui import QImage, QPainter, QPdfWriter
 
+from desktop import theme as themes
 from desktop.pictures.figure import Mark
-from desktop.pictures.tally_layout import TallyMetrics, TallyRow, coins, tally_layout
+from desktop.pictures.phase_tally import phase_edges, step_points
+from desktop.pictures.tally import paint_tally, tally_height
+from desktop.pictures.tally_layout import (
+    Tally,
+    TallyMetrics,
+    TallyPhase,
+    TallyRow,
+    coins,
+    tally_layout,
+    tally_of,
+)
+from tests.desktop import samples
 
 METRICS = TallyMetrics(figures_width=600)
 
@@ -72,3 +87,63 @@ def test_coins():
     assert coins(243.5, 100) == [(100, 1.0)] * 2 + [(10, 1.0)] * 4 + [(10, 0.35)]
     assert coins(2.9999999, 1) == [(1, 1.0)] * 3
     assert coins(0, 10) == []
+
+
+@pytest.fixture(params=["hillside", "museum", "many"])
+def tally(request):
+    if request.param == "hillside":
+        answer = samples.hillside_answer()
+        return tally_of(samples.hillside_plan(), answer.fractional, answer.exact.crew)
+    if request.param == "museum":
+        answer = samples.museum_answer()
+        return tally_of(samples.museum_plan(), answer.fractional, answer.exact.crew)
+    rows = (TallyRow("Picker", (391.6,), (400,), 380), TallyRow("Half post", (0.4,), (0.5,), 1, 0.5))
+    return Tally((TallyPhase("Harvest", 3),), rows, "week")
+
+
+def colours(image):
+    return {image.pixelColor(x, y).rgb() for x in range(image.width()) for y in range(image.height())}
+
+
+def test_the_painter_shows_both_crews_and_keeps_inside(qapp, tally):
+    theme = themes.light()
+    height = round(tally_height(tally, theme))
+    image = QImage(700, height + 40, QImage.Format.Format_RGB32)
+    image.fill(theme.paper)
+    painter = QPainter(image)
+    paint_tally(painter, QRectF(20, 20, 660, height), tally, theme)
+    painter.end()
+    assert {theme.exact.rgb(), theme.fractional.rgb()} <= colours(image)
+    for edge in (QRect(0, 0, 700, 18), QRect(0, 0, 18, height), QRect(682, 0, 18, height)):
+        assert colours(image.copy(edge)) == {theme.paper.rgb()}
+
+
+def test_print_is_vector_with_text(qapp, tally, tmp_path):
+    target = tmp_path / "tally.pdf"
+    writer = QPdfWriter(str(target))
+    writer.setResolution(96)
+    painter = QPainter(writer)
+    paint_tally(painter, QRectF(0, 0, 600, 400), tally, themes.print_theme(), shrink=0.8)
+    painter.end()
+    page = PdfReader(target).pages[0]
+    assert not list(page.images)
+    text = page.extract_text()
+    assert all(row.name.split()[0] in text for row in tally.rows)
+
+
+def test_joiners_and_leavers_follow_from_the_phase_before():
+    row = TallyRow("Porter", None, (1, 5, 2), before=2)
+    assert [row.joiners(at) for at in range(3)] == [0, 4, 0]
+    assert [row.leavers(at) for at in range(3)] == [1, 0, 3]
+
+
+def test_long_phases_are_wider_and_short_ones_stay_readable():
+    phases = (TallyPhase("a", 1), TallyPhase("b", 9))
+    left, middle, right = phase_edges(phases, 0, 100)
+    assert (left, right) == (0, pytest.approx(100))
+    assert middle == pytest.approx(30)
+
+
+def test_steps_stand_at_their_counts():
+    points = step_points((1, 3), (0, 10, 20), base=100, unit=5)
+    assert [(p.x(), p.y()) for p in points] == [(0, 95), (10, 95), (10, 85), (20, 85)]
