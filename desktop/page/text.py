@@ -6,6 +6,7 @@ same places. Ligatures are off: words stay whole when text is copied out of the 
 
 from __future__ import annotations
 
+import re
 import unicodedata
 from dataclasses import dataclass, replace
 from enum import StrEnum
@@ -182,7 +183,7 @@ def plain(words: str) -> str:
 
 def sentence(words: str, most: int = 300) -> str:
     """A sentence made elsewhere, at most `most` letters: no plan can fill the page with one of them."""
-    shown = plain(words)
+    shown = re.sub(r"(?<=\d) %", "\u00a0%", plain(words))
     return shown if len(shown) <= most else shown[: most - 1].rstrip() + ELLIPSIS
 
 
