@@ -443,7 +443,7 @@ class TestWorkbooks:
                 sheet.write_row(row + 1, 0, [f"Grade {row}", 900 + row, 38])
 
         path = written(tmp_path / "a.xlsx", fill)
-        started = time.monotonic()
+        started = time.process_time()
         (sheet,) = read_table(path)
         assert sheet.rows[10_000] == ("Grade 9999", D(10_899), D(38))
         with pytest.raises(UnreadableTable, match="10,000 rows of categories; a plan holds at most 1,000"):
@@ -451,7 +451,7 @@ class TestWorkbooks:
         short = Sheet("Crew", sheet.rows[:1001])
         mapping = propose_mapping(short, What.CATEGORIES)
         assert len(import_rows(short, mapping, Plan()).plan_after().categories) == 1000
-        assert time.monotonic() - started < 5
+        assert time.process_time() - started < 5
 
 
 def packed(parts: dict[str, bytes], like: Path | None = None) -> bytes:
@@ -479,7 +479,7 @@ class TestHostileWorkbooks:
         """The sentence; found within 5 s and 300 MB of Python's memory."""
         path = tmp_path / name
         path.write_bytes(content)
-        started = time.monotonic()
+        started = time.process_time()
         tracemalloc.start()
         try:
             with pytest.raises(UnreadableTable) as refused:
@@ -487,7 +487,7 @@ class TestHostileWorkbooks:
             assert tracemalloc.get_traced_memory()[1] < 300_000_000
         finally:
             tracemalloc.stop()
-        assert time.monotonic() - started < 5
+        assert time.process_time() - started < 5
         assert "\n" not in str(refused.value)
         return str(refused.value)
 
