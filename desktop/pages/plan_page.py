@@ -9,6 +9,7 @@ from PySide6.QtGui import QResizeEvent
 from PySide6.QtWidgets import (
     QHBoxLayout,
     QLabel,
+    QScrollArea,
     QSplitter,
     QToolButton,
     QVBoxLayout,
@@ -30,6 +31,8 @@ from desktop.tables.table import Table
 from desktop.tables.work_table import WORKS
 
 _GROUPS = "plan page/columns"
+_LEAST, _MOST = 16, 50  # height of a grid, beside others and in a page that scrolls
+_WIDE = 110  # steps of the grid from which works and rules stand side by side
 
 
 class PlanPage(QWidget):
@@ -58,6 +61,7 @@ class PlanPage(QWidget):
         self._lay_out()
         self._restore_groups()
         document.changed.connect(self._follow)
+        document.changed.connect(self._share_height)
         answers.changed.connect(self._show_problems)
         document.replaced.connect(self._share_soon.start)
         self._follow()
@@ -114,7 +118,11 @@ class PlanPage(QWidget):
         layout.setContentsMargins(2 * step, step, 2 * step, step)
         layout.setSpacing(step)
         layout.addWidget(self.fields)
-        layout.addWidget(whole, 1)
+        scroll = QScrollArea()
+        scroll.setWidget(whole)
+        scroll.setWidgetResizable(True)
+        scroll.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+        layout.addWidget(scroll, 1)
         layout.addWidget(thin_rule())
         layout.addWidget(label(messages.CAUTION, theme.Size.SMALL, "faint"))
 
@@ -163,8 +171,18 @@ class PlanPage(QWidget):
             self._share_width()
         self._mark_used_groups()
 
+    def _share_height(self) -> None:
+        """Grids below one another are as high as they are, since the page scrolls."""
+        stacked = self._below.orientation() == Qt.Orientation.Vertical
+        most = theme.current().px(_MOST if stacked else _LEAST)
+        for view in (self.categories, self.works, self.phases, self.rules):
+            view.setMinimumHeight(min(view.whole_height(), most))
+
     def _share_width(self) -> None:
-        """The grids below as wide as they are, the rules the rest, but never less than a quarter of it."""
+        """Grids side by side are as wide as they are, the rules take the rest, at least a quarter."""
+        self._share_height()
+        if self._below.orientation() == Qt.Orientation.Vertical:
+            return
         whole = self._below.width()
         phases_wide = self.phases.whole_width() if not self._phase_part.isHidden() else 0
         works_wide = min(self.works.whole_width(), whole * 3 // 4 - phases_wide)
@@ -190,8 +208,10 @@ class PlanPage(QWidget):
         self.rules.rule_model.show_problems(problems)
 
     def resizeEvent(self, event: QResizeEvent) -> None:
-        """The first size a page gets decides how wide its grids start."""
+        """Side by side where there is room, else one below the other in a page that scrolls."""
         super().resizeEvent(event)
+        wide = self.width() >= theme.current().px(_WIDE)
+        self._below.setOrientation(Qt.Orientation.Horizontal if wide else Qt.Orientation.Vertical)
         self._share_soon.start()
 
 

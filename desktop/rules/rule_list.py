@@ -25,7 +25,6 @@ from desktop.rules.rule_model import RuleModel
 from desktop.tables.clipboard import text_of
 from solver.plan import Rule
 
-
 _NAMES = 19  # width of the column of names, in steps of the grid
 
 
@@ -76,6 +75,11 @@ class RuleList(QTableView):
         self.selectRow(row)
         self.setFocus(Qt.FocusReason.OtherFocusReason)
         return True
+
+    def whole_height(self) -> int:
+        """Pixels that show every rule without scrolling."""
+        rows = max(self.verticalHeader().length(), theme.current().px(4))
+        return self.horizontalHeader().sizeHint().height() + rows
 
     def menu(self) -> QMenu:
         """One entry per kind of rule that can be added."""

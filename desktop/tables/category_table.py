@@ -16,7 +16,7 @@ from desktop.tables.table import Table
 from solver.plan import ONE, ZERO, Category, Plan, Supervision
 from solver.review import step
 
-LIMITS, MOVES, OVERTIME = "limits", "moves", "overtime"
+LIMITS, MOVES, HOURS = "limits", "moves", "hours"
 
 
 def _names(plan: Plan) -> tuple[str, ...]:
@@ -158,7 +158,7 @@ def _columns(plan: Plan) -> tuple[Column, ...]:
             "Share of the paid hours that are lost to leave, illness and training.",
             kind=Kind.PERCENT,
         ),
-        *_overtime(plan),
+        *_more_hours(plan),
         *(_output(work.name, work.unit) for work in plan.works),
         _supervision_hours(plan.period),
         _supervised_by(),
@@ -224,27 +224,27 @@ def _moves(currency: str) -> tuple[Column, ...]:
             "Paid once if anybody of this category is there in any phase: equipment, a hut, a licence.",
             group=MOVES,
         ),
-        _field(
-            "settling_hours",
-            "Settling in",
-            "h/joiner",
-            "Hours of one joiner that are lost in the phase of joining.",
-            group=MOVES,
-        ),
     )
 
 
-def _overtime(plan: Plan) -> tuple[Column, ...]:
+def _more_hours(plan: Plan) -> tuple[Column, ...]:
     return (
         _field(
             "overtime_hours",
             "Overtime",
             f"h/{plan.period}",
             f"The most overtime one person can work per {plan.period}, beyond the paid hours.",
-            group=OVERTIME,
+            group=HOURS,
         ),
         _field(
-            "overtime_rate", "Rate", f"{plan.currency}/h", "What one hour of overtime costs.", group=OVERTIME
+            "overtime_rate", "Rate", f"{plan.currency}/h", "What one hour of overtime costs.", group=HOURS
+        ),
+        _field(
+            "settling_hours",
+            "Settling in",
+            "h/joiner",
+            "Hours of one joiner that are lost in the phase of joining.",
+            group=HOURS,
         ),
         _field(
             "day_absence",
@@ -252,7 +252,7 @@ def _overtime(plan: Plan) -> tuple[Column, ...]:
             "%",
             "Chance that one person is away on a working day, where it differs from the absence.",
             kind=Kind.PERCENT,
-            group=OVERTIME,
+            group=HOURS,
             blank=None,
             none_shown=messages.AS_ABSENCE,
         ),
@@ -281,8 +281,8 @@ CATEGORIES = Table(
     loss=_loss,
     alone=_alone,
     groups=(
-        (LIMITS, "Limits and lots", "At least, at most, least if any, lot"),
-        (MOVES, "Joining and leaving", "Costs of joining, leaving and opening; settling-in hours"),
-        (OVERTIME, "Overtime and day absence", "Overtime hours and rate; chance of being away on a day"),
+        (LIMITS, "Limits", "At least, at most, least if any, lot"),
+        (MOVES, "Joining and leaving", "What joining, leaving and opening cost"),
+        (HOURS, "More hours", "Overtime and its rate, settling in, chance of being away on a day"),
     ),
 )

@@ -57,7 +57,7 @@ class Column:
     @property
     def header(self) -> str:
         """Title, in two lines where it is long, over unit."""
-        title = in_two_lines(self.title)
+        title = in_two_lines(self.title) if self.is_number else self.title
         return f"{title}\n{self.unit}" if self.unit else title
 
     @property

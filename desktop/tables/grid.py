@@ -22,6 +22,7 @@ from desktop.tables.grid_model import GridModel
 from solver.plan import Plan
 
 Cell = tuple[int, int]
+_BELOW = 16  # pixels for a scroll bar below the rows
 
 
 class Grid(QTableView):
@@ -87,6 +88,10 @@ class Grid(QTableView):
         """Pixels that show every column without scrolling."""
         bar = self.verticalScrollBar().sizeHint().width()
         return self.horizontalHeader().length() + bar + 2 * self.frameWidth()
+
+    def whole_height(self) -> int:
+        """Pixels that show every row without scrolling."""
+        return self.horizontalHeader().sizeHint().height() + self.verticalHeader().length() + _BELOW
 
     def show_place(self, place: str) -> bool:
         """Select the cell a problem's place means; False if it is in another table."""
@@ -255,7 +260,7 @@ class Grid(QTableView):
         """Rows and columns follow the zoom."""
         super().changeEvent(event)
         if event.type() == QEvent.Type.FontChange and hasattr(self, "_growing"):
-            self.fit_columns()
+            QTimer.singleShot(0, self, self.fit_columns)  # when the header has the font as well
 
     def closeEditor(self, editor: QWidget, hint: QAbstractItemDelegate.EndEditHint) -> None:
         """After Return the cell below is next, as in a column of figures."""

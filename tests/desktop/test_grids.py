@@ -8,7 +8,7 @@ from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication, QLineEdit, QMessageBox
 
 from desktop.document import Document
-from desktop.tables.category_table import CATEGORIES, LIMITS, MOVES, OVERTIME
+from desktop.tables.category_table import CATEGORIES, HOURS, LIMITS, MOVES
 from desktop.tables.cell_editors import NameList
 from desktop.tables.grid import Grid
 from desktop.tables.grid_model import GridModel
@@ -28,7 +28,7 @@ from solver.review import review
 
 D = Decimal
 EDIT = Qt.ItemDataRole.EditRole
-EVERY_GROUP = (LIMITS, MOVES, OVERTIME)
+EVERY_GROUP = (LIMITS, MOVES, HOURS)
 
 
 def plan():

@@ -8,7 +8,7 @@ from PySide6.QtTest import QTest
 from desktop.answers import Answers, Status
 from desktop.document import Document
 from desktop.pages.plan_page import PlanPage
-from desktop.tables.category_table import LIMITS, MOVES, OVERTIME
+from desktop.tables.category_table import HOURS, LIMITS, MOVES
 from solver.review import Problem
 from tests.desktop import samples
 
@@ -85,7 +85,7 @@ def test_hidden_columns_that_hold_something_are_marked(made):
     texts = {key: button.text() for key, button in page._group_buttons.items()}
     assert texts[LIMITS].endswith("•")  # the fencing gang comes in lots of four
     assert texts[MOVES].endswith("•")
-    assert not texts[OVERTIME].endswith("•")
+    assert not texts[HOURS].endswith("•")
     plain = tuple(replace(c, lot=D(1), join_cost=D(0)) for c in document.plan.categories)
     document.edit("x", replace(document.plan, categories=plain))
     assert not page._group_buttons[LIMITS].text().endswith("•")
