@@ -368,8 +368,8 @@ class SafeCrew:
 @dataclass(frozen=True)
 class Attendance:
     """Answer of `attend`. `wanted` None: `why_none` says why; `beyond_budget` is then what it would take
-    without the budget. `curve` holds the cheapest crews for rising chances, beginning with the exact crew;
-    `simulated`: some chances are from drawn days."""
+    without the budget. `curve` holds the cheapest crews for rising chances, the budget left aside, beginning
+    with the exact crew; `simulated`: some chances are from drawn days."""
 
     chance: float
     phases: tuple[PhaseAttendance, ...]

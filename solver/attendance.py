@@ -13,6 +13,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
 from dataclasses import replace
+from functools import cached_property
 from itertools import islice
 from time import monotonic
 
@@ -20,6 +21,7 @@ from solver import heads
 from solver.answer import Attendance, CrewChance, Policy, SafeCrew
 from solver.chances import SAME, Chances
 from solver.dayrisk import DayRisk
+from solver.exactcrew import exact_crew
 from solver.inquiry import Heard, unheard
 from solver.plan import Budget, Plan
 from solver.program import Program
@@ -34,17 +36,14 @@ MOST_NEAR = 5
 NEAR = Limits(nodes=4_000, seconds=1.0)
 
 
-def attend(
-    plan: Plan, chance: float, *, seconds: float | None = None, heard: Heard = unheard
-) -> Attendance | None:
-    """Answer for the wanted chance (0 < chance < 1) of a covered day; None if no crew is known at all.
+def attend(plan: Plan, chance: float, *, seconds: float | None = None, heard: Heard = unheard) -> Attendance:
+    """Answer for the wanted chance (0 < chance < 1) of a covered day.
 
-    `seconds` (None: 30) limits the searches for safer crews. Raises EngineFailure if an engine breaks.
+    `seconds` (None: 30) limits the searches for safer crews. Raises NoExactCrew, and EngineFailure if an
+    engine breaks. A best crew that is not proved will do to start from.
     """
     case = Case(plan)
-    exact = case.proved.best
-    if exact is None:
-        return None
+    exact = case.proved.best or exact_crew(case)[0]
     return _Attending(case, exact, SECONDS if seconds is None else seconds, heard).answer(chance)
 
 
@@ -68,8 +67,8 @@ class _Attending:
         self._tell("The cheapest crew for the wanted chance", 0.1)
         wanted = self._safe.cheapest(chance, self._seconds * 0.5)
         why, beyond = self._missing(wanted)
-        safe = self._shown(wanted)
-        compared = tuple(self._compared(safe))
+        safe = None if wanted.best is None else self._shown(self._safe, wanted, wanted.best)
+        compared = tuple(self._compared(wanted.best))
         curve = tuple(self._curve(wanted))
         simulated = any(phase.drawn for phase in phases)
         return Attendance(chance, phases, safe, why, beyond, compared, curve, simulated)
@@ -83,10 +82,12 @@ class _Attending:
 
     # ---- safer crews -------------------------------------------------------------------------
 
-    def _shown(self, safe: Safe) -> SafeCrew | None:
-        if safe.best is None:
-            return None
-        return _safe_crew(self.case.program, self.chances, safe, safe.best, self.exact.objective)
+    def _shown(self, search: SafeSearch, safe: Safe, best: Found) -> SafeCrew:
+        values = tuple(chance.value for chance in search.chances.of(best.lots))
+        extra = max(best.objective - self.exact.objective, 0.0)
+        crew = heads.crew_of(search.program, best.lots)
+        covered = min(values)
+        return SafeCrew(safe.wanted, crew, best.objective, extra, covered, values, safe.proved, safe.bound)
 
     def _missing(self, wanted: Safe) -> tuple[str, SafeCrew | None]:
         """Why there is no safe crew, and what one would cost without the budget."""
@@ -95,43 +96,48 @@ class _Attending:
         share = f"{100 * wanted.wanted:g} %"
         if not wanted.proved:
             return f"No crew for {share} of days was found in the time given; more time may find one.", None
-        beyond = self._beyond_budget(wanted.wanted)
-        if beyond is None:
+        search = self._unbudgeted
+        safe = search.cheapest(wanted.wanted, self._left / 2) if search is not self._safe else wanted
+        if safe.best is None:
             return f"No workable crew covers {share} of days in every phase.", None
+        beyond = self._shown(search, safe, safe.best)
         return f"No workable crew covers {share} of days within the budget.", beyond
 
-    def _beyond_budget(self, chance: float) -> SafeCrew | None:
+    def _curve(self, wanted: Safe) -> list[SafeCrew]:
+        """The cheapest crews for rising chances, the budget left aside, beginning with the exact crew."""
+        search = self._unbudgeted
+        chance = search.chances.least(self.exact.lots)
+        curve = [self._shown(search, Safe(chance, self.exact, self.exact.objective, True), self.exact)]
+        known = [] if wanted.best is None else [wanted.best]
+        while self._left:
+            covered = curve[-1].covered
+            higher = [c for c in (*CURVE, wanted.wanted) if c > covered + SAME]
+            if not higher:
+                break
+            self._tell("What rising chances cost", 0.2 + 0.8 * covered)
+            chance = min(higher)
+            safe = wanted if chance == wanted.wanted and wanted.best is not None else None
+            safe = safe or search.cheapest(chance, self._left / 2, known)
+            if safe.best is None:
+                break
+            curve.append(self._shown(search, safe, safe.best))
+        return curve
+
+    @cached_property
+    def _unbudgeted(self) -> SafeSearch:
+        """The search of the plan without its budgets."""
         plan = self.case.plan
         rules = tuple(rule for rule in plan.rules if not isinstance(rule, Budget))
         if len(rules) == len(plan.rules):
-            return None
+            return self._safe
         program = Program(replace(plan, rules=rules))
         chances = Chances(program)
         chances.settle(self.exact.lots)
-        safe = SafeSearch(program, chances, self.exact).cheapest(chance, self._left / 2)
-        if safe.best is None:
-            return None
-        return _safe_crew(program, chances, safe, safe.best, self.exact.objective)
-
-    def _curve(self, wanted: Safe) -> Iterator[SafeCrew]:
-        """The cheapest crews for rising chances, beginning with the exact crew itself."""
-        chance = self.chances.least(self.exact.lots)
-        cost = self.exact.objective
-        now = self._shown(Safe(chance, self.exact, cost, True))
-        known: list[Found] = [] if wanted.best is None else [wanted.best]
-        while now is not None:
-            yield now
-            higher = [c for c in (*CURVE, wanted.wanted) if c > now.covered + SAME]
-            if not higher or not self._left:
-                return
-            self._tell("What rising chances cost", 0.2 + 0.8 * now.covered)
-            chance = min(higher)
-            safe = wanted if chance == wanted.wanted else self._safe.cheapest(chance, self._left / 2, known)
-            now = self._shown(safe)
+        return SafeSearch(program, chances, self.exact)
 
     # ---- crews side by side ------------------------------------------------------------------
 
-    def _compared(self, safe: SafeCrew | None) -> Iterator[CrewChance]:
+    def _compared(self, safe: Found | None) -> Iterator[CrewChance]:
         shown = {self.exact.lots}
         yield self._judged(Policy.EXACT.value, self.exact.lots)
         for name, lots in self._roundings():
@@ -141,9 +147,7 @@ class _Attending:
             if lots not in shown:
                 yield self._judged(f"near-best, no. {rank}", lots)
         if safe is not None:
-            found = _whole(heads.lots_of(self.case.program, safe.crew))
-            if found is not None:
-                yield self._judged(f"safe to {100 * safe.wanted:g} %", found)
+            yield self._judged("safe", safe.lots)
 
     def _roundings(self) -> Iterator[tuple[str, Lots]]:
         case = self.case
@@ -174,17 +178,3 @@ def _whole(lots: Sequence[object]) -> Lots | None:
     """Lots as whole numbers; None for an own crew with part of a lot: nobody can be partly present."""
     whole = tuple(int(n) for n in lots)  # type: ignore[call-overload]
     return whole if all(a == b for a, b in zip(whole, lots, strict=True)) else None
-
-
-def _safe_crew(program: Program, chances: Chances, safe: Safe, best: Found, exact_cost: float) -> SafeCrew:
-    values = tuple(chance.value for chance in chances.of(best.lots))
-    return SafeCrew(
-        safe.wanted,
-        heads.crew_of(program, best.lots),
-        best.objective,
-        max(best.objective - exact_cost, 0.0),
-        min(values),
-        values,
-        safe.proved,
-        safe.bound,
-    )

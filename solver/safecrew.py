@@ -11,6 +11,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
 from decimal import Decimal
+from itertools import cycle
 from math import floor, inf
 from time import monotonic
 
@@ -59,13 +60,25 @@ class SafeSearch:
             return Safe(wanted, None, inf, True)
         candidates = [self.exact, *known, *self._put_together(floors)]
         start = self._start(wanted, candidates, monotonic() + max(until - monotonic(), 0.0) / 3)
+        if start is not None:
+            start = self._replanned(wanted, floors, start, monotonic() + max(until - monotonic(), 0.0) / 2)
         return self._search_all(wanted, floors, start, until)
 
     # ---- in order of cost --------------------------------------------------------------------
 
-    def _search_all(self, wanted: float, floors: Sequence[Safe], start: Found | None, until: float) -> Safe:
+    def _search_all(
+        self,
+        wanted: float,
+        floors: Sequence[Safe],
+        start: Found | None,
+        until: float,
+        window: int | None = None,
+    ) -> Safe:
+        """`window`: only that phase's head counts may differ from `start`."""
         limit = inf if start is None else start.objective + tie_width(start.objective)
         program, matrix = self._tightened(limit, floors)
+        if window is not None and start is not None:
+            self._hold_others(matrix, start.lots, window)
         rows = SafeRows(program, matrix, self.chances, wanted)
         search = Search(program, matrix, grain=self._search.grain)
         pay = np.array(matrix.cost[: program.head_count])
@@ -141,6 +154,24 @@ class SafeSearch:
             return []
         lots = tuple(crew[j] for j in range(len(self.program.categories)) for crew in crews)
         return [Found(lots, inf)]
+
+    def _replanned(self, wanted: float, floors: Sequence[Safe], best: Found, until: float) -> Found:
+        """Each phase solved again with the others held, until none gets cheaper; nothing for one phase."""
+        span = len(self.program.phases)
+        unchanged = 0
+        for t in cycle(range(span)):
+            if unchanged >= span or span == 1 or monotonic() > until:
+                return best
+            found = self._search_all(wanted, floors, best, until, window=t).best
+            unchanged = 0 if found is not None and found.lots != best.lots else unchanged + 1
+            best = found or best
+        raise AssertionError("a plan without phases")
+
+    def _hold_others(self, matrix: Matrix, lots: Lots, window: int) -> None:
+        span = len(self.program.phases)
+        for i, n in enumerate(lots):
+            if i % span != window:
+                matrix.lower[i] = matrix.upper[i] = float(n)
 
     # ---- climbing ----------------------------------------------------------------------------
 
