@@ -22,6 +22,7 @@ KINDS: Mapping[str, type[Any]] = {
     "room": answer.Room,
     "near": answer.NearBest,
     "steps": answer.Steps,
+    "attend": answer.Attendance,
 }
 
 

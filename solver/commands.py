@@ -14,7 +14,7 @@ from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from typing import IO, Any, NoReturn
 
-from solver import report, report_cost, report_near, report_room
+from solver import report, report_attendance, report_cost, report_near, report_room
 from solver.answer import Answer, State, to_json
 from solver.engine import EngineFailure, quiet_native_output
 from solver.plan import Plan
@@ -56,6 +56,17 @@ def _near_arguments(parser: argparse.ArgumentParser) -> None:
     parser.add_argument("--most", type=int, default=20, metavar="N", help="how many crews (default 20)")
 
 
+def _attend_arguments(parser: argparse.ArgumentParser) -> None:
+    _long_arguments(parser)
+    parser.add_argument(
+        "--chance",
+        type=float,
+        default=0.95,
+        metavar="P",
+        help="wanted chance that a day is covered: a share (0.95, the default) or per cent (95)",
+    )
+
+
 VERBS: tuple[Verb, ...] = (
     Verb(
         "solve", "the exact crew, its proof, and what every rounding breaks", _solve_arguments, report.solve
@@ -63,6 +74,12 @@ VERBS: tuple[Verb, ...] = (
     Verb("cost", "what whole people cost, and each category's part", _long_arguments, report_cost.cost),
     Verb("room", "how far lines can tighten, and which loosening pays", _long_arguments, report_room.room),
     Verb("near", "every whole crew that costs little more", _near_arguments, report_near.near),
+    Verb(
+        "attend",
+        "how often enough people are there, and a safer crew",
+        _attend_arguments,
+        report_attendance.attend,
+    ),  # fmt: skip
 )
 
 

@@ -7,6 +7,7 @@ from dataclasses import dataclass
 from math import isfinite
 from typing import Any
 
+from solver.attendance import attend
 from solver.nearbest import near_best
 from solver.plan import Plan
 from solver.room import room
@@ -50,6 +51,15 @@ def _near(plan: Plan, options: Options, heard: Heard) -> Any:
     return near_best(plan, within=float(within), most=int(most), seconds=seconds, heard=heard)
 
 
+def _attend(plan: Plan, options: Options, heard: Heard) -> Any:
+    chance = options.get("chance", 0.95)
+    if not _is_number(chance) or not 0 < chance < 100 or chance == 1:
+        raise BadOption(f"{chance} is no usable chance; allowed is a share of days above 0 and below 1, "
+                        "or per cent above 1 and below 100.")  # fmt: skip
+    share = float(chance) if chance < 1 else float(chance) / 100
+    return attend(plan, share, seconds=options.get("seconds"), heard=heard)
+
+
 def _is_number(value: Any) -> bool:
     return isinstance(value, (int, float)) and not isinstance(value, bool) and isfinite(value)
 
@@ -61,5 +71,6 @@ QUESTIONS: Mapping[str, Question] = {
         Question("cost", _cost),
         Question("room", _room),
         Question("near", _near),
+        Question("attend", _attend),
     )
 }
