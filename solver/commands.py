@@ -79,7 +79,7 @@ VERBS: tuple[Verb, ...] = (
         "how often enough people are there, and a safer crew",
         _attend_arguments,
         report_attendance.attend,
-    ),  # fmt: skip
+    ),
 )
 
 
