@@ -6,6 +6,7 @@ from collections.abc import Sequence
 from decimal import Decimal
 
 from desktop import figures
+from desktop.page.detail import ALL
 from desktop.page.fullest import fullest
 from desktop.page.recommendation import CrewRow, CrewTable, Recommendation
 from desktop.page.speech import count_of
@@ -17,10 +18,13 @@ _NAMED_PHASES = 4
 _WIDEST_PHASE = 58.0
 
 
-def crew_grid(what: Recommendation, table: CrewTable, rows: int) -> Grid:
-    """At most `rows` categories; the others share a row of sums, so that every column still adds up."""
+def crew_grid(what: Recommendation, table: CrewTable, rows: int, phases: int = ALL) -> Grid:
+    """At most `rows` categories; the others share a row of sums, so that every column still adds up.
+
+    Of more than `phases` phases the fullest are shown.
+    """
     shown = table.rows if len(table.rows) <= rows else _with_rest(table.rows, rows)
-    columns = _Columns(what, table, shown)
+    columns = _Columns(what, table, shown, phases_shown(table, phases))
     several = len(table.phases) > 1
     feet = ("Together", "Joining", "Leaving") if several else ("Together",)
     return Grid("Category", tuple(row.name for row in shown), feet, columns.every())
@@ -51,7 +55,10 @@ def _with_rest(rows: Sequence[CrewRow], most: int) -> tuple[CrewRow, ...]:
 class _Columns:
     """Builds the columns of one grid."""
 
-    def __init__(self, what: Recommendation, table: CrewTable, shown: Sequence[CrewRow]) -> None:
+    def __init__(
+        self, what: Recommendation, table: CrewTable, shown: Sequence[CrewRow], phases: Sequence[int]
+    ) -> None:
+        self._phases = phases
         self._what = what
         self._table = table
         self._shown = shown
@@ -62,7 +69,7 @@ class _Columns:
         now = [row.now for row in self._shown]
         total = sum((row.now for row in self._table.rows), ZERO)
         made = [Column("On the books", "people", self._people(now), self._feet(total))]
-        made += [self._phase(t) for t in range(len(self._table.phases))]
+        made += [self._phase(t) for t in self._phases]
         made.append(self._moves("Join", [r.joiners for r in self._shown], self._table.joiners, 1))
         made.append(self._moves("Leave", [r.leavers for r in self._shown], self._table.leavers, 2))
         made.append(self._money("Pay", [r.pay for r in self._shown], [r.pay for r in self._table.rows]))
@@ -117,12 +124,16 @@ def phase_titles(table: CrewTable) -> tuple[str, ...]:
     return tuple(f"Phase {at + 1}" for at in range(len(table.phases)))
 
 
-def phase_key(what: Recommendation, table: CrewTable, letters: int = 28) -> str:
+def phases_shown(table: CrewTable, most: int) -> list[int]:
+    """Which phases get a column: all, or the `most` with the most people."""
+    totals = [sum((row.heads[t] for row in table.rows), ZERO) for t in range(len(table.phases))]
+    return fullest(range(len(totals)), totals, most)
+
+
+def phase_key(what: Recommendation, table: CrewTable, shown: Sequence[int], letters: int = 28) -> str:
     """1 Clearing (3 weeks), 2 Planting (8 weeks)."""
     lengths = what.phase_lengths
     if not phases_numbered(table):
         return "; ".join(f"{name(p)}: {long}" for p, long in zip(table.phases, lengths, strict=True))
-    parts = []
-    for at, (phase, long) in enumerate(zip(table.phases, lengths, strict=True)):
-        parts.append(f"{at + 1}\u00a0{name(phase, letters)} ({long})")
+    parts = [f"{at + 1}\u00a0{name(table.phases[at], letters)} ({lengths[at]})" for at in shown]
     return "Phases: " + "; ".join(parts)

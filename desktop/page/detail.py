@@ -1,9 +1,9 @@
 """How much of the recommendation is printed, and the order in which detail goes when the page is full.
 
 The order: air and type size (never below 8 pt) - outputs and other assumptions - the tally's counts per
-phase, then its rows - near-best crews - reasons against the less usual roundings - binding lines - rows of
-the table, which then share one line ("and 7 more categories"). Decision, totals, costs, caution, signatures
-and origin always stay.
+phase - of more than 12 phases all but the fullest - the tally's rows - near-best crews - reasons against the
+less usual roundings - binding lines - rows of the table, which then share one line ("and 7 more categories").
+Decision, totals, costs, caution, signatures and origin always stay.
 """
 
 from __future__ import annotations
@@ -31,6 +31,7 @@ class Detail:
     binding: int = ALL
     conflict: int = ALL
     table: int = ALL
+    phases: int = ALL
     name_lines: int = 3
     phase_key: bool = True
 
@@ -45,6 +46,8 @@ _DROPS: tuple[dict[str, float | int | bool], ...] = (
     {"assumptions": 8},
     {"headline": 13.0, "body": 8.0, "air": 0.55},
     {"compact": True},
+    {"phases": 24},
+    {"phases": 12},
     {"tally": 8},
     {"assumptions": 5},
     {"name_lines": 2},
@@ -73,13 +76,17 @@ _DROPS: tuple[dict[str, float | int | bool], ...] = (
     {"name_lines": 1},
     {"table": 8, "conflict": 6},
     {"table": 6},
+    {"phases": 8},
     {"rounding": 1, "conflict": 4},
     {"table": 4},
     {"phase_key": False},
+    {"phases": 6},
     {"table": 3},
     {"table": 2, "conflict": 2},
     {"binding": 0, "rounding": 0},
     {"table": 1},
+    {"phases": 3},
+    {"phases": 1},
 )
 
 

@@ -15,13 +15,18 @@ from desktop.page.marks import NOTHING, Mark, Piece, evenly, stacked
 from desktop.page.paper import Paper
 from desktop.page.recommendation import Recommendation
 from desktop.page.tally_print import tally_piece
+from desktop.page.text import forget_measures
+from desktop.page_words import TOO_FULL
 
 _GAP = 13.0
 _WIDEST_GAP = 21.0
 
 
-class PageTooFull(Exception):
+class PageTooFull(ValueError):
     """Not even the barest stage fits: a title or sentence of the plan is out of all proportion."""
+
+    def __init__(self) -> None:
+        super().__init__(TOO_FULL)
 
 
 @dataclass(frozen=True)
@@ -35,6 +40,7 @@ class Sheet:
 
 def lay_out(what: Recommendation, paper: Paper) -> Sheet:
     """The page of `what` on `paper`. Raises PageTooFull when nothing more can be left out."""
+    forget_measures()  # fonts may have been added since
     low, high = 0, len(STAGES) - 1
     if _room(what, paper, STAGES[high]) < 0:
         raise PageTooFull

@@ -6,7 +6,7 @@ from decimal import Decimal
 
 from desktop import figures
 from desktop.messages import CAUTION
-from desktop.page.crew_grid import crew_grid, phase_key
+from desktop.page.crew_grid import crew_grid, phase_key, phases_shown
 from desktop.page.detail import SMALLEST, Detail
 from desktop.page.marks import (
     NOTHING,
@@ -81,7 +81,7 @@ def crew(what: Recommendation, width: float, detail: Detail) -> Piece:
     """The table now -> recommended with its sums, further costs, and what the phases are."""
     if what.table is None:
         return NOTHING
-    grid = crew_grid(what, what.table, detail.table)
+    grid = crew_grid(what, what.table, detail.table, detail.phases)
     pieces = [table(grid, width, detail.body, detail.name_lines)]
     notes = [words for words in (_sums(what), _phases(what, detail)) if words]
     pieces += [paragraph(text(words, SMALLEST, role="faint"), width) for words in notes]
@@ -103,11 +103,18 @@ def _money(what: Recommendation, money: Decimal) -> str:
 
 
 def _phases(what: Recommendation, detail: Detail) -> str:
+    """What the phases are, and how many have no column."""
     if what.table is None or len(what.table.phases) == 1:
         return ""
-    return (
-        phase_key(what, what.table) if detail.phase_key else "Phases are numbered in the order of the plan."
-    )
+    shown = phases_shown(what.table, detail.phases)
+    if len(shown) < len(what.table.phases):
+        rest = (
+            f"The {len(shown)} fullest of {len(what.table.phases)} phases, numbered in the order of the plan."
+        )
+        return f"{rest} {phase_key(what, what.table, shown)}" if detail.phase_key else rest
+    if not detail.phase_key:
+        return "Phases are numbered in the order of the plan."
+    return phase_key(what, what.table, shown)
 
 
 def conflict(what: Recommendation, width: float, detail: Detail) -> Piece:

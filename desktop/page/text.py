@@ -126,6 +126,13 @@ def _break_lines(layout: QTextLayout, what: Text, width: float) -> None:
     layout.endLayout()
 
 
+def forget_measures() -> None:
+    """Measure every text anew: for when fonts came or went."""
+    natural_width.cache_clear()
+    line_count.cache_clear()
+
+
+@lru_cache(maxsize=20_000)
 def line_count(what: Text, width: float) -> int:
     """How many lines `what` takes at `width` points."""
     return max(1, shaped(what, width).lineCount())
@@ -145,6 +152,7 @@ def balanced_width(what: Text, width: float) -> float:
     return high
 
 
+@lru_cache(maxsize=20_000)
 def natural_width(what: Text) -> float:
     """Width in points on one line, a hair more to be safe against breaking."""
     layout = shaped(what, 1e5)

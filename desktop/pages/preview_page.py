@@ -123,9 +123,9 @@ class PreviewPage(AnswerPage):
             return
         try:
             self.view.show_sheet(lay_out(self._what, paper(self.paper_choice.currentText())), self.grey)
-        except PageTooFull:
+        except PageTooFull as too_full:
             self.view.show_sheet(None)
-            self.tell(say.TOO_FULL)
+            self.tell(str(too_full))
 
     def recommendation(self) -> Recommendation | None:
         """What the page says, None while there is no answer."""

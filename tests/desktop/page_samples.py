@@ -57,8 +57,10 @@ def tag(number: int) -> str:
 class Sample:
     """One random plan and its answer; the same seed gives the same sample."""
 
-    def __init__(self, seed: int) -> None:
+    def __init__(self, seed: int, shape: tuple[int, int] | None = None) -> None:
+        """`shape`: categories and phases, drawn where it is not given."""
         self.seed = seed
+        self._shape = shape
         self._draw = random.Random(seed)
         self.plan = self._plan()
         self.answer = self._answer()
@@ -73,6 +75,7 @@ class Sample:
         draw = self._draw
         count = draw.choice((1, 2, 3, 4, 5, 6, 8, 12, 20, 30, 40))
         spans = draw.choice((1, 1, 1, 2, 3, 4, 6, 12))
+        count, spans = self._shape or (count, spans)
         works = tuple(self._work(k, spans) for k in range(draw.choice((1, 2, 5, 9))))
         names = [f"{draw.choice(NAMES)} {tag(j)}" for j in range(count)]
         return Plan(

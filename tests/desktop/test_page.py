@@ -13,7 +13,18 @@ from pypdf import PdfReader
 from PySide6.QtCore import QLocale
 
 from desktop import messages
-from desktop.page import Details, lay_out, page_bytes, paper, recommend, save_page, stamp, write_page
+from desktop.page import (
+    Details,
+    PageTooFull,
+    lay_out,
+    page_bytes,
+    paper,
+    recommend,
+    save_page,
+    stamp,
+    write_page,
+)
+from desktop.page.crew_grid import phases_shown
 from desktop.page.detail import SMALLEST, STAGES
 from desktop.page.fullest import fullest
 from desktop.page.paper import PaperSize
@@ -39,6 +50,7 @@ from solver.planfile import CannotSave, PlanProblems, UnreadableFile, content_ha
 from solver.solve import solve
 from tests.desktop import samples
 from tests.desktop.page_reading import sizes_of, text_of
+from tests.desktop.page_samples import Sample
 
 ENGLISH = QLocale(QLocale.Language.English, QLocale.Country.UnitedKingdom)
 WHEN = datetime(2031, 5, 6, 7, 8)
@@ -280,6 +292,24 @@ def test_a_crowded_page_is_laid_out_at_the_first_stage_that_fits(qapp):
     detail = lay_out(crowded, paper("A4")).detail
     assert detail.assumptions < len(crowded.assumptions)
     assert detail.tally >= len(plan.categories)
+
+
+def test_of_very_many_phases_the_fullest_are_shown(qapp):
+    sample = Sample(1, (20, 52))
+    what = made(sample.plan, sample.answer)
+    detail = lay_out(what, paper("A4")).detail
+    shown = phases_shown(what.table, detail.phases)
+    totals = [sum(row.heads[t] for row in what.table.rows) for t in range(52)]
+    assert 1 <= len(shown) < 52
+    assert min(totals[t] for t in shown) >= max(totals[t] for t in range(52) if t not in shown)
+    words = text_of(page_bytes(what))
+    assert f"The {len(shown)} fullest of 52 phases" in words
+
+
+def test_a_page_no_stage_can_hold_is_refused_in_a_sentence(qapp, hillside):
+    what = replace(made(*hillside), consequence="word " * 3000)
+    with pytest.raises(PageTooFull, match=r"too long for one page .*\.$"):
+        lay_out(what, paper("A4"))
 
 
 def test_markup_in_names_is_text(qapp):

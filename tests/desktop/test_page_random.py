@@ -24,9 +24,12 @@ SLACK = 1.5  # points: boxes are as high as the tallest letter of their font, fa
 SEEDS = range(100)
 
 
+LARGE = ((20, 52), (40, 12), (200, 1), (3, 104), (200, 52))  # categories, phases
+
+
 @cache
-def page_of(seed):
-    sample = Sample(seed)
+def page_of(seed, shape=None):
+    sample = Sample(seed, shape)
     own = seed % 4 == 0 and sample.answer.report(Policy.OWN).crew is not None
     return sample, recommend(
         sample.plan,
@@ -42,9 +45,12 @@ def text_marks(sheet):
     return [mark for mark in sheet.marks if isinstance(mark, TextMark)]
 
 
-@pytest.mark.parametrize("seed", SEEDS)
-def test_one_page_with_every_word_in_its_own_place(qapp, seed):
-    _, what = page_of(seed)
+CASES = [(seed, None) for seed in SEEDS] + [(seed, shape) for shape in LARGE for seed in (1, 2)]
+
+
+@pytest.mark.parametrize(("seed", "shape"), CASES)
+def test_one_page_with_every_word_in_its_own_place(qapp, seed, shape):
+    _, what = page_of(seed, shape)
     size = "A4" if seed % 2 else "Letter"
     sheet = lay_out(what, paper(size))
     content = page_bytes(what, size=size, grey=seed % 3 == 0)
