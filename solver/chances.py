@@ -120,9 +120,14 @@ def chance_of(turnout: Turnout, covered: Bools) -> Chance:
     return Chance(value, sqrt(fair * (1 - fair) / (turnout.drawn + 4)))
 
 
-def mean_error(weights: Floats, values: Floats, drawn: int) -> float:
-    """Standard error of a mean over drawn days; 0 where all patterns were looked at."""
+def mean_error(weights: Floats, values: Floats, drawn: int, most: float) -> float:
+    """Standard error of a mean over drawn days; 0 where all patterns were looked at.
+
+    As for chances, two days more are counted, on which the value is `most`: what was never drawn may still
+    happen.
+    """
     if not drawn:
         return 0.0
-    mean = float(weights @ values)
-    return sqrt(max(float(weights @ np.square(values)) - mean**2, 0.0) / drawn)
+    mean = (drawn * float(weights @ values) + 2 * most) / (drawn + 2)
+    squares = (drawn * float(weights @ np.square(values)) + 2 * most**2) / (drawn + 2)
+    return sqrt(max(squares - mean**2, 0.0) / (drawn + 2))

@@ -44,10 +44,10 @@ class Coverage:
 
     def __init__(self, program: Program) -> None:
         self.program = program
-        self._drawn = _drawn(program)
-        self.growing = [not drawn.any() for drawn in self._drawn.T]
+        self.drawn = _drawn(program)
+        self.growing = [not drawn.any() for drawn in self.drawn.T]
         self._solo = np.array(self.growing)
-        self._program = _DayProgram(program, self._drawn)
+        self._program = _DayProgram(program, self.drawn)
         self._work = np.zeros((0, len(program.plan.works)))
         self._people = np.zeros((0, len(program.categories)))
         self._hours = np.zeros((0, len(program.categories)))
@@ -65,7 +65,7 @@ class Coverage:
             )
             leads = any(category.name in group for group in program.groups)
             ruled = any(rule.each[j] for rule in day.rules)
-            if day.heads[j] and (works or leads or ruled or self._drawn[:, j].any()):
+            if day.heads[j] and (works or leads or ruled or self.drawn[:, j].any()):
                 found.append(j)
         return found
 
@@ -170,7 +170,7 @@ class Coverage:
     def _learn(self) -> None:
         work, groups, hours = self._program.prices()
         self._work = np.vstack([self._work, work])
-        self._people = np.vstack([self._people, groups @ self._drawn])
+        self._people = np.vstack([self._people, groups @ self.drawn])
         self._hours = np.vstack([self._hours, hours])
 
     def _inequalities(

@@ -53,7 +53,7 @@ class DayRisk:
             error=chance.error,
             by_line=self._by_line(day, turnout, shorts),
             expected_short=self._expected(t, turnout, shorts),
-            expected_error=self._expected_errors(t, turnout, shorts),
+            expected_error=self._expected_errors(day, turnout, shorts),
             survives=survives,
             first_miss=miss,
             critical=self._critical(day),
@@ -90,11 +90,20 @@ class DayRisk:
     def _expected(self, t: int, turnout: Turnout, shorts: _Shorts) -> dict[str, float]:
         return {line.name: float(turnout.weights @ s) for line, s in self._hours_lines(t, shorts)}
 
-    def _expected_errors(self, t: int, turnout: Turnout, shorts: _Shorts) -> dict[str, float]:
-        return {
-            line.name: mean_error(turnout.weights, s, turnout.drawn)
-            for line, s in self._hours_lines(t, shorts)
-        }
+    def _expected_errors(self, day: Day, turnout: Turnout, shorts: _Shorts) -> dict[str, float]:
+        errors = {}
+        for line, short in self._hours_lines(day.t, shorts):
+            errors[line.name] = mean_error(turnout.weights, short, turnout.drawn, self._most(day, line))
+        return errors
+
+    def _most(self, day: Day, line: Line) -> float:
+        """What the line asks for at most: all its work, or supervision of everybody."""
+        for one, _, kind, index, at in self.program.hours_lines:
+            if one == line and at == day.t:
+                if kind is LineKind.WORK:
+                    return float(day.demand[index]) * line.scale
+                return float(self._coverage.drawn[index] @ (day.heads * day.size)) * line.scale
+        return 0.0
 
     # ---- who is missed -----------------------------------------------------------------------
 
