@@ -186,11 +186,18 @@ def _alternatives(
     if near is None or chosen is None:
         return ()
     others = [crew for crew in near.crews if dict(crew.crew) != dict(chosen.crew)]
-    return tuple(_alternative(speech, crew) for crew in others[:2])
+    return tuple(_alternative(speech, answer, crew) for crew in others[:2])
 
 
-def _alternative(speech: Speech, crew: NearCrew) -> Labelled:
-    over = f"{speech.money(crew.over)} more" if crew.over >= 0.005 else "at the same cost"
+def _over(speech: Speech, answer: Answer, crew: NearCrew) -> str:
+    """What the crew costs beside the exact one."""
+    if answer.exact is not None and dict(crew.crew) == dict(answer.exact.crew):
+        return f"The exact crew, {speech.money(crew.cost)}"
+    return f"{speech.money(crew.over)} more" if crew.over >= 0.005 else "At the same cost"
+
+
+def _alternative(speech: Speech, answer: Answer, crew: NearCrew) -> Labelled:
+    over = _over(speech, answer, crew)
     peaks = [(max(exact_decimal(n) for n in counts), who) for who, counts in crew.crew.items()]
     words = crew_words(speech, peaks, 6)
     at_most = "at most " if len(speech.plan.phases) > 1 else ""

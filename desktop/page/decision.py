@@ -113,7 +113,7 @@ def consequence(speech: Speech, answer: Answer, chosen: Chosen, *, own: bool) ->
         return f"On paper it costs {speech.money(chosen.paper_cost or 0)}, but it cannot do the job."
     costs = f"It costs {speech.money(chosen.cost)} for {_whole_job(speech)}."
     if own:
-        return f"{costs} {own_extra(speech, answer, chosen)}"
+        return costs  # the banner says what it costs more
     if answer.state is State.PROVED:
         return f"{costs} Proved: no workable crew costs less."
     return (

@@ -8,13 +8,13 @@ from desktop.page.text import name, sentence
 from solver.answer import Answer, Break, CrewReport, LineKind, Policy, State
 from solver.plan import Plan
 
-LABELS = {
+LABELS = {  # the order in which they are told: the last ones go first where there is no room
     Policy.NEAREST: "Rounded to nearest",
     Policy.UP: "Rounded up",
+    Policy.PATCHED: "Patched",
     Policy.DOWN: "Rounded down",
     Policy.LARGEST_REMAINDER: "Largest remainder",
     Policy.BEST_CORNER: "Best corner",
-    Policy.PATCHED: "Patched",
 }
 _NOTES = {
     Policy.BEST_CORNER: "the cheapest workable choice of down or up per category",

@@ -103,9 +103,9 @@ def test_each_rounding_has_its_reason(qapp, hillside):
     assert list(reasons) == [
         "Rounded to nearest and largest remainder",
         "Rounded up",
+        "Patched",
         "Rounded down",
         "Best corner",
-        "Patched",
     ]
     assert "Breaks 3 lines" in reasons["Rounded to nearest and largest remainder"]
     assert "because Lead hand went from 2.24 to 2" in reasons["Rounded to nearest and largest remainder"]
@@ -203,8 +203,16 @@ def test_two_other_crews_at_most_and_never_the_same_one(qapp, hillside):
     crews = [NearCrew(answer.exact.crew, 133690, 0, 19, 0, 26, "Planting")]
     crews += [NearCrew(c, 133690 + 50 * i, 50.0 * i, 20, 1, 27, "Planting") for i, c in enumerate(other)]
     what = made(plan, answer, details=Details(near=NearBest(tuple(crews), True)))
-    assert [line.label for line in what.alternatives] == ["at the same cost", "EUR\u00a050 more"]
+    assert [line.label for line in what.alternatives] == ["At the same cost", "EUR\u00a050 more"]
     assert "10\u00a0×\u00a0Contract hand" in what.alternatives[0].says
+
+
+def test_beside_the_own_crew_the_exact_one_is_an_alternative(qapp):
+    own = samples.crew(3, 9, 7, 8, 0.5)
+    answer = samples.hillside_answer(own)
+    near = NearBest((NearCrew(answer.exact.crew, 133690, 0, 19, 0, 26, "Planting"),), True)
+    what = made(samples.hillside_plan(), answer, own=True, details=Details(near=near))
+    assert [spaced(line.label) for line in what.alternatives] == ["The exact crew, EUR 133,690"]
 
 
 def days(covered, error=0.0, critical=()):
