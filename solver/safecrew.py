@@ -59,7 +59,7 @@ class SafeSearch:
         if floors is None:
             return Safe(wanted, None, inf, True)
         candidates = [self.exact, *known, *self._put_together(floors)]
-        start = self._start(wanted, candidates, monotonic() + max(until - monotonic(), 0.0) / 3)
+        start = self._start(wanted, candidates, monotonic() + max(until - monotonic(), 0.0) / 2)
         if start is not None:
             start = self._replanned(wanted, floors, start, monotonic() + max(until - monotonic(), 0.0) / 2)
         return self._search_all(wanted, floors, start, until)
@@ -137,7 +137,7 @@ class SafeSearch:
             return []
         found = []
         for t in range(span):
-            share = max(until - monotonic(), 0.0) / 2 / (span - t)
+            share = max(until - monotonic(), 0.0) / 3 / (span - t)
             alone = _alone(self.program.plan, t, self._mine(t), wanted, share)
             if alone.proved and alone.best is None:
                 return None

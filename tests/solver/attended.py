@@ -34,7 +34,9 @@ def with_days(rng: np.random.Generator, plan: Plan) -> Plan:
 
 def _drawn(seed: int, boxed: bool) -> Plan:
     rng = np.random.default_rng(7_000_000 + seed)
-    shape = {"max_categories": 2, "max_phases": 2} if seed % 3 == 0 else {"max_categories": 3, "max_phases": 1}
+    shape = (
+        {"max_categories": 2, "max_phases": 2} if seed % 3 == 0 else {"max_categories": 3, "max_phases": 1}
+    )
     features = FEATURES - {"unreachable", "budget"} if seed % 2 else FEATURES - {"unreachable"}
     return with_days(rng, random_plan(rng, boxed=boxed, features=features, **shape))
 
