@@ -127,10 +127,14 @@ def main(arguments: Sequence[str]) -> int:
 
         return serve()
     try:
-        with os.fdopen(quiet_native_output(), "w", encoding="utf-8") as out:
+        # names of files may hold bytes that are no characters
+        with os.fdopen(quiet_native_output(), "w", encoding="utf-8", errors="backslashreplace") as out:
             return max(_one(asked, path, out) for path in asked.plans)
     except BrokenPipeError:  # the reader has seen enough
         return OK
+    except KeyboardInterrupt:
+        print("solver: stopped", file=sys.stderr)
+        return UNUSABLE
 
 
 def _one(asked: argparse.Namespace, path: str, out: IO[str]) -> int:

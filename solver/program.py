@@ -29,7 +29,7 @@ from typing import NamedTuple
 
 from solver.answer import LineKind
 from solver.ledger import Ledger
-from solver.matrix import Matrix, RowSense
+from solver.matrix import Floats, Matrix, RowSense
 from solver.plan import Budget, Category, Plan, Presence, Ratio, Rule, Sense, Share
 
 # head counts nobody limited: more lots than any plan needs, few enough for exact floats
@@ -434,7 +434,7 @@ class Program:
         running = (*self.overtime.values(), *self.bought.values())
         return any(self.matrix.cost[column] for column in running)
 
-    def running_cost(self, x: Sequence[float]) -> float:
+    def running_cost(self, x: Floats) -> float:
         """What overtime and bought-in units cost in a solution of the matrix."""
         running = (*self.overtime.values(), *self.bought.values())
         return float(sum(self.matrix.cost[column] * x[column] for column in running))

@@ -15,6 +15,7 @@ from solver.solve import Heard, solve
 from solver.wholecost import whole_cost
 
 Options = Mapping[str, Any]
+LONGEST = 1_000_000  # seconds
 
 
 class BadOption(ValueError):
@@ -30,15 +31,15 @@ class Question:
 
 
 def _solve(plan: Plan, options: Options, heard: Heard) -> Any:
-    return solve(plan, seconds=options.get("seconds"), heard=heard)
+    return solve(plan, seconds=_seconds(options), heard=heard)
 
 
 def _cost(plan: Plan, options: Options, heard: Heard) -> Any:
-    return whole_cost(plan, seconds=options.get("seconds"), heard=heard)
+    return whole_cost(plan, seconds=_seconds(options), heard=heard)
 
 
 def _room(plan: Plan, options: Options, heard: Heard) -> Any:
-    return room(plan, seconds=options.get("seconds"), heard=heard)
+    return room(plan, seconds=_seconds(options), heard=heard)
 
 
 def _near(plan: Plan, options: Options, heard: Heard) -> Any:
@@ -47,7 +48,7 @@ def _near(plan: Plan, options: Options, heard: Heard) -> Any:
         raise BadOption(f"{within} is no usable per cent of the best cost; allowed is 0 to 1000.")
     if not _is_number(most) or most != int(most) or not 1 <= most <= 1000:
         raise BadOption(f"{most} is no usable number of crews; allowed is 1 to 1000.")
-    seconds = options.get("seconds")
+    seconds = _seconds(options)
     return near_best(plan, within=float(within), most=int(most), seconds=seconds, heard=heard)
 
 
@@ -57,7 +58,16 @@ def _attend(plan: Plan, options: Options, heard: Heard) -> Any:
         raise BadOption(f"{chance} is no usable chance; allowed is a share of days above 0 and below 1, "
                         "or per cent above 1 and below 100.")  # fmt: skip
     share = float(chance) if chance < 1 else float(chance) / 100
-    return attend(plan, share, seconds=options.get("seconds"), heard=heard)
+    return attend(plan, share, seconds=_seconds(options), heard=heard)
+
+
+def _seconds(options: Options) -> float | None:
+    seconds = options.get("seconds")
+    if seconds is None:
+        return None
+    if not _is_number(seconds) or not 0 <= seconds <= LONGEST:
+        raise BadOption(f"{seconds} is no usable number of seconds; allowed is 0 to {LONGEST:,}.")
+    return float(seconds)
 
 
 def _is_number(value: Any) -> bool:

@@ -7,9 +7,12 @@ is noise to be skipped. Standard input closing ends the process.
 from __future__ import annotations
 
 import json
+import os
 import sys
 import traceback
-from collections.abc import Iterable
+from collections.abc import Callable, Iterable
+from dataclasses import dataclass
+from decimal import Decimal
 from functools import partial
 from os import fdopen
 from typing import IO, Any
@@ -17,34 +20,81 @@ from typing import IO, Any
 from solver.answer import to_json
 from solver.engine import quiet_native_output
 from solver.planfile import PlanProblems, UnreadableFile, exact_json, plan_from_document
-from solver.questions import QUESTIONS, BadOption
+from solver.questions import QUESTIONS, BadOption, Question
 from solver.unanswered import Unanswered
 
 RECORD = "\x1e"
 
 
+class BadRequest(ValueError):
+    """A line that is no request; `number` is its id where it could be read. The message is one sentence."""
+
+    def __init__(self, says: str, number: int | None = None) -> None:
+        super().__init__(says)
+        self.number = number
+
+
+@dataclass(frozen=True)
+class Request:
+    """One request: which question about which plan document, and the number its replies carry."""
+
+    number: int
+    question: Question
+    plan: Any
+    options: dict[str, Any]
+
+
 def serve(requests: Iterable[str], replies: IO[str]) -> None:
-    """Answer every request line until there are no more."""
+    """Answer every request line until there are no more; a line that is no request is refused."""
     for line in requests:
-        if line.strip():
-            _answer(line, replies)
+        if not line.strip():
+            continue
+        try:
+            request = _request(line)
+        except BadRequest as refusal:
+            _reply(replies, refusal.number, "refused", str(refusal))
+        else:
+            _answer(request, partial(_reply, replies, request.number))
 
 
-def _answer(line: str, replies: IO[str]) -> None:
-    request = exact_json(line)
-    say = partial(_reply, replies, int(request["id"]))
+def _request(line: str) -> Request:
     try:
-        question = QUESTIONS[request["ask"]]
-        plan = plan_from_document(request["plan"])
-        result = question.ask(plan, _plain(request.get("options") or {}), say)
+        raw = exact_json(line)
+    except UnreadableFile as refusal:
+        raise BadRequest(f"This is no request. {refusal}") from None
+    if not isinstance(raw, dict):
+        raise BadRequest("This is no request: allowed is a JSON object.")
+    number = _number(raw.get("id"))
+    question = QUESTIONS.get(raw["ask"]) if isinstance(raw.get("ask"), str) else None
+    if question is None:
+        raise BadRequest(f"This asks for none of {', '.join(QUESTIONS)}.", number)
+    options = raw.get("options") or {}
+    if not isinstance(options, dict) or "plan" not in raw:
+        raise BadRequest('This lacks a "plan", or its "options" are no object.', number)
+    try:
+        return Request(number, question, raw["plan"], _plain(options))
+    except (TypeError, ValueError):
+        raise BadRequest("An option holds a number that cannot be used.", number) from None
+
+
+def _number(raw: Any) -> int:
+    if not isinstance(raw, Decimal) or raw != raw.to_integral_value():
+        raise BadRequest('This is no request: its "id" is no whole number.')
+    return int(raw)
+
+
+def _answer(request: Request, say: Callable[[str, Any], None]) -> None:
+    try:
+        plan = plan_from_document(request.plan)
+        say("answer", to_json(request.question.ask(plan, request.options, say)))
     except PlanProblems as problems:
         say("problems", [{"place": p.place, "says": p.says} for p in problems.problems])
     except (UnreadableFile, BadOption, Unanswered) as refusal:
         say("refused", str(refusal))
+    except BrokenPipeError:
+        raise
     except Exception:  # the window shows it and goes on: one broken plan must not end the worker
         say("failed", traceback.format_exc())
-    else:
-        say("answer", to_json(result))
 
 
 def _plain(options: Any) -> Any:
@@ -60,11 +110,14 @@ def _reply(replies: IO[str], number: Any, part: str, value: Any) -> None:
 
 
 def main() -> int:
-    """Serve standard input until it closes."""
+    """Serve standard input until it closes, or until nobody reads the replies."""
     replies = fdopen(quiet_native_output(), "w", encoding="utf-8", newline="\n")
-    requests = fdopen(sys.stdin.fileno(), "r", encoding="utf-8", closefd=False)
+    requests = fdopen(sys.stdin.fileno(), "r", encoding="utf-8", errors="replace", closefd=False)
     _warm_up()
-    serve(iter(requests.readline, ""), replies)
+    try:
+        serve(iter(requests.readline, ""), replies)
+    except BrokenPipeError:
+        os.dup2(1, replies.fileno())  # what is left to be written goes where native output goes
     return 0
 
 

@@ -13,6 +13,7 @@ from hypothesis import HealthCheck, given, settings
 from solver.answer import Answer, Policy, Proof, State, from_json, to_json
 from solver.plan import Budget, Category, Phase, Plan, Presence, Ratio, Sense, Supervision, Work
 from solver.planfile import plan_from_document, plan_to_document
+from solver.review import review
 from solver.search import tie_width
 from solver.solve import solve
 from tests.solver import checker, solved
@@ -54,6 +55,11 @@ class TestAgainstHighs:
     def test_plans_of_everything_at_once_are_equal(self, seeds: range) -> None:
         for seed in seeds:
             assert_equals_highs(*solved.full(seed))
+
+    def test_plans_of_the_tests_have_no_problems(self) -> None:
+        plans = [solved.mixed(seed)[0] for seed in range(300)] + [solved.full(seed)[0] for seed in range(120)]
+        plans += [solved.boxed(seed)[0] for seed in range(240)]
+        assert [problem for plan in plans for problem in review(plan)] == []
 
     def test_most_plans_of_everything_at_once_have_an_answer(self) -> None:
         answers = [solved.full(seed)[1] for seeds in FULL for seed in seeds]
