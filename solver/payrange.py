@@ -36,8 +36,9 @@ class PayRanges:
         category = self.program.categories[j]
         pay = Fraction(category.pay)
         less, more = _Side(self, j, -1).change(), _Side(self, j, +1).change()
-        low = None if more is None or more >= pay else self._told(pay - more)
-        return PayRange(category.name, low, None if less is None else self._told(pay + less))
+        low = None if more is None else self._told(pay - more)
+        high = None if less is None else self._told(pay + less)
+        return PayRange(category.name, low or None, high)  # nobody is paid less than nothing
 
     def _told(self, pay: Fraction) -> float:
         """Without the digits that only floating point put there, where hours cost money too."""

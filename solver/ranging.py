@@ -13,7 +13,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from solver.engine import LpStatus, Relaxation
-from solver.matrix import Floats, Matrix, Row, RowSense
+from solver.matrix import Floats, Matrix, RowSense
 
 ZERO_PRICE = 1e-10  # of the largest price
 ZERO_COST = 1e-9  # of what a reduced cost is the difference of
@@ -40,7 +40,8 @@ class Ranging:
             raise ValueError(f"nothing to range: the relaxation is {status.name.lower()}")
         self.objective = relaxation.objective
         self._prices = _without_noise(relaxation.prices)
-        self._face = self._optimal_face()
+        self._shifts: list[int] = []
+        self._face = Relaxation(self._optimal_face())
 
     def priced(self, row: int) -> Priced:
         """The price of `row` on the side where it is loosened, with its range.
@@ -100,19 +101,26 @@ class Ranging:
             replace(row, sense=RowSense.EQUAL) if price else row
             for row, price in zip(matrix.rows, y, strict=True)
         ]
+        self._shifts = [_add_shift(face, i) for i in range(len(face.rows))]
         return face
 
     def _end(self, row: int, sign: int) -> float | None:
         """How far the right-hand side can move in the direction of `sign`; None: without limit."""
-        moved = self._face.copy()
-        shift = moved.add_column(-float(sign), -ENDLESS, ENDLESS)
-        asked = moved.rows[row]
-        moved.rows[row] = Row((*asked.columns, shift), (*asked.coefs, -1.0), asked.sense, asked.rhs)
-        relaxation = Relaxation(moved)
-        if relaxation.solve() is not LpStatus.OPTIMAL:
-            return 0.0
-        end = float(relaxation.x[shift])
+        face, shift = self._face, self._shifts[row]
+        face.set_bounds(shift, -ENDLESS, ENDLESS)
+        face.set_cost(shift, -float(sign))
+        end = float(face.x[shift]) if face.solve() is LpStatus.OPTIMAL else 0.0
+        face.set_bounds(shift, 0.0, 0.0)
+        face.set_cost(shift, 0.0)
         return end if abs(end) < ENDLESS / 10 else None
+
+
+def _add_shift(face: Matrix, row: int) -> int:
+    """A column, held at 0, that moves the row's right-hand side."""
+    shift = face.add_column(0.0, 0.0, 0.0)
+    asked = face.rows[row]
+    face.rows[row] = replace(asked, columns=(*asked.columns, shift), coefs=(*asked.coefs, -1.0))
+    return shift
 
 
 def _reaches(found: Priced, rhs: float, down: bool) -> bool:

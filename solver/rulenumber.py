@@ -5,6 +5,9 @@ least over workable crews of the largest sum_of / sum_per. It is found by Dinkel
 largest of several ratios (Crouzeix, Ferland & Schaible, An algorithm for generalized fractional programs,
 Journal of Optimization Theory and Applications 47 (1985) 35-49): minimise the largest sum_of - r sum_per;
 where that is below 0, take the crew's own largest ratio as the next r. Shares likewise.
+
+A category without limit could be taken on in thousands only to water a ratio down: no more of one are
+looked at than twice the people of the cheapest crew without the rule.
 """
 
 from __future__ import annotations
@@ -12,12 +15,13 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import replace
 from fractions import Fraction
+from math import ceil
 
 from solver.inquiry import Inquiry
 from solver.matrix import RowSense
 from solver.plan import Plan, Ratio, Sense, Share
 from solver.program import Program
-from solver.search import Lots, Search
+from solver.search import Lots, Search, whole_grain
 
 # a ratio rule looser than this is no rule
 LOOSEST_RATIO = Fraction(1000)
@@ -29,8 +33,8 @@ class RuleNumber:
     """One ratio rule, or share rule that is not `exactly`, of a plan."""
 
     def __init__(self, plan: Plan, rule: Ratio | Share) -> None:
-        others = tuple(r for r in plan.rules if r is not rule)
-        self._program = Program(replace(plan, rules=others))
+        self._plan = replace(plan, rules=tuple(r for r in plan.rules if r is not rule))
+        self._program = Program(self._plan)
         self._rising = isinstance(rule, Ratio) or rule.sense is Sense.AT_MOST
         self._of = frozenset(rule.of)
         self._per = frozenset(rule.per if isinstance(rule, Ratio) else rule.within)
@@ -40,6 +44,10 @@ class RuleNumber:
 
     def nearest(self, inquiry: Inquiry) -> Fraction | None:
         """The number, None where no number will do (or the time did not suffice to find one)."""
+        cheapest = self._cheapest(inquiry)
+        if cheapest is None:
+            return None
+        self._program = Program(self._plan, self._caps(cheapest))
         number, found = self._loosest, None
         for _ in range(ROUNDS):
             lots = self._best(number, inquiry)
@@ -50,6 +58,22 @@ class RuleNumber:
                 return found if better is None else better
             number = found = better
         return found
+
+    def _cheapest(self, inquiry: Inquiry) -> Lots | None:
+        """The cheapest crew without the rule."""
+        outcome = inquiry.cheapest(Search(self._program, grain=whole_grain(self._program)))
+        return None if outcome.best is None else outcome.best.lots
+
+    def _caps(self, cheapest: Lots) -> list[int]:
+        """Lots per head count worth looking at."""
+        program, span = self._program, len(self._plan.phases)
+        people = max(2 * program.ledger.most_people(cheapest), Fraction(2))
+        caps = [int(upper) for upper in program.matrix.upper[: program.head_count]]
+        for i in range(program.head_count):
+            if self._plan.categories[i // span].at_most is None:
+                most = ceil(people / program.lots[i // span])
+                caps[i] = max(min(caps[i], most), int(program.matrix.lower[i]))
+        return caps
 
     def _best(self, number: Fraction, inquiry: Inquiry) -> Lots | None:
         """The crew with the most to spare at `number` in the phase where it has least."""

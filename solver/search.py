@@ -22,6 +22,8 @@ from solver.matrix import DualBound, Floats, Ints, Matrix
 from solver.program import HeadLine, Program
 
 INTEGRAL = 1e-6
+# a switch of a head count without limit is on by no more than a millionth per lot
+SWITCHED = 1e-9
 # crews whose costs differ by less than a tenth of a cent are equally cheap
 TIE = 1e-3
 
@@ -326,7 +328,7 @@ class _Run:
         if search.relaxation.solve() is not LpStatus.OPTIMAL:
             return (), None
         switches = search.relaxation.x[search._columns][heads:]
-        whole = bool((np.abs(switches - np.rint(switches)) <= INTEGRAL).all())
+        whole = bool((np.abs(switches - np.rint(switches)) <= SWITCHED).all())
         return (), search.relaxation.objective if whole else None
 
     def _after_leaf(self, node: _Node, bound: float, x: Floats, objective: float | None) -> list[_Node]:
@@ -338,7 +340,7 @@ class _Run:
     def _switched(self, node: _Node, bound: float, x: Floats) -> list[_Node]:
         """Both sides of the first switch that is neither on nor off; empty if there is none."""
         for i in range(len(self.search._heads), len(x)):
-            if node.lower[i] < node.upper[i] and abs(x[i] - np.rint(x[i])) > 1e-9:
+            if node.lower[i] < node.upper[i] and abs(x[i] - np.rint(x[i])) > SWITCHED:
                 return [self.search._child(node, bound, i, v, v) for v in (0.0, 1.0)]
         return []
 

@@ -42,7 +42,6 @@ class _Savings:
 
     def __init__(self, case: Case, best: Found, inquiry: Inquiry) -> None:
         self._case, self._best, self._inquiry = case, best, inquiry
-        self._program = Program(case.plan, paid_caps(case.plan, best.objective))
 
     def all(self) -> list[CategorySaving]:
         """One entry per category, in the order of the plan."""
@@ -53,8 +52,12 @@ class _Savings:
         return found
 
     def _if_fractional(self, j: int) -> float:
-        program = self._program
-        mine = [program.head(j, t) for t in range(len(program.phases))]
+        plan, span = self._case.plan, len(self._case.plan.phases)
+        mine = range(j * span, (j + 1) * span)
+        caps = paid_caps(plan, self._best.objective)
+        for column in mine:
+            caps[column] += 1  # the part of a lot that the money still pays for
+        program = Program(plan, caps)
         matrix = program.matrix.copy()
         for column in mine:
             matrix.integer[column] = False
