@@ -9,7 +9,7 @@ from pathlib import Path
 
 import resources
 from desktop import messages
-from solver.planfile import SUFFIX, CannotSave, PlanProblems, UnreadableFile, write_whole
+from solver.planfile import SUFFIX, CannotSave, PlanProblems, UnreadableFile, read_plan, write_whole
 
 OK, NO, UNUSABLE = 0, 1, 2
 
@@ -36,6 +36,7 @@ def write_here(plan: Path | None) -> int:
     def write() -> int:
         from desktop.page import write_page
 
+        read_plan(chosen)  # what is wrong with it is told before anything is started
         answer = _answer(chosen)
         write_whole(text, answer.encode("utf-8"))
         write_page(chosen, page)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
+from dataclasses import dataclass
 from functools import partial
 from pathlib import Path
 
@@ -34,8 +35,17 @@ def add(
     return action
 
 
-def fill_file_menu(menu: QMenu, files: Files, close: Callable[[], object]) -> None:
-    """New, open, save, and leave."""
+@dataclass(frozen=True)
+class WindowActions:
+    """What entries of the File menu ask of the window."""
+
+    print_page: Callable[[], object]
+    save_pdf: Callable[[], object]
+    close: Callable[[], object]
+
+
+def fill_file_menu(menu: QMenu, files: Files, window: WindowActions) -> None:
+    """New, open, save, print, and leave."""
     add(menu, "&New", files.new, Keys.New)
     add(menu, "&Open...", files.ask_and_open, Keys.Open)
     latest = menu.addMenu("Open &recent")
@@ -47,7 +57,10 @@ def fill_file_menu(menu: QMenu, files: Files, close: Callable[[], object]) -> No
     add(menu, "&Save", files.save, Keys.Save)
     add(menu, "Save &as...", files.save_as, Keys.SaveAs)
     menu.addSeparator()
-    leave = add(menu, "&Quit", close, Keys.Quit)
+    add(menu, "&Print the page...", window.print_page, Keys.Print)
+    add(menu, "Save the page as P&DF...", window.save_pdf, "Ctrl+Shift+P")
+    menu.addSeparator()
+    leave = add(menu, "&Quit", window.close, Keys.Quit)
     leave.setMenuRole(QAction.MenuRole.QuitRole)
 
 

@@ -256,6 +256,7 @@ ABOUT_TITLE = "About Full Complement"
 ABOUT = "Turns a workload into a whole number of people of each category, proved cheapest."
 NOT_INSTALLED = "not installed"
 NO_RECENT = "No plans yet"
+NOTHING_TO_PRINT = "There is no answer to this plan yet that could be printed."
 
 # what nobody expected
 

@@ -36,6 +36,7 @@ class PageSpec:
 
 
 _HOME = "desktop.pages"
+OUTPUT = "The page"  # what is signed: printed and written to PDF from here
 
 PAGES: tuple[PageSpec, ...] = (
     PageSpec("Plan", "What is asked", "Ctrl+1", f"{_HOME}.plan_page", "PlanPage"),
@@ -44,7 +45,7 @@ PAGES: tuple[PageSpec, ...] = (
     PageSpec("Whole people", "What whole people cost", "Ctrl+4", f"{_HOME}.cost_page", "CostPage"),
     PageSpec("Room", "How far each line can move", "Ctrl+5", f"{_HOME}.room_page", "RoomPage"),
     PageSpec("Near best", "Other good crews", "Ctrl+6", f"{_HOME}.near_page", "NearPage"),
-    PageSpec("The page", "As it is printed", "Ctrl+P", f"{_HOME}.preview_page", "PreviewPage"),
+    PageSpec(OUTPUT, "As it is printed", "Ctrl+7", f"{_HOME}.preview_page", "PreviewPage"),
 )
 
 

@@ -10,6 +10,7 @@ from PySide6.QtWidgets import (
     QHBoxLayout,
     QHeaderView,
     QMainWindow,
+    QPushButton,
     QVBoxLayout,
     QWidget,
 )
@@ -22,9 +23,9 @@ from desktop.edit_menu import EditMenu
 from desktop.files import Files
 from desktop.headline import HeadlineBar
 from desktop.look import Look
-from desktop.menus import add, fill_file_menu, fill_help_menu, fill_view_menu, menu_of
+from desktop.menus import WindowActions, add, fill_file_menu, fill_help_menu, fill_view_menu, menu_of
 from desktop.pages.page_parts import thin_rule
-from desktop.rail import PAGES, PageSpec, PageStack, Rail
+from desktop.rail import OUTPUT, PAGES, PageSpec, PageStack, Rail
 from desktop.recovery import Recovery
 from desktop.workers import Workers
 
@@ -39,6 +40,7 @@ class Window(QMainWindow):
         self, document: Document, workers: Workers, look: Look, pages: tuple[PageSpec, ...] = PAGES
     ) -> None:
         super().__init__()
+        self.setObjectName("window")
         self._look = look
         self._workers = workers
         self._pages = pages
@@ -73,6 +75,22 @@ class Window(QMainWindow):
         if show is not None:
             show(place)
 
+    def print_page(self) -> None:
+        """Print the recommendation, if there is one to print."""
+        self._put_out("print_button")
+
+    def save_pdf(self) -> None:
+        """Write the recommendation to a PDF file, if there is one."""
+        self._put_out("pdf_button")
+
+    def _put_out(self, name: str) -> None:
+        page = self.page(OUTPUT)
+        button: QPushButton = getattr(page, name)
+        if button.isEnabled():
+            button.click()
+        else:
+            self.tell(messages.NOTHING_TO_PRINT)
+
     def tell(self, sentence: str) -> None:
         """A sentence at the foot for a while."""
         self.statusBar().showMessage(sentence, _TOLD)
@@ -105,7 +123,8 @@ class Window(QMainWindow):
 
     def _fill_menus(self) -> None:
         bar = self.menuBar()
-        fill_file_menu(menu_of(bar, "&File"), self.files, self.close)
+        pages = WindowActions(self.print_page, self.save_pdf, self.close)
+        fill_file_menu(menu_of(bar, "&File"), self.files, pages)
         self.edit_menu = EditMenu(menu_of(bar, "&Edit"), self.document)
         view = menu_of(bar, "&View")
         fill_view_menu(view, self._pages, self.show_page, self._look)

@@ -4,7 +4,7 @@ from dataclasses import replace
 from decimal import Decimal
 
 import pytest
-from PySide6.QtCore import QSettings, Qt
+from PySide6.QtCore import QSettings, Qt, QTimer
 from PySide6.QtGui import QCloseEvent
 from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication, QDialog, QFileDialog
@@ -17,6 +17,7 @@ from desktop.look import Look, Palette
 from desktop.rail import PAGES
 from desktop.window import Window
 from desktop.workers import Workers
+from solver.answer import Policy
 from solver.plan import Category, Plan, Work
 from solver.planfile import read_plan, save_plan
 
@@ -63,6 +64,13 @@ def ready(window):
 
 def press(keys):
     QTest.keySequence(QApplication.focusWidget() or QApplication.activeWindow(), keys)
+
+
+def press_in(window, keys, qtbot):
+    """As `press`, once `window` has the focus back from a dialog; offscreen nobody else gives it back."""
+    window.activateWindow()
+    qtbot.waitUntil(lambda: window.isActiveWindow() and QApplication.focusWidget() is not None)
+    press(keys)
 
 
 def test_typing_a_number_changes_the_headline(window, qtbot):
@@ -247,14 +255,109 @@ def test_a_named_plan_is_opened(started, tmp_path):
 # the whole job, by keyboard, with the real solver
 
 
-def type_row(grid, texts):
+def type_text(text):
+    for character in text:
+        QTest.keyClicks(QApplication.focusWidget(), character)
+
+
+def type_row(texts, qtbot):
     """Type into the cells of a row from the current one on, as a planner does: text, Tab, text, Tab."""
     for text in texts:
-        if text:
-            QTest.keyClicks(QApplication.focusWidget(), text[0])
-            QTest.keyClicks(QApplication.focusWidget(), text[1:])
+        before = QApplication.focusWidget()
+        type_text(text)
         QTest.keyClick(QApplication.focusWidget(), Qt.Key.Key_Tab)
-        QApplication.processEvents()
+        qtbot.waitUntil(lambda before=before: QApplication.focusWidget() is not before)
+
+
+def accept_dialog():
+    """Press Return in the dialog that is about to open."""
+
+    def look():
+        dialog = QApplication.activeModalWidget()
+        if dialog is None or not dialog.isActiveWindow():
+            QTimer.singleShot(10, look)
+            return
+        QTest.keyClick(dialog.focusWidget(), Qt.Key.Key_Return)
+
+    QTimer.singleShot(0, look)
+
+
+def add_rule(steps):
+    """Through the menu of rule kinds: `steps` down, Return, and Return again in the dialog."""
+    menu = QApplication.activePopupWidget()
+    for _ in range(steps):
+        QTest.keyClick(menu, Qt.Key.Key_Down)
+    accept_dialog()
+    QTest.keyClick(menu, Qt.Key.Key_Return)
+
+
+@pytest.mark.qt_log_ignore("This plugin does not support")  # offscreen has no window manager
+def test_the_whole_job_by_keyboard_alone(made, qtbot, tmp_path, monkeypatch):
+    window = made(Plan())
+    out, page_out = tmp_path / "job.crew.json", tmp_path / "job.pdf"
+    names = iter([str(out), str(page_out)])
+    monkeypatch.setattr(QFileDialog, "getSaveFileName", lambda *_, **__: (next(names), ""))
+    press("Ctrl+N")
+    press("Ctrl+1")
+    press("F6")  # the categories
+    for row in (
+        ["Lead hand", "2", "980", "38"],
+        ["Contract hand", "0", "720", "40"],
+        ["Learner", "3", "450", "36"],
+    ):
+        type_row(row, qtbot)
+        QTest.keyClick(QApplication.focusWidget(), Qt.Key.Key_Escape)
+        press("Ctrl+End")
+        press("Home")
+    assert [c.name for c in window.document.plan.categories] == ["Lead hand", "Contract hand", "Learner"]
+    press("F6")  # the works
+    type_row(["Planting", "trees", "5000"], qtbot)
+    QTest.keyClick(QApplication.focusWidget(), Qt.Key.Key_Escape)
+    for _ in range(3):
+        press("F6")  # rules, rail, categories
+    grid = QApplication.focusWidget()
+    press("Ctrl+Home")
+    for _ in range(5):
+        press("Right")
+    for rate in ("18", "24", "15"):
+        type_text(rate)
+        QTest.keyClick(QApplication.focusWidget(), Qt.Key.Key_Return)
+        qtbot.waitUntil(grid.hasFocus)
+    assert [dict(c.output) for c in window.document.plan.categories] == [
+        {"Planting": 18},
+        {"Planting": 24},
+        {"Planting": 15},
+    ]
+    press("F6")
+    press("F6")  # the rules
+    for kind in (1, 2):
+        press_in(window, "Ctrl+I", qtbot)
+        add_rule(kind)
+    assert [type(r).__name__ for r in window.document.plan.rules] == ["Presence", "Ratio"]
+    qtbot.waitUntil(lambda: ready(window), timeout=30000)
+    assert window.headline.state.text() == "✓ proved cheapest"
+    press_in(window, "Ctrl+2", qtbot)  # the crews, the own one in the last column
+    press("F6")
+    for row, count in enumerate(("1", "5", "0")):
+        press("Ctrl+Home")
+        press("End")
+        for _ in range(row):
+            press("Down")
+        view = QApplication.focusWidget()
+        type_text(count)
+        QTest.keyClick(QApplication.focusWidget(), Qt.Key.Key_Return)
+        qtbot.waitUntil(view.hasFocus)
+    assert {name: counts[0] for name, counts in window.document.plan.own.items()} == {
+        "Lead hand": 1,
+        "Contract hand": 5,
+        "Learner": 0,
+    }
+    qtbot.waitUntil(lambda: ready(window), timeout=30000)
+    assert window.answers.answer.report(Policy.OWN).crew is not None
+    press("Ctrl+S")
+    assert read_plan(out) == window.document.plan
+    press("Ctrl+Shift+P")
+    assert page_out.read_bytes().startswith(b"%PDF")
 
 
 @pytest.mark.parametrize("name", ["hillside", "museum-store"])
