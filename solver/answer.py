@@ -274,36 +274,52 @@ class NearBest:
 
 
 @dataclass(frozen=True)
-class Step:
-    """Workloads [from, to] that `crew` serves at least cost; `cost` at `to`, `cost_from` at `from`."""
-
-    from_: float
-    to: float
-    crew: Crew
-    cost: float
-    cost_from: float
-
-
-@dataclass(frozen=True)
 class FloorPoint:
-    """The relaxation's cost at one workload (piecewise linear between points)."""
+    """A cost at one workload (piecewise linear between points)."""
 
     amount: float
     cost: float
 
 
 @dataclass(frozen=True)
+class RoundedPoint:
+    """Cost of the fractional crew rounded up at one workload; None from here on where it is not workable."""
+
+    amount: float
+    cost: float | None
+
+
+@dataclass(frozen=True)
+class Step:
+    """Workloads [from, to] that `crew` serves at least cost; `cost` at `to`, `cost_from` at `from`.
+
+    `points`: where overtime or bought-in work bends the cost in between, all corners with both ends.
+    """
+
+    from_: float
+    to: float
+    crew: Crew
+    cost: float
+    cost_from: float
+    points: tuple[FloorPoint, ...] = ()
+
+
+@dataclass(frozen=True)
 class Steps:
-    """Answer of `steps`. `work` None: all works scaled, amounts in % of today. `exact`: every breakpoint
-    is exact; False where cost slopes within a step (then to within 0.1 % of the range)."""
+    """Answer of `steps`. `work` None: all works scaled, amounts in % of today.
+
+    `exact`: every border is exact and every crew proved; False where the time was not enough for that.
+    `ends`: why the staircase stops before the end that was asked for, empty where it does not.
+    """
 
     work: str | None
     unit: str
     today: float
     steps: tuple[Step, ...]
     floor: tuple[FloorPoint, ...]
-    rounded_up: tuple[FloorPoint, ...]
+    rounded_up: tuple[RoundedPoint, ...]
     exact: bool
+    ends: str = ""
 
 
 @dataclass(frozen=True)
