@@ -28,16 +28,23 @@ from solver.search import Found, Lots, Search, tie_width, whole_grain
 # hours lines are continuous: an objective of a thousand per hour tells a millionth of an hour
 PER_HOUR = 1000.0
 FINEST = Fraction(1, 10**6)  # people
+NOTHING = 1e-6  # money; who costs less is not limited by what can be paid
 
 
 def paid_caps(plan: Plan, money: float) -> list[int]:
     """Lots per head count that `money` pays for; no crew that costs at most `money` has more."""
     program = Program(plan)
-    caps = [int(upper) for upper in program.matrix.upper[: program.head_count]]
+    return affordable(program, program.matrix.cost, money)
+
+
+def affordable(program: Program, cost: Sequence[float], money: float) -> list[int]:
+    """Lots per head count that `money` pays for at the objective `cost`."""
+    lower, upper = program.matrix.lower, program.matrix.upper
+    caps = [int(most) for most in upper[: program.head_count]]
     budget = money + tie_width(money)
-    for i, pay in enumerate(program.matrix.cost[: program.head_count]):
-        if pay > 0:
-            caps[i] = max(min(caps[i], floor(budget / pay)), int(program.matrix.lower[i]))
+    for i in range(program.head_count):
+        if cost[i] > NOTHING:
+            caps[i] = max(min(caps[i], floor(budget / cost[i])), int(lower[i]))
     return caps
 
 
@@ -154,13 +161,14 @@ class Loosened:
         values = [Fraction(v, h.divisor) for h in self.given for v in (h.rhs, *(a for _, a in h.terms))]
         return common(values)
 
-    def least(self, inquiry: Inquiry, money: float = inf) -> GivingWay | None:
+    def least(self, inquiry: Inquiry, money: float = inf, known: Lots | None = None) -> GivingWay | None:
         """The least giving way that lets a crew costing at most `money` work; None if none does.
 
-        None as well where the time ran out before a crew was found: `inquiry.left` is 0 then.
+        None as well where the time ran out before a crew was found: `inquiry.left` is 0 then. `known` is
+        a crew that works when the lines give way far enough.
         """
         search = self._yielding(money)
-        outcome = inquiry.cheapest(search)
+        outcome = inquiry.cheapest(search, start=_start(search, known))
         if outcome.best is None:
             return None
         by = self._by(outcome.best.lots, outcome.best.objective)
@@ -194,11 +202,12 @@ class Loosened:
         return (1 / float(FINEST) if self.given else PER_HOUR / self.lines[0].scale), 0.0
 
     def cheapest(
-        self, inquiry: Inquiry, by: Fraction | None, cutoff: float = inf
+        self, inquiry: Inquiry, by: Fraction | None, cutoff: float = inf, known: Lots | None = None
     ) -> tuple[Found | None, bool]:
         """The cheapest crew when the lines give way by `by` (None: without limit); whether proved."""
         search = self.costing(by)
-        outcome = inquiry.cheapest(search, cutoff=cutoff, choose=by is not None)
+        start = _start(search, known)
+        outcome = inquiry.cheapest(search, cutoff=cutoff, start=start, choose=by is not None)
         return outcome.best, outcome.complete
 
     def costing(self, by: Fraction | None) -> Search:
@@ -210,6 +219,11 @@ class Loosened:
                 matrix.upper[shift] = float(by) if self.given else float(by) * (1 + 1e-9) + 1e-9
             kept = [*kept, *(moved for head in self.given for moved in relaxed(head, by))]
         return Search(self.program, matrix, grain=whole_grain(self.program), head_lines=kept)
+
+
+def _start(search: Search, lots: Lots | None) -> Found | None:
+    objective = None if lots is None else search.evaluate(lots)
+    return None if objective is None or lots is None else Found(lots, objective)
 
 
 def relaxed(head: HeadLine, by: Fraction) -> list[HeadLine]:

@@ -12,15 +12,23 @@ are workable at every pay.
 
 from __future__ import annotations
 
+from dataclasses import dataclass
 from fractions import Fraction
-from functools import cached_property
 
 from solver.answer import PayRange
 from solver.inquiry import Inquiry
-from solver.loosened import common
+from solver.loosened import affordable, common
 from solver.matrix import RowSense
 from solver.program import Program
-from solver.search import Found, Search, tie_width, whole_grain
+from solver.search import Found, Lots, Search, tie_width, whole_grain
+
+
+@dataclass(frozen=True)
+class _Crew:
+    """A workable crew with its cost at typed pay."""
+
+    lots: Lots
+    cost: Fraction
 
 
 class PayRanges:
@@ -28,8 +36,9 @@ class PayRanges:
 
     def __init__(self, program: Program, best: Found, inquiry: Inquiry) -> None:
         self.program = program
-        self.best = best
         self.inquiry = inquiry
+        self.best = self.crew(best.lots, best.objective)
+        self.known: list[_Crew] = []
 
     def of(self, j: int) -> PayRange:
         """The range of category j's pay. Where the time runs out, no more than was proved: the typed pay."""
@@ -44,16 +53,11 @@ class PayRanges:
         """Without the digits that only floating point put there, where hours cost money too."""
         return round(float(pay), 6) if self.program.costs_hours else float(pay)
 
-    def cost(self, found: Found, objective: float) -> Fraction:
-        """The crew's cost: exact where hours cost nothing, else `objective`."""
+    def crew(self, lots: Lots, objective: float) -> _Crew:
+        """The crew with its cost: exact where hours cost nothing, else `objective`."""
         if self.program.costs_hours:
-            return Fraction(objective)
-        return self.program.ledger.paper_cost(found.lots)
-
-    @cached_property
-    def best_cost(self) -> Fraction:
-        """The exact crew's cost."""
-        return self.cost(self.best, self.best.objective)
+            return _Crew(lots, Fraction(objective))
+        return _Crew(lots, self.program.ledger.paper_cost(lots))
 
 
 class _Side:
@@ -75,38 +79,62 @@ class _Side:
         """
         if self._sign < 0 and not self._at_best:
             return None
-        ratio = Fraction(0)
-        outcome = self._ranges.inquiry.cheapest(self._search(ratio))
-        if outcome.complete and outcome.best is None:
-            return None
-        while outcome.complete and outcome.best is not None:
-            ratio = self._ratio(outcome.best, ratio)
-            if ratio <= 0:
+        inquiry = self._ranges.inquiry
+        mine = [crew for crew in self._ranges.known if self._sign * (self._amount(crew) - self._at_best) > 0]
+        if not mine:
+            outcome = inquiry.cheapest(self._search(Fraction(0)))
+            if outcome.best is None:
+                return None if outcome.complete else Fraction(0)
+            mine = [self._met(outcome.best, Fraction(0))]
+        ratio = min(self._ratio(crew) for crew in mine)
+        while ratio > 0:
+            value = self._value(ratio)
+            outcome = inquiry.cheapest(self._search(ratio), cutoff=value - tie_width(value))
+            if not outcome.complete:
                 return Fraction(0)
-            value = float(self._ranges.best_cost - self._sign * ratio * self._at_best)
-            outcome = self._ranges.inquiry.cheapest(self._search(ratio), cutoff=value - tie_width(value))
-        return ratio if outcome.complete else Fraction(0)
+            if outcome.best is None:
+                break
+            ratio = self._ratio(self._met(outcome.best, ratio))
+        return max(ratio, Fraction(0))
 
-    def _ratio(self, found: Found, ratio: Fraction) -> Fraction:
-        """The change of pay at which `found`, the best crew at `ratio`, costs as much as the exact crew."""
-        amount = self._amount(found)
-        cost = self._ranges.cost(found, found.objective + float(self._sign * ratio * amount))
-        extra = cost - self._ranges.best_cost
-        if extra <= Fraction(tie_width(float(cost))):
+    def _met(self, found: Found, ratio: Fraction) -> _Crew:
+        """A crew found at the pay changed by `ratio`; crews once met serve other categories too."""
+        amount = self._amount(_Crew(found.lots, Fraction(0)))
+        crew = self._ranges.crew(found.lots, found.objective + float(self._sign * ratio * amount))
+        self._ranges.known.append(crew)
+        return crew
+
+    def _ratio(self, crew: _Crew) -> Fraction:
+        """The change of pay at which the crew costs as much as the exact crew; 0: they cost the same."""
+        extra = crew.cost - self._ranges.best.cost
+        if extra <= Fraction(tie_width(float(crew.cost))):
             return Fraction(0)
-        needed = extra / (self._sign * (amount - self._at_best))
+        needed = extra / (self._sign * (self._amount(crew) - self._at_best))
         return min(needed, self._pay) if self._sign > 0 else needed
 
-    def _amount(self, found: Found) -> Fraction:
-        return sum((w * found.lots[i] for i, w in self._weights.items()), start=Fraction(0))
+    def _amount(self, crew: _Crew) -> Fraction:
+        return sum((w * crew.lots[i] for i, w in self._weights.items()), start=Fraction(0))
+
+    def _value(self, ratio: Fraction) -> float:
+        """What the exact crew costs at the pay changed by `ratio`."""
+        return float(self._ranges.best.cost - self._sign * ratio * self._at_best)
 
     def _search(self, ratio: Fraction) -> Search:
-        """Whole crews on this side, at the pay changed by `ratio`."""
+        """Whole crews on this side, at the pay changed by `ratio`; if changed, those worth having only."""
         program = self._ranges.program
+        cost = self._costs(program, ratio)
+        if ratio and program.switches:  # which need close limits on head counts
+            program = Program(program.plan, affordable(program, cost, self._value(ratio)))
+            cost = self._costs(program, ratio)
         matrix = program.matrix.copy()
-        for i, weight in self._weights.items():
-            matrix.cost[i] -= float(self._sign * ratio * weight)
+        matrix.cost = cost
         least = self._at_best + self._sign * common(list(self._weights.values()))
         sense = RowSense.AT_MOST if self._sign < 0 else RowSense.AT_LEAST
         matrix.add_row(list(self._weights), [float(w) for w in self._weights.values()], sense, float(least))
         return Search(program, matrix, grain=0.0 if ratio else whole_grain(program))
+
+    def _costs(self, program: Program, ratio: Fraction) -> list[float]:
+        cost = program.matrix.cost[:]
+        for i, weight in self._weights.items():
+            cost[i] -= float(self._sign * ratio * weight)
+        return cost

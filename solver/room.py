@@ -81,12 +81,12 @@ class _Lines:
         cheaper, settled = loosened.cheapest(self._inquiry, None, cutoff=self._cheaper)
         if cheaper is None:
             return NOTHING if settled else OUT_OF_TIME
-        least = loosened.least(self._inquiry, money=self._cheaper)
+        least = loosened.least(self._inquiry, money=self._cheaper, known=cheaper.lots)
         return OUT_OF_TIME if least is None else self._at(loosened, least)
 
     def _at(self, loosened: Loosened, least: GivingWay) -> Loosening:
         """The cheapest crew once the line gives way by `least.by`."""
-        found, settled = loosened.cheapest(self._inquiry, least.by)
+        found, settled = loosened.cheapest(self._inquiry, least.by, known=least.lots)
         if found is None:
             found = Found(least.lots, self._cheaper)
         slopes = self._case.program.costs_hours
