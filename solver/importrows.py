@@ -14,7 +14,7 @@ from solver.exact import typed_number
 from solver.importrules import rule_of
 from solver.numeral import NotANumber, parse_number
 from solver.plan import Category, Plan, Supervision, Work
-from solver.review import MOST_ENTRIES, Problem, quoted, review
+from solver.review import MOST_ENTRIES, Problem, quoted, review, step
 from solver.sheet import Sheet, UnreadableTable
 from solver.tablecolumns import Reading, What
 from solver.tablemapping import MappedColumn, Mapping, as_text, cell_name, filled_columns
@@ -112,7 +112,7 @@ def import_rows(sheet: Sheet, mapping: Mapping, plan: Plan) -> ImportResult:
     _refuse_twins(rows)
     for row in rows:
         _build(row, mapping, plan)
-    after = _reviewed(rows, mapping.what, plan)
+    after = _reviewed(rows, mapping, plan)
     return ImportResult(tuple(row.result() for row in rows), after)
 
 
@@ -259,13 +259,13 @@ _BUILDERS: dict[What, Callable[..., Any]] = {What.CATEGORIES: _category, What.WO
 # the whole plan
 
 
-def _reviewed(rows: list[_Row], what: What, plan: Plan) -> Plan:
+def _reviewed(rows: list[_Row], mapping: Mapping, plan: Plan) -> Plan:
     """The plan with the understood rows; rows that would bring a problem into it are refused first."""
     old = set(review(plan))
     for _ in range(MOST_ROUNDS):
-        after, owners = _with_entries(rows, what, plan)
+        after, owners = _with_entries(rows, mapping.what, plan)
         new = [p for p in review(after) if p not in old]
-        if not _refuse_owners(new, owners, what):
+        if not _refuse_owners(new, owners, mapping):
             return after
     for row in rows:
         if not row.reasons:
@@ -291,13 +291,38 @@ def _with_entries(rows: list[_Row], what: What, plan: Plan) -> tuple[Plan, dict[
     return replace(plan, **changed), owners
 
 
-def _refuse_owners(problems: list[Problem], owners: dict[int, _Row], what: What) -> bool:
+def _refuse_owners(problems: list[Problem], owners: dict[int, _Row], mapping: Mapping) -> bool:
     """Refuse the rows behind the problems; True if there was one."""
     refused = False
     for problem in problems:
-        match = re.match(rf"{what}\[([0-9]+)\]\.?", problem.place)
+        match = re.match(rf"{mapping.what}\[([0-9]+)\]\.?", problem.place)
         row = owners.get(int(match[1])) if match else None
         if row is not None and match is not None:
-            row.reasons.append(f"{problem.place[match.end() :]}: {problem.says}")
+            row.reasons.append(f"{_titled(problem.place[match.end() :], mapping)}: {problem.says}")
             refused = True
     return refused
+
+
+_PLACES = {  # of rules: what stands in one column is called otherwise in each kind
+    "number": ("bound", "at_most", "fraction"),
+    "people": ("weights", "of"),
+    "among": ("per", "within"),
+}
+
+
+def _titled(place: str, mapping: Mapping) -> str:
+    """The title of the column that a place within an entry came from; the place where no column did."""
+    for meaning in mapping.choices:
+        for own in _places(meaning.key, mapping.what):
+            if place == own or place.startswith((f"{own}.", f"{own}[")):
+                return meaning.headers[0]
+    return place
+
+
+def _places(key: str, what: What) -> tuple[str, ...]:
+    kind, _, name = key.partition(":")
+    if kind == "output":
+        return (step("output", name),)
+    if kind == "amount":
+        return (f"amounts[{name}]",)
+    return _PLACES.get(key, (key,)) if what is What.RULES else (key,)

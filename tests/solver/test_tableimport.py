@@ -127,7 +127,7 @@ class TestRefusedRows:
         assert told[0][:2] == (2, Fate.REFUSED)
         assert told[0][2].startswith('Pay (B2): "12 EUR" is not a number')
         assert told[1][2].startswith('Paid hours (C3): "x" is not a number')
-        assert told[2][2] == "pay: -3 is negative; allowed is 0 or more"
+        assert told[2][2] == "Pay: -3 is negative; allowed is 0 or more"
         assert told[3][2] == "it has no name"
         assert told[4] == (6, Fate.NEW, "")
         assert told[5][2] == '"D" stands in row 6 already'
@@ -276,13 +276,13 @@ class TestRules:
             ("presence;X;A;B;at least;1;", "Per or within is filled"),
             ("presence;X;A;;around;1;", 'Sense "around" is not known'),
             ("presence;X;A;;;1;", "Sense is missing"),
-            ("presence;X;Z;;at least;1;", 'weights: no category is called "Z"'),
+            ("presence;X;Z;;at least;1;", 'People: no category is called "Z"'),
             ("presence;X;A;;at least;;", "Number (people, ratio, share or money) is missing"),
-            ("presence;X;A;;at least;1;Third", 'phases: no phase is called "Third"'),
+            ("presence;X;A;;at least;1;Third", 'Phases: no phase is called "Third"'),
             ("ratio;X;A=2;B;;1;", "only a presence rule has"),
             ("ratio;X;A;B;at least;1;", "Sense of a ratio is at most"),
             ("ratio;X;A;;;1;", "Per or within is missing"),
-            ("share;X;A;B;at most;25;", "fraction: 25 is not a fraction"),
+            ("share;X;A;B;at most;25;", "Number: 25 is not a fraction"),
             ("budget;X;A;;;1;", "People is filled"),
         ],
     )
