@@ -120,6 +120,7 @@ class Window(QMainWindow):
         across.addWidget(self.stack, 1)
         down.addLayout(across, 1)
         self.setCentralWidget(middle)
+        self.statusBar()  # from the start, so that nothing moves when something is told
 
     def _fill_menus(self) -> None:
         bar = self.menuBar()

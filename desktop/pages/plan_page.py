@@ -55,6 +55,7 @@ class PlanPage(QWidget):
         self._share_soon = QTimer(self, singleShot=True, interval=0)
         self._share_soon.timeout.connect(self._share_width)
         self._group_buttons: dict[str, QToolButton] = {}
+        self._whole = QSplitter(Qt.Orientation.Vertical)
         self._below = QSplitter(Qt.Orientation.Horizontal)
         self._first_phase = self._phase_button()
         self._phase_part = _part(PHASES.title, [self._phase_button()], self.phases)
@@ -108,7 +109,7 @@ class PlanPage(QWidget):
         for at, share in enumerate((0, 0, 1)):
             below.setStretchFactor(at, share)
             below.setCollapsible(at, False)
-        whole = QSplitter(Qt.Orientation.Vertical)
+        whole = self._whole
         whole.addWidget(_part(CATEGORIES.title, self._category_buttons(), self.categories))
         whole.addWidget(below)
         for at, share in enumerate((5, 4)):
@@ -155,6 +156,7 @@ class PlanPage(QWidget):
     def _on_groups(self) -> None:
         chosen = [key for key, button in self._group_buttons.items() if button.isChecked()]
         self.categories_model.show_groups(chosen)
+        self._share_soon.start()
         QSettings().setValue(_GROUPS, " ".join(chosen))
         self._mark_used_groups()
 
@@ -179,10 +181,13 @@ class PlanPage(QWidget):
             view.setMinimumHeight(min(view.whole_height(), most))
 
     def _share_width(self) -> None:
-        """Grids side by side are as wide as they are, the rules take the rest, at least a quarter."""
+        """Shares of the room: grids side by side are as wide as they are, the rules take the rest."""
         self._share_height()
         if self._below.orientation() == Qt.Orientation.Vertical:
             return
+        above = self.categories.whole_height()
+        below = max(self.works.whole_height(), self.rules.whole_height())
+        self._whole.setSizes([above, below])  # in proportion to what each would need
         whole = self._below.width()
         phases_wide = self.phases.whole_width() if not self._phase_part.isHidden() else 0
         works_wide = min(self.works.whole_width(), whole * 3 // 4 - phases_wide)

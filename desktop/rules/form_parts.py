@@ -16,7 +16,6 @@ from PySide6.QtWidgets import (
     QSizePolicy,
     QTableWidget,
     QTableWidgetItem,
-    QWidget,
 )
 
 from desktop import messages, theme
@@ -83,7 +82,7 @@ class TickList(QListWidget):
         if names:
             self.setCurrentRow(0)
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Preferred)
-        self.setMaximumHeight(_height_of(self, len(names)))
+        self.setFixedHeight(_lines(len(names)) * self.sizeHintForRow(0) + 2 * self.frameWidth())
         self.itemChanged.connect(lambda _item: self.changed.emit())
 
     def names(self) -> tuple[str, ...]:
@@ -117,7 +116,9 @@ class WeightTable(QTableWidget):
         self.horizontalHeader().setSectionResizeMode(0, QHeaderView.ResizeMode.Stretch)
         for row, name in enumerate(names):
             self._fill(row, name, weights)
-        self.setMaximumHeight(_height_of(self, len(names) + 1))
+        step = theme.current().px(3)
+        self.verticalHeader().setDefaultSectionSize(step)
+        self.setFixedHeight(self.horizontalHeader().sizeHint().height() + _lines(len(names)) * step)
         self.cellChanged.connect(lambda _row, _column: self.changed.emit())
 
     def _fill(self, row: int, name: str, weights: Mapping[str, Decimal]) -> None:
@@ -148,6 +149,6 @@ def _weight(name: str, text: str) -> Decimal:
         raise Refused(f"{name}: {refused.reason}") from None
 
 
-def _height_of(view: QWidget, lines: int) -> int:
-    step = theme.current().px(3)
-    return step * (min(max(lines, 2), MOST_VISIBLE) + 1)
+def _lines(names: int) -> int:
+    """How many lines of a list are seen at once."""
+    return min(max(names, 2), MOST_VISIBLE)

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from PySide6.QtCore import QEvent, QModelIndex, QPersistentModelIndex, QPoint, QSize, Qt
-from PySide6.QtGui import QGuiApplication, QKeyEvent
+from PySide6.QtGui import QGuiApplication, QKeyEvent, QPainter, QPaintEvent
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QDialog,
@@ -164,6 +164,17 @@ class RuleList(QTableView):
 
     def _edit_at(self, _index: QModelIndex) -> None:
         self.edit_current()
+
+    def paintEvent(self, event: QPaintEvent) -> None:
+        """Where there are no rules, say which there could be."""
+        super().paintEvent(event)
+        if self._model.rowCount() == 0:
+            painter = QPainter(self.viewport())
+            painter.setPen(theme.current().faint)
+            step = theme.current().px(0.5)
+            room = self.viewport().rect().adjusted(step, step, -step, -step)
+            painter.drawText(room, int(Qt.TextFlag.TextWordWrap), messages.NO_RULES)
+            painter.end()
 
     def keyPressEvent(self, event: QKeyEvent) -> None:
         """Return and F2 open the rule."""

@@ -32,8 +32,9 @@ class RuleModel(QAbstractTableModel):
 
     def show_problems(self, problems: Mapping[str, str]) -> None:
         """Mark the rules at these places (place -> what is wrong)."""
-        self._problems = dict(problems)
-        self._refresh()
+        if problems != self._problems:
+            self._problems = dict(problems)
+            self._refresh()
 
     def row_of(self, place: str) -> int:
         """The row that a problem's place means, -1 for none."""

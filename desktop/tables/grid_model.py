@@ -16,6 +16,7 @@ from desktop.tables.column import Column
 from desktop.tables.entries import Entry, enter, restored
 from desktop.tables.table import Table
 from solver.plan import Plan
+from solver.review import quoted
 
 Index = QModelIndex | QPersistentModelIndex
 Role = Qt.ItemDataRole
@@ -242,6 +243,16 @@ class GridModel(QAbstractTableModel):
             return ""
         return QBrush(theme.current().faint) if role == Role.ForegroundRole else None
 
+    def _remark(self, row: int, column: int, text: str) -> None:
+        """Tell what became of an entry where that may surprise."""
+        chosen, refusal = self._columns[column], self._refusal(row, column)
+        if refusal is not None:
+            said = messages.REFUSED_AS_TYPED.format(text=quoted(text), reason=refusal.reason)
+            self.remarked.emit(said)
+        elif chosen.is_number and numbers.reads_two_ways(text):
+            read = chosen.shown(chosen.get(self._plan, row))
+            self.remarked.emit(messages.READ_AS.format(text=text, number=read))
+
     def rowCount(self, parent: Index = _NOWHERE) -> int:
         """The rows of the plan and the one for a new row."""
         return 0 if parent.isValid() else len(self._names) + self._open_end
@@ -282,9 +293,7 @@ class GridModel(QAbstractTableModel):
             return False
         chosen = self._columns[column]
         self.write({(row, column): text}, messages.CHANGE.format(what=chosen.title.lower()))
-        if chosen.is_number and numbers.reads_two_ways(text) and not self._refusal(row, column):
-            read = chosen.shown(chosen.get(self._plan, row))
-            self.remarked.emit(messages.READ_AS.format(text=text.strip(), number=read))
+        self._remark(row, column, text.strip())
         return True
 
     def headerData(self, section: int, orientation: Qt.Orientation, role: int = Role.DisplayRole) -> Any:
