@@ -38,7 +38,8 @@ def corners(function: Function, low: float, high: float) -> list[Corner]:
 
 
 def _between(function: Function, a: Corner, b: Corner, left: int) -> list[Corner]:
-    if left == 0 or _reaches(a, b) or _reaches(b, a):
+    parallel = b.slope - a.slope <= FLAT * max(1.0, abs(a.slope))
+    if left == 0 or parallel or _reaches(a, b) or _reaches(b, a):
         return []
     at = (b.value - a.value - b.slope * b.at + a.slope * a.at) / (a.slope - b.slope)
     near = 1e-9 * (b.at - a.at)
