@@ -7,6 +7,7 @@ from solver.tableimport import Fate, What
 IMPORT = "Import a table"
 CHOOSE_TABLE = "Choose a table"
 TABLE_FILES = "Tables (*.xlsx *.xlsm *.csv *.txt *.tsv);;All files (*)"
+PASTED = "what was pasted"
 NOT_IMPORTED = "{name} was not imported."
 TEMPLATE = "Save a template workbook"
 TEMPLATE_FILES = "Workbooks (*.xlsx)"

@@ -17,6 +17,7 @@ from desktop.dialogs.help_dialog import help_dialog
 from desktop.files import Files
 from desktop.look import Look, Palette
 from desktop.rail import PageSpec
+from desktop.traffic import Traffic
 
 Keys = QKeySequence.StandardKey
 _PALETTES = {Palette.SYSTEM: "As the &system", Palette.LIGHT: "&Light", Palette.DARK: "&Dark"}
@@ -44,8 +45,8 @@ class WindowActions:
     close: Callable[[], object]
 
 
-def fill_file_menu(menu: QMenu, files: Files, window: WindowActions) -> None:
-    """New, open, save, print, and leave."""
+def fill_file_menu(menu: QMenu, files: Files, traffic: Traffic, window: WindowActions) -> None:
+    """New, open, save, tables in and out, print, and leave."""
     add(menu, "&New", files.new, Keys.New)
     add(menu, "&Open...", files.ask_and_open, Keys.Open)
     latest = menu.addMenu("Open &recent")
@@ -56,6 +57,9 @@ def fill_file_menu(menu: QMenu, files: Files, window: WindowActions) -> None:
     menu.addSeparator()
     add(menu, "&Save", files.save, Keys.Save)
     add(menu, "Save &as...", files.save_as, Keys.SaveAs)
+    menu.addSeparator()
+    add(menu, "&Import a table...", traffic.import_table, "Ctrl+Shift+I")
+    add(menu, "Save a &template workbook...", traffic.save_template)
     menu.addSeparator()
     add(menu, "&Print the page...", window.print_page, Keys.Print)
     add(menu, "Save the page as P&DF...", window.save_pdf, "Ctrl+Shift+P")

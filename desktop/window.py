@@ -27,6 +27,7 @@ from desktop.menus import WindowActions, add, fill_file_menu, fill_help_menu, fi
 from desktop.pages.page_parts import thin_rule
 from desktop.rail import OUTPUT, PAGES, PageSpec, PageStack, Rail
 from desktop.recovery import Recovery
+from desktop.traffic import Traffic
 from desktop.workers import Workers
 
 _GEOMETRY = "window/geometry"
@@ -48,6 +49,7 @@ class Window(QMainWindow):
         self.answers = Answers(document, workers, self)
         self.recovery = Recovery(document, self)
         self.files = Files(document, self.recovery, self)
+        self.traffic = Traffic(document, self)
         self.headline = HeadlineBar(document, self.answers)
         self.rail = Rail(pages)
         self.stack = PageStack(pages, document, self.answers)
@@ -125,7 +127,7 @@ class Window(QMainWindow):
     def _fill_menus(self) -> None:
         bar = self.menuBar()
         pages = WindowActions(self.print_page, self.save_pdf, self.close)
-        fill_file_menu(menu_of(bar, "&File"), self.files, pages)
+        fill_file_menu(menu_of(bar, "&File"), self.files, self.traffic, pages)
         self.edit_menu = EditMenu(menu_of(bar, "&Edit"), self.document)
         view = menu_of(bar, "&View")
         fill_view_menu(view, self._pages, self.show_page, self._look)
@@ -137,6 +139,7 @@ class Window(QMainWindow):
         self.headline.go_to.connect(self.go_to)
         self.stack.shown.connect(self._on_page)
         self.files.told.connect(self.tell)
+        self.traffic.told.connect(self.tell)
         self.recovery.failed.connect(lambda why: self.tell(messages.NO_RECOVERY_COPY.format(why=why)))
         self.document.renamed.connect(self._name_window)
         self.document.changed.connect(self._name_window)

@@ -52,6 +52,7 @@ class PlanPage(QWidget):
         self.works = self._grid(WORKS)
         self.phases = self._grid(PHASES)
         self.rules = RuleList(document)
+        self.rules.remarked.connect(self.remarked)
         self._share_soon = QTimer(self, singleShot=True, interval=0)
         self._share_soon.timeout.connect(self._share_width)
         self._group_buttons: dict[str, QToolButton] = {}

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QEvent, QModelIndex, QPersistentModelIndex, QPoint, QSize, Qt
+from PySide6.QtCore import QEvent, QModelIndex, QPersistentModelIndex, QPoint, QSize, Qt, Signal
 from PySide6.QtGui import QGuiApplication, QKeyEvent, QPainter, QPaintEvent
 from PySide6.QtWidgets import (
     QAbstractItemView,
@@ -18,12 +18,14 @@ from PySide6.QtWidgets import (
 from desktop import messages, theme
 from desktop.document import Document
 from desktop.edits import rules
+from desktop.pasting import map_pasted
 from desktop.rules.kind import RuleKind
 from desktop.rules.kinds import KINDS, kind_of
 from desktop.rules.rule_dialog import RuleDialog
 from desktop.rules.rule_model import RuleModel
 from desktop.tables.clipboard import text_of
 from solver.plan import Rule
+from solver.tableimport import UnreadableTable, What, pasted_table
 
 _NAMES = 19  # width of the column of names, in steps of the grid
 
@@ -37,8 +39,12 @@ class AiryDelegate(QStyledItemDelegate):
 
 
 class RuleList(QTableView):
-    """Rules: Return edits one, Delete deletes, the edit menu copies, duplicates and moves."""
+    """Rules: Return edits one, Delete deletes, the edit menu copies, pastes, duplicates and moves.
 
+    `remarked(sentence)` tells what a planner should know about what was pasted.
+    """
+
+    remarked = Signal(str)
     edits_rows = True  # the Edit menu works on it
 
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
@@ -122,6 +128,15 @@ class RuleList(QTableView):
         texts = [[str(self._model.index(row, c).data()) for c in (0, 1)] for row in self._rows()]
         if texts:
             QGuiApplication.clipboard().setText(text_of(texts))
+
+    def paste(self) -> None:
+        """Show what was understood of a table of rules."""
+        try:
+            sheet = pasted_table(QGuiApplication.clipboard().text())
+        except UnreadableTable as refused:
+            self.remarked.emit(str(refused))
+        else:
+            map_pasted(self, self._document, What.RULES, sheet, self.remarked.emit)
 
     def insert_row(self) -> None:
         """Ask which kind of rule to add."""

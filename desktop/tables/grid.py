@@ -16,10 +16,12 @@ from PySide6.QtWidgets import (
 
 from desktop import messages, theme
 from desktop.dialogs.question import Choice, Role, ask
+from desktop.pasting import mapped_instead
 from desktop.tables.cell_editors import CellDelegate
 from desktop.tables.clipboard import TooLarge, block_of, text_of
 from desktop.tables.grid_model import GridModel
 from solver.plan import Plan
+from solver.tableimport import What
 
 Cell = tuple[int, int]
 _BELOW = 16  # pixels for a scroll bar below the rows
@@ -122,8 +124,11 @@ class Grid(QTableView):
 
         A single cell is typed into every selected cell. Rows are added as needed.
         """
+        text = QGuiApplication.clipboard().text()
+        if self._mapped_instead(text):
+            return
         try:
-            block = block_of(QGuiApplication.clipboard().text())
+            block = block_of(text)
         except TooLarge:
             self.remarked.emit(messages.PASTE_TOO_LARGE.format(most=self._model.table.most))
             return
@@ -134,6 +139,13 @@ class Grid(QTableView):
             self._write(dict.fromkeys(cells, block[0][0]), messages.PASTE_CELLS)
             return
         self._paste_block(block, min(r for r, _ in cells), min(c for _, c in cells))
+
+    def _mapped_instead(self, text: str) -> bool:
+        """Whether the clipboard held a whole table with headers, and the planner had it matched by them."""
+        known = self._model.table.key
+        return known in list(What) and mapped_instead(
+            self, self._model.document, What(known), text, self.remarked.emit
+        )
 
     def _paste_block(self, block: tuple[tuple[str, ...], ...], top: int, left: int) -> None:
         room = self._model.columnCount() - left
