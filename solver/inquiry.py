@@ -53,18 +53,20 @@ class Inquiry:
         `choose`: of equally cheap crews the preferred one, as long as they are few.
         """
         self.programs += 1
-        if choose:
-            key = partial(heads.preference, search.program)
-            limits = replace(TIES, seconds=min(TIES.seconds, self.left))
-            outcome = search.cheapest(limits, key=key, cutoff=cutoff, start=start)
-            if outcome.complete:
-                return outcome
-            start = outcome.best
         limits = replace(OWN, seconds=min(OWN.seconds, self.left))
         outcome = search.cheapest(limits, cutoff=cutoff, start=start)
-        if outcome.complete or not self.left:
+        if not outcome.complete and self.left:
+            return self._two_engines(search, outcome, cutoff)
+        return self._preferred(search, outcome) if choose and outcome.complete else outcome
+
+    def _preferred(self, search: Search, outcome: Outcome) -> Outcome:
+        """The same with the preferred one of equally cheap crews."""
+        if outcome.best is None:
             return outcome
-        return self._two_engines(search, outcome, cutoff)
+        limits = replace(TIES, seconds=min(TIES.seconds, self.left))
+        key = partial(heads.preference, search.program)
+        chosen = search.cheapest(limits, key=key, start=outcome.best)
+        return replace(outcome, best=chosen.best) if chosen.complete else outcome
 
     def _two_engines(self, search: Search, own: Outcome, cutoff: float) -> Outcome:
         first = whole(search.matrix, EngineName.HIGHS, seconds=self.left / 2)

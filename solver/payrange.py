@@ -14,12 +14,15 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from fractions import Fraction
+from math import ceil, floor
 
 from solver.answer import PayRange
+from solver.engine import LpStatus
 from solver.inquiry import Inquiry
 from solver.loosened import affordable, common
 from solver.matrix import RowSense
 from solver.program import Program
+from solver.rounding import snapped
 from solver.search import Found, Lots, Search, tie_width, whole_grain
 
 
@@ -81,6 +84,7 @@ class _Side:
             return None
         inquiry = self._ranges.inquiry
         mine = [crew for crew in self._ranges.known if self._sign * (self._amount(crew) - self._at_best) > 0]
+        mine = mine or self._rounded()
         if not mine:
             outcome = inquiry.cheapest(self._search(Fraction(0)))
             if outcome.best is None:
@@ -96,6 +100,17 @@ class _Side:
                 break
             ratio = self._ratio(self._met(outcome.best, ratio))
         return max(ratio, Fraction(0))
+
+    def _rounded(self) -> list[_Crew]:
+        """A crew of this side, if rounding the relaxation's gives one: category j inwards, the others up."""
+        search = self._search(Fraction(0))
+        if search.relax() is not LpStatus.OPTIMAL:
+            return []
+        inwards = floor if self._sign < 0 else ceil
+        values = [snapped(v) for v in search.relaxation.x[: search.program.head_count]]
+        lots = tuple((inwards if i in self._weights else ceil)(v) for i, v in enumerate(values))
+        objective = search.evaluate(lots)
+        return [] if objective is None else [self._met(Found(lots, objective), Fraction(0))]
 
     def _met(self, found: Found, ratio: Fraction) -> _Crew:
         """A crew found at the pay changed by `ratio`; crews once met serve other categories too."""
