@@ -14,7 +14,7 @@ from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from typing import IO, Any, NoReturn
 
-from solver import report, report_attendance, report_cost, report_near, report_room
+from solver import report, report_attendance, report_cost, report_near, report_room, report_steps
 from solver.answer import Answer, State, to_json
 from solver.engine import EngineFailure, quiet_native_output
 from solver.plan import Plan
@@ -56,6 +56,16 @@ def _near_arguments(parser: argparse.ArgumentParser) -> None:
     parser.add_argument("--most", type=int, default=20, metavar="N", help="how many crews (default 20)")
 
 
+def _steps_arguments(parser: argparse.ArgumentParser) -> None:
+    _long_arguments(parser)
+    parser.add_argument("--work", default="all", metavar="NAME", help="one work, or all (the default)")
+    unit = "in units of the work over all phases, per cent of today for all"
+    parser.add_argument(
+        "--from", type=float, metavar="A", help=f"smallest workload, {unit} (default: half of today)"
+    )
+    parser.add_argument("--to", type=float, metavar="B", help="largest workload (default: twice today)")
+
+
 def _attend_arguments(parser: argparse.ArgumentParser) -> None:
     _long_arguments(parser)
     parser.add_argument(
@@ -74,6 +84,7 @@ VERBS: tuple[Verb, ...] = (
     Verb("cost", "what whole people cost, and each category's part", _long_arguments, report_cost.cost),
     Verb("room", "how far lines can tighten, and which loosening pays", _long_arguments, report_room.room),
     Verb("near", "every whole crew that costs little more", _near_arguments, report_near.near),
+    Verb("steps", "cheapest crews over the workload", _steps_arguments, report_steps.steps),
     Verb(
         "attend",
         "how often enough people are there, and a safer crew",

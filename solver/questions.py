@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
+from decimal import Decimal
 from math import isfinite
 from typing import Any
 
@@ -12,9 +13,11 @@ from solver.nearbest import near_best
 from solver.plan import Plan
 from solver.room import room
 from solver.solve import Heard, solve
+from solver.steps import steps
 from solver.wholecost import whole_cost
 
 Options = Mapping[str, Any]
+MOST_WORKLOAD = 1e12
 LONGEST = 1_000_000  # seconds
 
 
@@ -52,6 +55,26 @@ def _near(plan: Plan, options: Options, heard: Heard) -> Any:
     return near_best(plan, within=float(within), most=int(most), seconds=seconds, heard=heard)
 
 
+def _steps(plan: Plan, options: Options, heard: Heard) -> Any:
+    work = options.get("work")
+    names = [w.name for w in plan.works]
+    if work == "all" and work not in names:
+        work = None
+    if work is not None and work not in names:
+        known = ", ".join(names) or "none"
+        raise BadOption(f"No work is called “{work}”; the plan's works are: {known}.")
+    low, high = (_workload(options.get(name), name) for name in ("from", "to"))
+    return steps(plan, work, low, high, seconds=options.get("seconds"), heard=heard)
+
+
+def _workload(value: Any, name: str) -> Decimal | None:
+    if value is None:
+        return None
+    if not _is_number(value) or not 0 <= value <= MOST_WORKLOAD or (name == "to" and value == 0):
+        raise BadOption(f"{value} is no usable workload for “{name}”; allowed is 0 to {MOST_WORKLOAD:.0e}.")
+    return Decimal(str(value))
+
+
 def _attend(plan: Plan, options: Options, heard: Heard) -> Any:
     chance = options.get("chance", 0.95)
     if not _is_number(chance) or not 0 < chance < 100 or chance == 1:
@@ -81,6 +104,7 @@ QUESTIONS: Mapping[str, Question] = {
         Question("cost", _cost),
         Question("room", _room),
         Question("near", _near),
+        Question("steps", _steps),
         Question("attend", _attend),
     )
 }

@@ -39,6 +39,14 @@ class NothingToScale(Unanswered):
     """The work has no amount, or the plan no work."""
 
 
+class NoRange(Unanswered):
+    """The smaller workload is not smaller than the larger one."""
+
+    def __init__(self, low: Decimal, high: Decimal) -> None:
+        says = f"The workloads from {low.normalize():f} to {high.normalize():f} are no range."
+        super().__init__(says, {"unscaled": says})
+
+
 @dataclass(frozen=True)
 class _Tread:
     """Part of the staircase in shares of the heavier end."""
@@ -61,11 +69,13 @@ def steps(
     """The staircase between two workloads, 0 <= low < high: units in all phases of `work`, or % of today
     for all works (`work` None). Left out, they are 50 % and 200 % of today.
 
-    `seconds` (None: 60) limits everything. Raises NothingToScale, KeyError for a work that is not there,
+    `seconds` (None: 60) limits everything. Raises NothingToScale, NoRange, KeyError for a work that is not there,
     and EngineFailure if an engine breaks.
     """
     today = _today(plan, work)
     low, high = today / 2 if low is None else low, today * 2 if high is None else high
+    if low >= high:
+        raise NoRange(low, high)
     heavy = scaled(plan, work, high / today)
     stairs = _Stairs(heavy, work, float(low / high), Inquiry(SECONDS if seconds is None else seconds, heard))
     unit = "%" if work is None else next(w.unit for w in plan.works if w.name == work)

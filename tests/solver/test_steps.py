@@ -15,7 +15,7 @@ from solver.corners import Corner, corners
 from solver.plan import Category, Plan, Work
 from solver.planfile import read_plan
 from solver.solve import solve
-from solver.steps import NothingToScale, steps
+from solver.steps import NoRange, NothingToScale, steps
 from solver.workload import scaled
 from tests.solver import checker, reference
 from tests.solver.random_plans import FEATURES, random_plan
@@ -182,10 +182,13 @@ def test_rounding_up_of_today_is_the_policys():
         )
 
 
+def dig(**more: Decimal) -> Plan:
+    hand = Category("Hand", Decimal(100), Decimal(40), output={"Digging": Decimal(2)}, **more)
+    return Plan(categories=(hand,), works=(Work("Digging", "m", (Decimal(200),)),))
+
+
 def test_one_category_is_a_plain_staircase():
-    hand = Category("Hand", Decimal(100), Decimal(40), output={"Digging": Decimal(2)})
-    plan = Plan(categories=(hand,), works=(Work("Digging", "m", (Decimal(200),)),))
-    found = steps(plan, "Digging", Decimal(50), Decimal(400))
+    found = steps(dig(), "Digging", Decimal(50), Decimal(400))
     assert [s.to for s in found.steps] == pytest.approx([80, 160, 240, 320, 400])
     assert [s.crew["Hand"] for s in found.steps] == [(1.0,), (2.0,), (3.0,), (4.0,), (5.0,)]
     assert [s.cost for s in found.steps] == pytest.approx([100, 200, 300, 400, 500])
@@ -198,8 +201,7 @@ def test_one_category_is_a_plain_staircase():
 
 
 def test_a_limit_ends_the_staircase_and_says_so():
-    hand = Category("Hand", Decimal(100), Decimal(40), at_most=Decimal(3), output={"Digging": Decimal(2)})
-    plan = Plan(categories=(hand,), works=(Work("Digging", "m", (Decimal(200),)),))
+    plan = dig(at_most=Decimal(3))
     found = steps(plan, None)
     assert found.steps[-1].to == pytest.approx(120)
     assert found.floor[-1].amount == pytest.approx(120)
@@ -211,11 +213,12 @@ def test_a_limit_ends_the_staircase_and_says_so():
 
 
 def test_what_cannot_be_scaled_is_told():
-    hand = Category("Hand", Decimal(100), Decimal(40), output={"Digging": Decimal(2)})
-    plan = Plan(categories=(hand,), works=(Work("Digging", "m", (Decimal(0),)),))
+    plan = scaled(dig(), None, Decimal(0))
     for work in ("Digging", None):
         with pytest.raises(NothingToScale):
             steps(plan, work)
+    with pytest.raises(NoRange, match="from 300 to 200"):
+        steps(dig(), None, Decimal(300))
     with pytest.raises(KeyError):
         steps(plan, "Nobody knows")
 
