@@ -69,8 +69,8 @@ def steps(
     """The staircase between two workloads, 0 <= low < high: units in all phases of `work`, or % of today
     for all works (`work` None). Left out, they are 50 % and 200 % of today.
 
-    `seconds` (None: 60) limits everything. Raises NothingToScale, NoRange, KeyError for a work that is not there,
-    and EngineFailure if an engine breaks.
+    `seconds` (None: 60) limits everything. Raises NothingToScale, NoRange, KeyError for a work that is not
+    there, and EngineFailure if an engine breaks.
     """
     today = _today(plan, work)
     low, high = today / 2 if low is None else low, today * 2 if high is None else high
