@@ -7,8 +7,6 @@ from decimal import Decimal
 from pathlib import Path
 from typing import Any
 
-import xlsxwriter
-
 from solver.plan import Plan, Work
 from solver.planfile import CannotSave
 from solver.tablecolumns import Meaning, What, meanings
@@ -51,6 +49,8 @@ def write_template(path: str | os.PathLike[str], plan: Plan | None = None) -> No
     Headers carry the currency, the period, the works and the phases of `plan`. The example row is invented
     and meant to be written over. Raises CannotSave.
     """
+    import xlsxwriter  # the window reads tables long before it writes one
+
     plan = plan or Plan()
     if not plan.works:
         plan = Plan(phases=plan.phases, currency=plan.currency, period=plan.period, works=(_EXAMPLE_WORK,))

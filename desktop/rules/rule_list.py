@@ -18,14 +18,12 @@ from PySide6.QtWidgets import (
 from desktop import messages, theme
 from desktop.document import Document
 from desktop.edits import rules
-from desktop.pasting import map_pasted
 from desktop.rules.kind import RuleKind
 from desktop.rules.kinds import KINDS, kind_of
 from desktop.rules.rule_dialog import RuleDialog
 from desktop.rules.rule_model import RuleModel
 from desktop.tables.clipboard import text_of
 from solver.plan import Rule
-from solver.tableimport import UnreadableTable, What, pasted_table
 
 _NAMES = 19  # width of the column of names, in steps of the grid
 
@@ -131,6 +129,9 @@ class RuleList(QTableView):
 
     def paste(self) -> None:
         """Show what was understood of a table of rules."""
+        from desktop.pasting import map_pasted  # not before it is needed: the window starts sooner
+        from solver.tableimport import UnreadableTable, What, pasted_table
+
         try:
             sheet = pasted_table(QGuiApplication.clipboard().text())
         except UnreadableTable as refused:

@@ -16,12 +16,11 @@ from PySide6.QtWidgets import (
 
 from desktop import messages, theme
 from desktop.dialogs.question import Choice, Role, ask
-from desktop.pasting import mapped_instead
 from desktop.tables.cell_editors import CellDelegate
 from desktop.tables.clipboard import TooLarge, block_of, text_of
 from desktop.tables.grid_model import GridModel
 from solver.plan import Plan
-from solver.tableimport import What
+from solver.tablecolumns import What
 
 Cell = tuple[int, int]
 _BELOW = 16  # pixels for a scroll bar below the rows
@@ -143,9 +142,11 @@ class Grid(QTableView):
     def _mapped_instead(self, text: str) -> bool:
         """Whether the clipboard held a whole table with headers, and the planner had it matched by them."""
         known = self._model.table.key
-        return known in list(What) and mapped_instead(
-            self, self._model.document, What(known), text, self.remarked.emit
-        )
+        if known not in list(What):
+            return False
+        from desktop.pasting import mapped_instead  # not before it is needed: the window starts sooner
+
+        return mapped_instead(self, self._model.document, What(known), text, self.remarked.emit)
 
     def _paste_block(self, block: tuple[tuple[str, ...], ...], top: int, left: int) -> None:
         room = self._model.columnCount() - left
