@@ -60,7 +60,8 @@ class Appraiser:
         runs = [self._run(t, lots) for t in range(len(program.phases))]
         short = any(run.short for run in runs)
         paper = program.ledger.paper_cost(lots)
-        cost = float(paper) + (0.0 if short else sum(run.running for run in runs))
+        running = 0.0 if short else sum(run.running for run in runs)
+        cost = round(float(paper) + running, 6)  # what lies behind is the LP code's rounding
         margins = self._margins(lots, runs, paper, cost, short)
         breaks = self._breaks(lots, fractional, runs, margins, cost)
         workable = not short and all(margin.margin >= 0 for margin in margins)

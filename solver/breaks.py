@@ -78,7 +78,7 @@ def hours_break(
     need = scale * prices.base
     moves, margin = _moves(program, t, now, before, lots, base)
     freed = {name: scale * value for name, value in given_up.items()}
-    short = -(margin - need + sum(moves.values()) + sum(freed.values()))
+    short = float(-(margin - need + sum(moves.values()) + sum(freed.values())))
     return Break(
         tuple(mine[i].name for i in missed),
         kind,
@@ -86,8 +86,8 @@ def hours_break(
         unit,
         short,
         _by_name(program, now),
-        need,
-        margin - need,
+        float(need),
+        float(margin - need),
         moves,
         freed,
         _by_name(program, before) if t else _NOTHING,

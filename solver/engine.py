@@ -6,11 +6,13 @@ Settings and their reasons were measured with python-mip 2.0.0 and cbcbox 2.935.
 from __future__ import annotations
 
 import os
+import sys
 from collections.abc import Sequence
 from dataclasses import dataclass
 from enum import Enum, StrEnum
 from math import inf, isfinite
 
+import highsbox
 import mip
 import numpy as np
 from mip.cbc import cbc_set_parameter, cbclib, ffi
@@ -177,7 +179,16 @@ def _without_columns(matrix: Matrix) -> WholeResult:
     return WholeResult(WholeStatus.INFEASIBLE, inf, inf, None)
 
 
+def _point_to_highs() -> None:
+    """python-mip would first try another package's copy, which need not offer the C interface."""
+    library = {"win32": ("bin", "highs.dll"), "darwin": ("lib", "libhighs.dylib")}
+    folder, name = library.get(sys.platform, ("lib", "libhighs.so"))
+    os.environ.setdefault("PMIP_HIGHS_LIBRARY", os.path.join(highsbox.highs_dist_dir(), folder, name))
+
+
 def _python_mip_model(matrix: Matrix, engine: EngineName) -> tuple[mip.Model, list[mip.Var]]:
+    if engine is EngineName.HIGHS:
+        _point_to_highs()
     model = mip.Model(solver_name=engine.value)
     model.verbose = 0
     model.max_mip_gap = 0.0  # the defaults stop at 1e-4

@@ -32,7 +32,7 @@ from solver.ledger import Ledger
 from solver.matrix import Floats, Matrix, RowSense
 from solver.plan import Budget, Category, Plan, Presence, Ratio, Rule, Sense, Share
 
-# head counts nobody limited: more lots than any plan needs, few enough for exact floats
+# head counts nobody limited get at least this many lots, and ten times what any one line asks for
 UNLIMITED_LOTS = 10**6
 
 SENSES = {Sense.AT_LEAST: RowSense.AT_LEAST, Sense.AT_MOST: RowSense.AT_MOST, Sense.EXACTLY: RowSense.EQUAL}
@@ -152,7 +152,9 @@ class Program:
         for j, category in enumerate(self.categories):
             lot = self.lots[j]
             lower = ceil(Fraction(category.at_least) / lot)
-            limit = UNLIMITED_LOTS if category.at_most is None else floor(Fraction(category.at_most) / lot)
+            limit = (
+                self._unlimited(j) if category.at_most is None else floor(Fraction(category.at_most) / lot)
+            )
             for t, phase in enumerate(self.phases):
                 cap = limit if self._caps is None else min(limit, self._caps[self.head(j, t)])
                 self._column(
@@ -164,6 +166,21 @@ class Program:
                 )
         for j, category in enumerate(self.categories):
             self._add_bound_lines(j, category)
+
+    def _unlimited(self, j: int) -> int:
+        """A limit in lots for a head count that nobody limited, far above what any line can ask for."""
+        category = self.categories[j]
+        wants = [Fraction(category.at_least)]
+        for work in self.plan.works:
+            each = Fraction(category.output.get(work.name, 0)) * self.attended[j]
+            if each > 0:
+                wants += [
+                    Fraction(amount) / (each * self.periods(t)) for t, amount in enumerate(work.amounts)
+                ]
+        for rule in self.plan.rules:
+            if isinstance(rule, Presence) and rule.weights.get(category.name, 0) > 0:
+                wants.append(Fraction(rule.bound) / Fraction(rule.weights[category.name]))
+        return max(UNLIMITED_LOTS, ceil(10 * max(wants) / self.lots[j]))
 
     def _add_bound_lines(self, j: int, category: Category) -> None:
         lot = self.lots[j]
@@ -242,7 +259,7 @@ class Program:
                 self._least_if_any(j, category, least)
 
     def _switched(self, head: int, switch: int) -> None:
-        if self._open_ended and self.matrix.upper[head] >= UNLIMITED_LOTS:
+        if self._open_ended and self.categories[head // len(self.phases)].at_most is None:
             return
         coefs = [1.0, -self.matrix.upper[head]]
         self.matrix.add_row([head, switch], coefs, RowSense.AT_MOST, 0.0)
