@@ -149,9 +149,7 @@ TIP_CHANGE = "Who is added or no longer needed"
 BEYOND_STEPS = "No crew of the staircase serves this workload."
 ANOTHER_SPREAD = "the same people, spread otherwise"
 STEPS_EXACT = "Every border of a step is exact."
-STEPS_SLOPING = (
-    "Overtime or bought-in work makes the cost slope within a step; borders are right to 0.1 % of the range."
-)
+STEPS_UNPROVED = "Not every border is proved: the time was not enough."
 TODAY = "today"
 KEY_EXACT, KEY_FLOOR, KEY_UP = "cheapest whole crew", "fractional crew", "fractional crew rounded up"
 

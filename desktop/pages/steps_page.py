@@ -183,7 +183,8 @@ class StepsPage(QuestionPage):
         self._picture().show()
         self.table.show(detail.steps, step_columns(plan, detail))
         self.view.share_width([3, 4])
-        self.accuracy.setText(say.STEPS_EXACT if detail.exact else say.STEPS_SLOPING)
+        accuracy = say.STEPS_EXACT if detail.exact else say.STEPS_UNPROVED
+        self.accuracy.setText(f"{accuracy} {detail.ends}".strip())
         self._on_moved(detail.today)
 
     def _on_moved(self, amount: float) -> None:

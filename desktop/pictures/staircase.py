@@ -79,7 +79,7 @@ class Staircase(PlotPicture):
 
     def _line(self, path: tuple[list[float], list[float]], pen: QPen, name: str) -> None:
         if path[0]:
-            self.plot.plot(*path, pen=pen, antialias=True, name=name)
+            self.plot.plot(*path, pen=pen, antialias=True, name=name, connect="finite")
 
     def _dots(self, points: list[tuple[float, float]], edge: QColor, fill: QColor) -> pg.ScatterPlotItem:
         item = pg.ScatterPlotItem(pos=points, size=6, pen=pg.mkPen(edge), brush=pg.mkBrush(fill))

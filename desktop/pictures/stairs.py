@@ -4,10 +4,11 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from itertools import pairwise
+from math import nan
 
 from desktop import figures
 from desktop import question_words as say
-from solver.answer import Crew, FloorPoint, Step, Steps
+from solver.answer import Crew, FloorPoint, RoundedPoint, Step, Steps
 from solver.plan import Plan
 
 _SAME = 1e-9
@@ -18,14 +19,19 @@ def stair_path(steps: Sequence[Step]) -> tuple[list[float], list[float]]:
     xs: list[float] = []
     ys: list[float] = []
     for step in steps:
-        xs += [step.from_, step.to]
-        ys += [step.cost_from, step.cost]
+        xs += [point.amount for point in _corners(step)]
+        ys += [point.cost for point in _corners(step)]
     return xs, ys
 
 
-def point_path(points: Sequence[FloorPoint]) -> tuple[list[float], list[float]]:
-    """Corners of a piecewise linear line."""
-    return [p.amount for p in points], [p.cost for p in points]
+def _corners(step: Step) -> tuple[FloorPoint, ...]:
+    """Where the cost of a step's crew begins, bends and ends."""
+    return step.points or (FloorPoint(step.from_, step.cost_from), FloorPoint(step.to, step.cost))
+
+
+def point_path(points: Sequence[FloorPoint | RoundedPoint]) -> tuple[list[float], list[float]]:
+    """Corners of a piecewise linear line; not a number where there is a gap in it."""
+    return [p.amount for p in points], [nan if p.cost is None else p.cost for p in points]
 
 
 def step_at(steps: Sequence[Step], amount: float) -> int | None:
@@ -41,10 +47,9 @@ def cost_at(steps: Sequence[Step], amount: float) -> float | None:
     at = step_at(steps, amount)
     if at is None:
         return None
-    step = steps[at]
-    span = step.to - step.from_
-    share = (amount - step.from_) / span if span > 0 else 1.0
-    return step.cost_from + min(max(share, 0.0), 1.0) * (step.cost - step.cost_from)
+    corners = _corners(steps[at])
+    inside = min(max(amount, corners[0].amount), corners[-1].amount)
+    return floor_at(corners, inside)
 
 
 def floor_at(points: Sequence[FloorPoint], amount: float) -> float | None:

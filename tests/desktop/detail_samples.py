@@ -13,6 +13,7 @@ from solver.answer import (
     NearCrew,
     PayRange,
     Room,
+    RoundedPoint,
     Rung,
     Step,
     Steps,
@@ -118,5 +119,5 @@ def steps_detail() -> Steps:
         slope = 1500.0 if at == 4 else 0.0
         made.append(Step(low, high, crew(2 + at // 3, 4 + at, 6, 8, 0.5), cost + slope, cost))
     floor = tuple(FloorPoint(x, 64000 + 0.76 * (x - 26000)) for x in (26000, 60000, 104000))
-    up = tuple(FloorPoint(p.amount, p.cost + 9000) for p in floor)
+    up = tuple(RoundedPoint(p.amount, p.cost + 9000) for p in floor)
     return Steps("Planting", "trees", 52000, tuple(made), floor, up, False)
