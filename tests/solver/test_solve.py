@@ -16,10 +16,9 @@ from solver.planfile import plan_from_document, plan_to_document
 from solver.review import review
 from solver.search import tie_width
 from solver.solve import solve
-from tests.solver import checker, solved
+from tests.solver import agreement, checker, solved
 from tests.solver.hostile_plans import BENDS, hostile_plan
 from tests.solver.random_plans import random_plan
-from tests.solver.reference import reference_costs
 from tests.solver.strategies import plans
 
 MIXED = [range(start, start + 30) for start in range(0, 300, 30)]
@@ -30,31 +29,16 @@ QUICK = settings(
 )
 
 
-def same(ours: float | None, theirs: float | None) -> bool:
-    """Both absent, or equal to the cent or to one part in a million, whichever is finer for large sums."""
-    if ours is None or theirs is None:
-        return ours is theirs
-    return abs(ours - theirs) <= max(0.005, 1e-6 * abs(theirs))
-
-
-def assert_equals_highs(plan: Plan, answer: Answer) -> None:
-    floor, exact = reference_costs(plan)
-    assert same(answer.floor, floor)
-    assert same(answer.exact.cost if answer.exact else None, exact)
-    assert answer.state is (State.IMPOSSIBLE if exact is None else State.PROVED)
-    assert answer.proof is not None
-
-
 class TestAgainstHighs:
     @pytest.mark.parametrize("seeds", MIXED, ids=str)
     def test_floor_and_exact_cost_are_equal(self, seeds: range) -> None:
         for seed in seeds:
-            assert_equals_highs(*solved.mixed(seed))
+            agreement.assert_floor_and_exact_equal_highs(*solved.mixed(seed))
 
     @pytest.mark.parametrize("seeds", FULL, ids=str)
     def test_plans_of_everything_at_once_are_equal(self, seeds: range) -> None:
         for seed in seeds:
-            assert_equals_highs(*solved.full(seed))
+            agreement.assert_floor_and_exact_equal_highs(*solved.full(seed))
 
     def test_plans_of_the_tests_have_no_problems(self) -> None:
         plans = [solved.mixed(seed)[0] for seed in range(300)] + [solved.full(seed)[0] for seed in range(120)]
@@ -70,48 +54,29 @@ class TestAgainstHighs:
         for seed in range(12):
             rng = np.random.default_rng(seed)
             plan = bend(rng, random_plan(rng, max_phases=1))
-            assert_equals_highs(plan, solve(plan))
+            agreement.assert_floor_and_exact_equal_highs(plan, solve(plan))
 
     @pytest.mark.parametrize("seed", range(40, 80))
     def test_plans_bent_several_ways_are_equal(self, seed: int) -> None:
         plan = hostile_plan(np.random.default_rng(seed), max_phases=1)
-        assert_equals_highs(plan, solve(plan))
+        agreement.assert_floor_and_exact_equal_highs(plan, solve(plan))
 
 
 class TestCrews:
     @pytest.mark.parametrize("seeds", MIXED, ids=str)
     def test_the_exact_crew_stands_an_engine_free_check(self, seeds: range) -> None:
         for seed in seeds:
-            plan, answer = solved.mixed(seed)
-            if answer.exact is not None:
-                best = answer.exact
-                checker.assert_stands(plan, best.crew, best.cost, best.overtime, best.bought_in)
-                moves = tuple(float(n) for n in checker.joiners_and_leavers(plan, best.crew))
-                assert (best.joiners, best.leavers) == pytest.approx(moves)
+            agreement.assert_exact_crew_stands(*solved.mixed(seed))
 
     @pytest.mark.parametrize("seeds", FULL, ids=str)
     def test_so_do_those_of_everything_at_once(self, seeds: range) -> None:
         for seed in seeds:
-            plan, answer = solved.full(seed)
-            if answer.exact is not None:
-                best = answer.exact
-                checker.assert_stands(plan, best.crew, best.cost, best.overtime, best.bought_in)
+            agreement.assert_exact_crew_stands(*solved.full(seed))
 
     @pytest.mark.parametrize("seeds", MIXED, ids=str)
     def test_every_crew_is_called_workable_rightly_and_none_is_cheaper(self, seeds: range) -> None:
         for seed in seeds:
-            plan, answer = solved.mixed(seed)
-            for report in answer.crews:
-                if report.crew is None:
-                    assert report.why_none
-                    continue
-                cost = checker.cost_if_workable(plan, report.crew)
-                assert (cost is not None) == report.workable
-                assert same(report.cost, cost)
-                assert same(report.paper_cost, float(checker.cost_of_heads(plan, report.crew)))
-                if cost is not None:
-                    assert answer.exact is not None
-                    assert cost >= answer.exact.cost - 0.005
+            agreement.assert_crews_are_called_rightly(*solved.mixed(seed))
 
     def test_all_policies_are_answered_in_order(self) -> None:
         _, answer = next(solved.full(seed) for seed in range(9) if solved.full(seed)[1].exact)
@@ -132,7 +97,7 @@ class TestCrews:
                 assert report is not None
                 assert (report.crew is None) == (not costs)
                 if costs:
-                    assert same(report.cost, min(costs))
+                    assert agreement.same(report.cost, min(costs))
                     compared += 1
         assert compared > 60
 
@@ -158,16 +123,7 @@ class TestTies:
     @pytest.mark.parametrize("seeds", BOXED, ids=str)
     def test_brute_force_over_the_box_takes_the_same_crew(self, seeds: range) -> None:
         for seed in seeds:
-            plan, answer, workable = solved.boxed(seed)
-            if not workable:
-                assert answer.state is State.IMPOSSIBLE
-                continue
-            assert answer.exact is not None
-            least = min(cost for cost, _ in workable)
-            equals = [crew for cost, crew in workable if cost <= least + tie_width(least)]
-            preferred = min(equals, key=lambda crew: checker.preference(plan, crew))
-            ours = {name: tuple(map(checker.number, ns)) for name, ns in answer.exact.crew.items()}
-            assert ours == preferred, seed
+            agreement.assert_preferred_crew_is_taken(*solved.boxed(seed))
 
     def test_ties_do_occur_in_these_plans(self) -> None:
         tied = 0
@@ -350,8 +306,8 @@ class TestProperties:
             rules=plan.rules[::-1],
         )
         answer, other = solve(plan), solve(turned)
-        assert same(answer.floor, other.floor)
-        assert same(_exact(answer), _exact(other))
+        assert agreement.same(answer.floor, other.floor)
+        assert agreement.same(_exact(answer), _exact(other))
 
     @QUICK
     @given(plans(features=frozenset({"lots", "bounds", "books", "moves", "ratio", "overtime", "phases"})))
@@ -371,7 +327,7 @@ class TestProperties:
             ),
         )
         cost, tenfold = _exact(solve(plan)), _exact(solve(dearer))
-        assert same(cost and cost * 10, tenfold)
+        assert agreement.same(cost and cost * 10, tenfold)
 
     @QUICK
     @given(plans())
