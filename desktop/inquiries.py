@@ -13,6 +13,7 @@ from desktop.replies import Reply
 from desktop.understanding import Progress
 from desktop.workers import Workers
 from solver import answer
+from solver.mapanswer import CrewMap
 
 SILENCE = 300_000  # ms a long question may be worked on without a word before it counts as hung
 
@@ -22,6 +23,7 @@ KINDS: Mapping[str, type[Any]] = {
     "room": answer.Room,
     "near": answer.NearBest,
     "steps": answer.Steps,
+    "map": CrewMap,
     "attend": answer.Attendance,
 }
 

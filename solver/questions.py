@@ -9,6 +9,7 @@ from math import isfinite
 from typing import Any
 
 from solver.attendance import attend
+from solver.crewmap import crew_map
 from solver.nearbest import near_best
 from solver.plan import Plan
 from solver.room import room
@@ -75,6 +76,20 @@ def _workload(value: Any, name: str) -> Decimal | None:
     return Decimal(str(value))
 
 
+def _map(plan: Plan, options: Options, heard: Heard) -> Any:
+    names = [category.name for category in plan.categories]
+    phases = [phase.name for phase in plan.phases]
+    across, up, phase = options.get("x"), options.get("y"), options.get("phase", phases[0])
+    for name in (across, up):
+        if name not in names:
+            raise BadOption(f"No category is called “{name}”; the plan's are: {', '.join(names)}.")
+    if across == up:
+        raise BadOption("The crew map needs two different categories.")
+    if phase not in phases:
+        raise BadOption(f"No phase is called “{phase}”; the plan's are: {', '.join(phases)}.")
+    return crew_map(plan, str(across), str(up), str(phase))
+
+
 def _attend(plan: Plan, options: Options, heard: Heard) -> Any:
     chance = options.get("chance", 0.95)
     if not _is_number(chance) or not 0 < chance < 100 or chance == 1:
@@ -105,6 +120,7 @@ QUESTIONS: Mapping[str, Question] = {
         Question("room", _room),
         Question("near", _near),
         Question("steps", _steps),
+        Question("map", _map),
         Question("attend", _attend),
     )
 }
