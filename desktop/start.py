@@ -27,7 +27,7 @@ def run(plan: Path | None) -> int:
     app.setApplicationName("full-complement")
     app.setApplicationDisplayName(messages.PROGRAM)
     app.setDesktopFileName("full-complement")
-    _name_locale()
+    name_locale()
     workers = Workers()
     window = open_window(app, workers, plan)
     for number in (signal.SIGINT, signal.SIGTERM):
@@ -41,7 +41,7 @@ def run(plan: Path | None) -> int:
     return code
 
 
-def _name_locale() -> None:
+def name_locale() -> None:
     """Where the system names no language ("C"), numbers are still grouped: 52,000."""
     if QLocale().language() == QLocale.Language.C:
         QLocale.setDefault(QLocale(QLocale.Language.English, QLocale.Country.UnitedKingdom))

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 
-from PySide6.QtCore import QEvent, Qt, QTimer, Signal
+from PySide6.QtCore import QEvent, QModelIndex, Qt, QTimer, Signal
 from PySide6.QtGui import QGuiApplication, QKeyEvent
 from PySide6.QtWidgets import (
     QAbstractItemDelegate,
@@ -38,6 +38,7 @@ class Grid(QTableView):
     def __init__(self, model: GridModel, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self._model = model
+        self._wider: set[Cell] = set()
         self._growing = QTimer(self, singleShot=True, interval=0)
         self._growing.timeout.connect(self._grow_columns)
         self.setModel(model)
@@ -59,20 +60,23 @@ class Grid(QTableView):
         model.remarked.connect(self.remarked)
         model.columnsInserted.connect(self.fit_columns)
         model.columnsRemoved.connect(self.fit_columns)
-        model.dataChanged.connect(self._soon_grow)
+        model.dataChanged.connect(self._on_data)
         model.document.replaced.connect(self.fit_columns)
         self.fit_columns()
 
-    def _soon_grow(self) -> None:
+    def _on_data(self, first: QModelIndex, last: QModelIndex) -> None:
+        """Make room for what became wider; nothing shrinks under the planner's hands."""
+        self._wider |= {(r, c) for r in range(first.row(), last.row() + 1) for c in range(last.column() + 1)}
         self._growing.start()
 
     def _grow_columns(self) -> None:
-        """Make room for what became wider; nothing shrinks under the planner's hands."""
         header, most = self.horizontalHeader(), 26 * theme.current().px(1)
-        for at in range(self._model.columnCount()):
-            wanted = min(self.sizeHintForColumn(at) + theme.current().px(1), most)
-            if wanted > header.sectionSize(at):
-                header.resizeSection(at, wanted)
+        cells, self._wider = self._wider, set()
+        metrics, air = self.fontMetrics(), theme.current().px(2)
+        for row, column in cells:
+            wanted = metrics.horizontalAdvance(str(self._model.index(row, column).data() or "")) + air
+            if min(wanted, most) > header.sectionSize(column):
+                header.resizeSection(column, min(wanted, most))
 
     def fit_columns(self) -> None:
         """Every column as wide as its widest text, the names a little wider."""

@@ -25,6 +25,12 @@ MARK = Role.UserRole  # "refused", "problem" or None: the delegate's sign
 _NOWHERE = QModelIndex()
 _REFUSED_SIGN = "\u2717 "  # broken and workable are never told by colour alone
 _PROBLEM_SIGN = "! "
+# combined once: views ask for them thousands of times, and combining them is slow
+_FLAGS = Qt.ItemFlag.ItemIsEnabled | Qt.ItemFlag.ItemIsSelectable | Qt.ItemFlag.ItemIsEditable
+_LEFT, _RIGHT = (
+    int(side | Qt.AlignmentFlag.AlignVCenter)
+    for side in (Qt.AlignmentFlag.AlignLeft, Qt.AlignmentFlag.AlignRight)
+)
 
 
 class GridModel(QAbstractTableModel):
@@ -43,6 +49,7 @@ class GridModel(QAbstractTableModel):
         self._plan = document.plan
         self._names = table.names(document.plan)
         self._columns = table.shown_columns(document.plan, self._groups)
+        self._refused = document.refused
         self._open_end = True  # False only while rows at the end come or go
         self._problems: Mapping[str, str] = {}
         document.changed.connect(self._follow)
@@ -131,16 +138,20 @@ class GridModel(QAbstractTableModel):
 
     def _follow(self) -> None:
         """Take over the document's plan, telling views as little as possible."""
-        plan = self._document.plan
+        plan, before, refused = self._document.plan, self._plan, self._refused
         columns = self._table.shown_columns(plan, self._groups)
+        headers = [column.header for column in self._columns]
         self._follow_columns(columns)
         self._columns = columns
         names = self._table.names(plan)
         self._follow_rows(plan, names)
-        self._plan = plan
-        self._names = names
-        self._refresh()
-        self.headerDataChanged.emit(Qt.Orientation.Horizontal, 0, len(columns) - 1)
+        self._plan, self._names, self._refused = plan, names, self._document.refused
+        if [column.header for column in columns] != headers:
+            self.headerDataChanged.emit(Qt.Orientation.Horizontal, 0, len(columns) - 1)
+        if refused is not self._refused:
+            self._refresh()
+        else:
+            self._refresh_rows(self._changed_rows(before, plan))
 
     def _follow_columns(self, columns: tuple[Column, ...]) -> None:
         old, new = [c.key for c in self._columns], [c.key for c in columns]
@@ -186,6 +197,16 @@ class GridModel(QAbstractTableModel):
             self._names, self._open_end = self._names[: start + 1], False
             self.endRemoveRows()
             self._plan, self._names, self._open_end = plan, names, True
+
+    def _changed_rows(self, before: Plan, after: Plan) -> list[int]:
+        """Rows whose entry is another one now; what did not change is the same object in both plans."""
+        old, new = getattr(before, self._table.key), getattr(after, self._table.key)
+        return [row for row, entry in enumerate(new) if row >= len(old) or entry is not old[row]]
+
+    def _refresh_rows(self, rows: list[int]) -> None:
+        if rows:
+            last = self.columnCount() - 1
+            self.dataChanged.emit(self.index(rows[0], 0), self.index(rows[-1], last))
 
     def _refresh(self) -> None:
         last = self.index(self.rowCount() - 1, self.columnCount() - 1)
@@ -263,9 +284,7 @@ class GridModel(QAbstractTableModel):
 
     def flags(self, index: Index) -> Qt.ItemFlag:
         """Every cell can be edited."""
-        if not index.isValid():
-            return Qt.ItemFlag.NoItemFlags
-        return Qt.ItemFlag.ItemIsEnabled | Qt.ItemFlag.ItemIsSelectable | Qt.ItemFlag.ItemIsEditable
+        return _FLAGS if index.isValid() else Qt.ItemFlag.NoItemFlags
 
     def data(self, index: Index, role: int = Role.DisplayRole) -> Any:
         """What a view asks about a cell."""
@@ -273,10 +292,7 @@ class GridModel(QAbstractTableModel):
         if not index.isValid() or row > len(self._names) or column >= len(self._columns):
             return None
         if role == Role.TextAlignmentRole:
-            side = (
-                Qt.AlignmentFlag.AlignRight if self._columns[column].is_number else Qt.AlignmentFlag.AlignLeft
-            )
-            return int(side | Qt.AlignmentFlag.AlignVCenter)
+            return _RIGHT if self._columns[column].is_number else _LEFT
         if row == len(self._names):
             return self._new_row(column, role)
         answer = _ROLES.get(role)
