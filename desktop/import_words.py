@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from solver.tableimport import Fate, What
+from solver.tablecolumns import What
 
 IMPORT = "Import a table"
 CHOOSE_TABLE = "Choose a table"
@@ -46,11 +46,7 @@ WHY = "Why, or what to look at"
 TIP_NAME = "The name in the table; an entry of the plan with the same name is changed"
 TIP_FATE = "A row comes in whole or not at all; blank cells leave what is there, or the default"
 TIP_WHY = "Why a row is refused, or what should be looked at although it was understood"
-FATES = {
-    Fate.NEW: "\u2713 new",
-    Fate.CHANGED: "\u2713 changes an entry",
-    Fate.REFUSED: "\u2717 refused",
-}
+NEW, CHANGED, REFUSED = "\u2713 new", "\u2713 changes an entry", "\u2717 refused"
 REFUSED_FIRST = "Refused rows stand first."
 ACCEPT = "&Import"
 ACCEPT_NEXT = "Import, then the &next sheet"

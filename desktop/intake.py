@@ -43,7 +43,9 @@ class Intake:
         self._done: set[int] = set()
         self.at = 0
         self.what = What.CATEGORIES
-        self.mapping = propose_mapping(self.sheets[0], self.what, document.plan)
+        self._proposed = propose_mapping(self.sheets[0], self.what, document.plan)
+        self._chosen: dict[int, Meaning | None] = {}
+        self.mapping = self._proposed
         self.result: ImportResult | None = None
         self.refusal = ""
         self.choose_sheet(self._next_of(range(len(self.sheets))))
@@ -67,15 +69,24 @@ class Intake:
     def choose_what(self, what: What) -> None:
         """Take the rows as `what`."""
         self.what = what
-        self._take(propose_mapping(self.sheet, what, self._document.plan))
+        self._propose(None)
 
     def choose_header(self, row: int) -> None:
         """Take `row` (from 0) as the header."""
-        self._take(propose_mapping(self.sheet, self.what, self._document.plan, row))
+        self._propose(row)
 
     def assign(self, column: int, meaning: Meaning | None) -> None:
-        """Give a column a meaning by hand, or leave it out."""
-        self._take(self.mapping.assigned(column, meaning))
+        """Give a column a meaning by hand, or leave it out.
+
+        The latest choice of each column counts: a meaning that was only passed over while choosing goes back
+        to the column it was taken from.
+        """
+        self._chosen.pop(column, None)
+        self._chosen[column] = meaning
+        mapping = self._proposed
+        for at, chosen in self._chosen.items():
+            mapping = mapping.assigned(at, chosen)
+        self._take(mapping)
 
     def may_go_in(self, without_refused: bool) -> bool:
         """Whether `accept` would import something."""
@@ -98,6 +109,12 @@ class Intake:
         """The sheet to go on with once this one is in, None if there is none."""
         left = [i for i in range(len(self.sheets)) if i not in self._done | {self.at} and self._holds(i)]
         return self._next_of(left) if left else None
+
+    def _propose(self, header_row: int | None) -> None:
+        """What the headers say, before anything is chosen by hand."""
+        self._chosen.clear()
+        self._proposed = propose_mapping(self.sheet, self.what, self._document.plan, header_row)
+        self._take(self._proposed)
 
     def _take(self, mapping: Mapping) -> None:
         self.mapping, self.result, self.refusal = mapping, None, ""

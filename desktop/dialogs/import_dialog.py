@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from itertools import pairwise
 
 from PySide6.QtCore import Qt, Signal
 from PySide6.QtGui import QKeyEvent
@@ -22,6 +23,7 @@ from PySide6.QtWidgets import (
 )
 
 from desktop import import_words as say
+from desktop import messages
 from desktop.document import Document
 from desktop.intake import Intake
 from desktop.pages.page_parts import heading, label
@@ -63,6 +65,7 @@ class ImportDialog(QDialog):
         self.leave_out = QCheckBox()
         self.accept_button = QPushButton(say.ACCEPT)
         self.next_button = QPushButton(say.ACCEPT_NEXT)
+        self.cancel_button = QPushButton(messages.CANCEL)
         self._fill_choices()
         self._lay_out()
         self._connect()
@@ -115,7 +118,8 @@ class ImportDialog(QDialog):
         for at in (0, 1):
             parts.setCollapsible(at, False)
             parts.setStretchFactor(at, 1)
-        buttons = QDialogButtonBox(QDialogButtonBox.StandardButton.Cancel)
+        buttons = QDialogButtonBox()
+        buttons.addButton(self.cancel_button, QDialogButtonBox.ButtonRole.RejectRole)
         buttons.addButton(self.accept_button, QDialogButtonBox.ButtonRole.AcceptRole)
         buttons.addButton(self.next_button, QDialogButtonBox.ButtonRole.ActionRole)
         buttons.rejected.connect(self.reject)
@@ -146,7 +150,7 @@ class ImportDialog(QDialog):
         self._show_table()
 
     def _on_what(self) -> None:
-        self.intake.choose_what(self.what_box.currentData())
+        self.intake.choose_what(What(self.what_box.currentData()))
         self._show_table()
 
     def _on_header(self, row: int) -> None:
@@ -199,7 +203,15 @@ class ImportDialog(QDialog):
         self.remarks.setText(" ".join(intake.sheet.remarks))
         self.remarks.setVisible(bool(intake.sheet.remarks))
         self.columns.show_columns(intake.sheet, intake.mapping)
+        self._order_tabs()
         self._show_outcome()
+
+    def _order_tabs(self) -> None:
+        """From top to bottom: new choices of columns would stand last."""
+        buttons = (self.accept_button, self.next_button, self.cancel_button)
+        parts = [self.header_box, *self.columns.boxes(), self.row_view, self.leave_out, *buttons]
+        for before, after in pairwise(parts):
+            self.setTabOrder(before, after)
 
     def _show_outcome(self) -> None:
         """What becomes of the rows under the present meanings."""

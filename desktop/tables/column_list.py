@@ -59,6 +59,7 @@ class ColumnList(QTableWidget):
         self.setEditTriggers(QAbstractItemView.EditTrigger.NoEditTriggers)
         self.setSelectionMode(QAbstractItemView.SelectionMode.NoSelection)
         self.setFocusPolicy(Qt.FocusPolicy.NoFocus)  # its combo boxes have the focus
+        self.setTabKeyNavigation(False)
         self.setWordWrap(False)
         self.setShowGrid(False)
         self.verticalHeader().hide()
@@ -95,6 +96,10 @@ class ColumnList(QTableWidget):
         found = self.cellWidget(row, _COMBO)
         assert isinstance(found, MeaningBox)
         return found
+
+    def boxes(self) -> list[MeaningBox]:
+        """All choices, from the first column to the last."""
+        return [self.box(row) for row in range(self.rowCount())]
 
     def says(self, row: int) -> str:
         """How a column was understood."""

@@ -11,6 +11,7 @@ from desktop.tables.shown_table import Index, ShownColumn, ShownTable
 from desktop.theme import current
 from solver.tableimport import Fate, RowResult
 
+_FATES = {Fate.NEW: say.NEW, Fate.CHANGED: say.CHANGED, Fate.REFUSED: say.REFUSED}
 _SENTENCES = " \u00b7 "
 
 
@@ -20,7 +21,7 @@ def _why(row: RowResult) -> str:
 
 FATE_COLUMNS: tuple[ShownColumn[RowResult], ...] = (
     ShownColumn(say.NAME, say.TIP_NAME, lambda row: row.name, left=True),
-    ShownColumn(say.FATE, say.TIP_FATE, lambda row: say.FATES[row.fate], left=True),
+    ShownColumn(say.FATE, say.TIP_FATE, lambda row: _FATES[row.fate], left=True),
     ShownColumn(say.WHY, say.TIP_WHY, _why, left=True),
 )
 
