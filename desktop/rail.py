@@ -45,7 +45,9 @@ PAGES: tuple[PageSpec, ...] = (
     PageSpec("Whole people", "What whole people cost", "Ctrl+4", f"{_HOME}.cost_page", "CostPage"),
     PageSpec("Room", "How far each line can move", "Ctrl+5", f"{_HOME}.room_page", "RoomPage"),
     PageSpec("Near best", "Other good crews", "Ctrl+6", f"{_HOME}.near_page", "NearPage"),
-    PageSpec(OUTPUT, "As it is printed", "Ctrl+7", f"{_HOME}.preview_page", "PreviewPage"),
+    PageSpec("Workload", "The crew at other workloads", "Ctrl+7", f"{_HOME}.steps_page", "StepsPage"),
+    PageSpec("Crew map", "All whole crews of two categories", "Ctrl+8", f"{_HOME}.map_page", "MapPage"),
+    PageSpec(OUTPUT, "As it is printed", "Ctrl+9", f"{_HOME}.preview_page", "PreviewPage"),
 )
 
 

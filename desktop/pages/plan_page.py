@@ -59,6 +59,9 @@ class PlanPage(QWidget):
         self._whole = QSplitter(Qt.Orientation.Vertical)
         self._below = QSplitter(Qt.Orientation.Horizontal)
         self._first_phase = self._phase_button()
+        keep = self._first_phase.sizePolicy()
+        keep.setRetainSizeWhenHidden(True)  # the headings of the parts stay in line
+        self._first_phase.setSizePolicy(keep)
         self._phase_part = _part(PHASES.title, [self._phase_button()], self.phases)
         self._lay_out()
         self._restore_groups()
