@@ -143,8 +143,9 @@ class WholePeopleCost:
 class Conflicting:
     """One member of a smallest set of lines that cannot hold together.
 
-    `move` is how far this line alone must move, in `unit`, before a workable crew exists; None when
-    moving it is not enough alone. `says` is the line in the planner's words, `repair` the move.
+    `move` is how far the number behind this line alone must move, in `unit`, before a workable crew exists;
+    None when moving it is not enough alone. It is above 0, but for an `exactly` that must go down. `says` is
+    the line in the planner's words, `repair` the move. Whole people are a member of kind None.
     """
 
     line: str
@@ -245,7 +246,8 @@ class PayRange:
 
 @dataclass(frozen=True)
 class Room:
-    """Answer of `room`; `programs` counts the integer programs solved."""
+    """Answer of `room`; `programs` counts the integer programs solved. `pay` leaves out categories whose
+    range was not worked out in the time given."""
 
     lines: tuple[LineRoom, ...]
     pay: tuple[PayRange, ...]

@@ -23,7 +23,7 @@ from solver.loosened import affordable, common
 from solver.matrix import RowSense
 from solver.program import Program
 from solver.rounding import snapped
-from solver.search import Found, Lots, Search, tie_width, whole_grain
+from solver.search import Found, Lots, Outcome, Search, tie_width, whole_grain
 
 
 @dataclass(frozen=True)
@@ -32,6 +32,16 @@ class _Crew:
 
     lots: Lots
     cost: Fraction
+
+
+class _OutOfTime(Exception):
+    """A search was cut short."""
+
+
+def _complete(outcome: Outcome) -> Outcome:
+    if not outcome.complete:
+        raise _OutOfTime
+    return outcome
 
 
 class PayRanges:
@@ -43,11 +53,14 @@ class PayRanges:
         self.best = self.crew(best.lots, best.objective)
         self.known: list[_Crew] = []
 
-    def of(self, j: int) -> PayRange:
-        """The range of category j's pay. Where the time runs out, no more than was proved: the typed pay."""
+    def of(self, j: int) -> PayRange | None:
+        """The range of category j's pay; None where the time did not suffice."""
         category = self.program.categories[j]
         pay = Fraction(category.pay)
-        less, more = _Side(self, j, -1).change(), _Side(self, j, +1).change()
+        try:
+            less, more = _Side(self, j, -1).change(), _Side(self, j, +1).change()
+        except _OutOfTime:
+            return None
         low = None if more is None else self._told(pay - more)
         high = None if less is None else self._told(pay + less)
         return PayRange(category.name, low or None, high)  # nobody is paid less than nothing
@@ -78,7 +91,7 @@ class _Side:
     def change(self) -> Fraction | None:
         """The least change of pay that makes one of these crews cheaper than the exact one; None: none does.
 
-        For crews with more it is told only as far as pay stays above 0.
+        For crews with more it is told only as far as pay stays above 0. Raises _OutOfTime.
         """
         if self._sign < 0 and not self._at_best:
             return None
@@ -86,16 +99,15 @@ class _Side:
         mine = [crew for crew in self._ranges.known if self._sign * (self._amount(crew) - self._at_best) > 0]
         mine = mine or self._rounded()
         if not mine:
-            outcome = inquiry.cheapest(self._search(Fraction(0)))
+            outcome = _complete(inquiry.cheapest(self._search(Fraction(0))))
             if outcome.best is None:
-                return None if outcome.complete else Fraction(0)
+                return None
             mine = [self._met(outcome.best, Fraction(0))]
         ratio = min(self._ratio(crew) for crew in mine)
         while ratio > 0:
             value = self._value(ratio)
-            outcome = inquiry.cheapest(self._search(ratio), cutoff=value - tie_width(value))
-            if not outcome.complete:
-                return Fraction(0)
+            cutoff = value - tie_width(value)
+            outcome = _complete(inquiry.cheapest(self._search(ratio), cutoff=cutoff))
             if outcome.best is None:
                 break
             ratio = self._ratio(self._met(outcome.best, ratio))

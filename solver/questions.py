@@ -49,9 +49,9 @@ def _room(plan: Plan, options: Options, heard: Heard) -> Any:
 def _near(plan: Plan, options: Options, heard: Heard) -> Any:
     within, most = options.get("within", 2.0), options.get("most", 20)
     if not _is_number(within) or not 0 <= within <= 1000:
-        raise BadOption(f"{within} is no usable per cent of the best cost; allowed is 0 to 1000.")
+        raise BadOption(f"{_shown(within)} is no usable per cent of the best cost; allowed is 0 to 1000.")
     if not _is_number(most) or most != int(most) or not 1 <= most <= 1000:
-        raise BadOption(f"{most} is no usable number of crews; allowed is 1 to 1000.")
+        raise BadOption(f"{_shown(most)} is no usable number of crews; allowed is 1 to 1000.")
     seconds = _seconds(options)
     return near_best(plan, within=float(within), most=int(most), seconds=seconds, heard=heard)
 
@@ -106,6 +106,10 @@ def _seconds(options: Options) -> float | None:
     if not _is_number(seconds) or not 0 <= seconds <= LONGEST:
         raise BadOption(f"{seconds} is no usable number of seconds; allowed is 0 to {LONGEST:,}.")
     return float(seconds)
+
+
+def _shown(value: Any) -> str:
+    return f"{value:g}" if _is_number(value) else str(value)
 
 
 def _is_number(value: Any) -> bool:

@@ -27,8 +27,8 @@ CENT = 0.01
 def room(plan: Plan, *, seconds: float | None = None, heard: Heard = unheard) -> Room:
     """Room to move on every line and in every category's pay.
 
-    `seconds` (None: 60) limits all integer programs together; what is not settled then says so. Raises
-    NoExactCrew where the plan has no exact crew, or none that is proved.
+    `seconds` (None: 60) limits all integer programs together; lines that are not settled then say so, and
+    pay that is not is left out. Raises NoExactCrew where the plan has no exact crew, or none that is proved.
     """
     inquiry = Inquiry(seconds, heard)
     case = Case(plan, seconds)
@@ -38,7 +38,8 @@ def room(plan: Plan, *, seconds: float | None = None, heard: Heard = unheard) ->
     pay = []
     for j, category in enumerate(plan.categories):
         inquiry.tell(f"Pay of {category.name}", 0.7 + 0.3 * j / len(plan.categories))
-        pay.append(ranges.of(j))
+        found = ranges.of(j)
+        pay += [] if found is None else [found]
     return Room(tuple(lines), tuple(pay), inquiry.programs)
 
 

@@ -13,6 +13,7 @@ from solver.plan import Plan, Presence, Ratio, Rule, Sense, Share
 from solver.program import Line
 from solver.report import crew_words, figure, number
 
+NO_CHEAPER = "No cheaper crew"
 MOST_CHANGES = 4
 DIGITS = 4  # significant ones of an amount that must not be rounded the wrong way
 
@@ -29,7 +30,7 @@ def says(
     if loosened.by is None or loosened.saving is None or crew is None or exact is None:
         if not loosened.settled:
             return f"Not worked out in the time given; {_spare(line, room)}."
-        return f"No cheaper crew, however far this gives way; {_spare(line, room)}."
+        return f"{NO_CHEAPER}, however far this gives way; {_spare(line, room)}."
     told = _told(plan, line, loosened, crew, exact)
     return told if loosened.settled else f"{told} Less may do: this was not settled in the time given."
 
