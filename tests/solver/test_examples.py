@@ -66,3 +66,20 @@ def test_everything_shipped_is_where_it_is_looked_for() -> None:
     assert resources.icon_path().read_bytes()[:4] == b"\x89PNG"
     assert resources.icon_path("svg").read_text("utf-8").startswith("<svg")
     assert {"full-complement", "dejavu-fonts"} <= resources.licence_texts().keys()
+
+
+def test_hillside_shows_why_rounding_will_not_do() -> None:
+    answer = answered("hillside")
+    assert answer.state is State.PROVED
+    assert answer.exact is not None
+    nearest, up, patched = (answer.report(p) for p in (Policy.NEAREST, Policy.UP, Policy.PATCHED))
+    assert nearest is not None
+    assert up is not None
+    assert patched is not None
+    assert up.cost is not None
+    assert patched.cost is not None
+    assert len({line.line for line in nearest.lines if line.margin < -1e-6}) >= 2
+    assert up.cost > 1.03 * answer.exact.cost
+    assert patched.cost > 1.01 * answer.exact.cost
+    assert answer.whole_people_cost is not None
+    assert 0.5 < answer.whole_people_cost.percent < 5
