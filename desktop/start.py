@@ -24,6 +24,7 @@ def run(plan: Path | None) -> int:
     """Open the window with `plan`, or that of last time, or an example; returns the exit code."""
     app = QApplication.instance() or QApplication(sys.argv[:1])
     assert isinstance(app, QApplication)
+    app.setOrganizationName("full-complement")  # the folder of the settings
     app.setApplicationName("full-complement")
     app.setApplicationDisplayName(messages.PROGRAM)
     app.setDesktopFileName("full-complement")
