@@ -9,6 +9,7 @@ from PySide6.QtCore import QObject
 from PySide6.QtGui import QAction, QKeySequence
 from PySide6.QtWidgets import QApplication, QMenu, QWidget
 
+from desktop import hours_words as say
 from desktop.document import Document
 
 Keys = QKeySequence.StandardKey
@@ -37,6 +38,7 @@ VERBS = (
     Verb("delete_rows", "&Delete rows", "Ctrl+Del", "Delete the selected rows"),
     Verb("move_rows", "Move up", "Alt+Up", "The selected rows one place up", -1),
     Verb("move_rows", "Move down", "Alt+Down", "The selected rows one place down", 1),
+    Verb("work_out_hours", say.ACTION, "Ctrl+Shift+H", say.BUTTON_TIP, starts_group=True),
 )
 
 

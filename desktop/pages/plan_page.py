@@ -16,13 +16,14 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
-from desktop import messages, theme
+from desktop import hours_words, messages, theme
 from desktop.answers import Answers
 from desktop.document import Document
 from desktop.edits import phases
 from desktop.pages.page_parts import heading, label, thin_rule
 from desktop.pages.plan_fields import PlanFields
 from desktop.rules.rule_list import RuleList
+from desktop.tables.category_grid import CategoryGrid
 from desktop.tables.category_table import CATEGORIES
 from desktop.tables.grid import Grid
 from desktop.tables.grid_model import GridModel
@@ -48,7 +49,8 @@ class PlanPage(QWidget):
         self._document = document
         self._answers = answers
         self.fields = PlanFields(document)
-        self.categories = self._grid(CATEGORIES)
+        self.categories = CategoryGrid(document, self)
+        self.categories.remarked.connect(self.remarked)
         self.works = self._grid(WORKS)
         self.phases = self._grid(PHASES)
         self.rules = RuleList(document)
@@ -132,7 +134,10 @@ class PlanPage(QWidget):
         layout.addWidget(label(messages.CAUTION, theme.Size.SMALL, "faint"))
 
     def _category_buttons(self) -> list[QWidget]:
-        made: list[QWidget] = [theme.dress(QLabel(messages.MORE_COLUMNS), theme.Size.SMALL, "faint")]
+        hours = _button(hours_words.BUTTON, hours_words.BUTTON_TIP)
+        hours.clicked.connect(self.categories.work_out_hours)
+        more = theme.dress(QLabel(messages.MORE_COLUMNS), theme.Size.SMALL, "faint")
+        made: list[QWidget] = [hours, more]
         for key, title, tooltip in CATEGORIES.groups:
             button = _button(title, tooltip)
             button.setCheckable(True)

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Collection
+from collections.abc import Callable, Collection
 from dataclasses import replace
 from decimal import Decimal
 from types import MappingProxyType
@@ -10,6 +10,7 @@ from typing import Any
 
 from desktop import messages
 from desktop.edits import categories
+from desktop.edits.reckoned import by_hand, hours_note, pay_note
 from desktop.edits.sequences import replaced
 from desktop.tables.column import Column, Kind, Value
 from desktop.tables.table import Table
@@ -37,12 +38,17 @@ def _field(
     group: str = "",
     blank: Value = ZERO,
     none_shown: str | None = None,
+    note: Callable[[Category], str] | None = None,
 ) -> Column:
-    """A column of a plain field of Category; `none_shown` makes it optional."""
+    """A column of a plain field of Category; `none_shown` makes it optional.
+
+    `note` tells how a value that may have been worked out came about.
+    """
 
     def put(plan: Plan, row: int, value: Value) -> Plan:
         changed: dict[str, Any] = {key: value}
-        return _put(plan, row, replace(plan.categories[row], **changed))
+        made = replace(plan.categories[row], **changed)
+        return _put(plan, row, made if note is None else by_hand(plan.categories[row], made, title))
 
     return Column(
         key,
@@ -57,6 +63,7 @@ def _field(
         optional=none_shown is not None,
         none_shown=none_shown or "",
         group=group,
+        note=None if note is None else lambda plan, row: note(plan.categories[row]),
     )
 
 
@@ -145,11 +152,16 @@ def _columns(plan: Plan) -> tuple[Column, ...]:
             "on_books", "On books", "people", "People of this category who are there before the first phase."
         ),
         *_limits(),
-        _field("pay", "Pay", per, f"What one person costs per {plan.period}, {plan.currency}."),
+        _field(
+            "pay", "Pay", per, f"What one person costs per {plan.period}, {plan.currency}.", note=pay_note
+        ),
         *_moves(plan.currency),
-        replace(
-            _field("hours", "Hours", f"h/{plan.period}", f"Paid hours of one person per {plan.period}."),
-            note=lambda plan, row: plan.categories[row].hours_note,
+        _field(
+            "hours",
+            "Hours",
+            f"h/{plan.period}",
+            f"Paid hours of one person per {plan.period}.",
+            note=hours_note,
         ),
         _field(
             "absence",
@@ -157,6 +169,7 @@ def _columns(plan: Plan) -> tuple[Column, ...]:
             "%",
             "Share of the paid hours that are lost to leave, illness and training.",
             kind=Kind.PERCENT,
+            note=hours_note,
         ),
         *_more_hours(plan),
         *(_output(work.name, work.unit) for work in plan.works),
