@@ -108,6 +108,11 @@ class Search:
         self._apply(self._root(lower, upper))
         return self.relaxation.solve()
 
+    @property
+    def columns(self) -> Ints:
+        """The integer columns of the matrix, in the order of a box: head counts first, then switches."""
+        return self._columns
+
     def box(self) -> tuple[Floats, Floats]:
         """Fresh copies of the integer columns' bounds: head counts first, then switches."""
         return self._lower[self._columns].copy(), self._upper[self._columns].copy()

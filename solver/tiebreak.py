@@ -11,7 +11,10 @@ from dataclasses import replace
 from functools import partial
 from time import monotonic
 
+import numpy as np
+
 from solver import heads
+from solver.engine import EngineName, whole
 from solver.matrix import Floats, Matrix, RowSense
 from solver.program import Program
 from solver.search import Found, Limits, Outcome, Search, tie_width
@@ -19,6 +22,7 @@ from solver.search import Found, Limits, Outcome, Search, tie_width
 # 4,000 nodes settled no more plans of 1,000 random ones than 1,000 do
 TIES = Limits(nodes=1_000, seconds=1.0)
 NODES = 100_000
+GOAL_NODES = 2_000
 Box = tuple[Floats, Floats]
 _HALF_LOT = 0.5
 Goal = list[tuple[int, float]]
@@ -64,12 +68,29 @@ def preferred(program: Program, best: Found, seconds: float, box: Box | None = N
         search = Search(counting, matrix)
         value = search.evaluate(lots)
         start = None if value is None else Found(lots, value)
-        outcome = search.cheapest(Limits(seconds=left), start=start, box=box)
-        if outcome.best is None:
+        outcome = search.cheapest(Limits(GOAL_NODES, left), start=start, box=box)
+        found = outcome.best if outcome.complete else _by_engine(search, outcome.best, until, box)
+        if found is None:
             break
-        lots = outcome.best.lots
-        _hold(matrix, goal, outcome.best.objective + tolerance)
+        lots = found.lots
+        _hold(matrix, goal, found.objective + tolerance)
     return Found(lots, best.objective)
+
+
+def _by_engine(search: Search, best: Found | None, until: float, box: Box | None) -> Found | None:
+    """The crew HiGHS finds for a goal that our own search did not settle, or `best` where it has none."""
+    matrix = search.matrix.copy()
+    if box is not None:
+        for column, lower, upper in zip(search.columns.tolist(), *box, strict=True):
+            matrix.lower[column], matrix.upper[column] = float(lower), float(upper)
+    answer = whole(matrix, EngineName.HIGHS, seconds=until - monotonic())
+    if answer.x is None:
+        return best
+    lots = tuple(int(n) for n in np.rint(answer.x[: search.program.head_count]))
+    objective = search.evaluate(lots)
+    if objective is None or (best is not None and best.objective <= objective):
+        return best
+    return Found(lots, objective)
 
 
 def _hold(matrix: Matrix, goal: Goal, most: float) -> None:
