@@ -10,9 +10,10 @@ degenerate, tight); every feature at once over two phases; boxed, where every cr
 have up to 8 categories, 4 works and 4 phases. Plan n is drawn from seed `--seed` + n, so a disagreement
 can be repeated alone: `--only small:1234`.
 
-Compared on each: floor and exact cost; the exact crew by the checker; every rounding's workability, cost
-and margins; every break's split. On boxed plans also: which of equally cheap crews is taken, every break's
-inequality for every workable crew, near-best crews (set and order), room to move (loosening and saving).
+Compared on each: floor and exact cost; the exact crew by the checker; which of equally cheap crews is
+taken; every rounding's workability, cost and margins; every break's split. On boxed plans also: the taken
+crew, every break's inequality for every workable crew, near-best crews (set and order), room to move
+(loosening and saving), all by looking at every crew.
 A disagreement in which the other side's crew fails the checker is counted as the other side's.
 
 Prints one line per disagreement as it is found, then the counts; exit code 1 if there was any.
@@ -159,6 +160,12 @@ def _fails(plan: Plan, model: reference.Model, x: np.ndarray, ours: float | None
     return cost is None or (ours is not None and cost >= ours - max(0.005, 1e-6 * abs(ours)))
 
 
+def ties_by_goals(case: Case, result: Result) -> None:
+    """Which of equally cheap crews is taken."""
+    reference.CAP = _cap(case)
+    agreement.assert_preferred_crew_by_goals(case.plan, case.answer)
+
+
 def bound_is_below(case: Case, result: Result) -> None:
     """No crew costs less than the bound, and a proved crew is its own bound."""
     answer = case.answer
@@ -193,6 +200,7 @@ CHECKS: dict[str, Callable[[Case, Result], None]] = {
     "margins of heads": _of_plan(agreement.assert_margins_of_heads_are_exact),
     "margins of hours": _of_plan(agreement.assert_margins_of_hours_equal_highs),
     "breaks": _of_plan(agreement.assert_breaks_split_exactly),
+    "ties by goals": ties_by_goals,
 }
 BOXED_CHECKS: dict[str, Callable[[Case, Result], None]] = {
     "ties": _of_box(agreement.assert_preferred_crew_is_taken),

@@ -10,11 +10,12 @@ import numpy as np
 import pytest
 from hypothesis import HealthCheck, given, settings
 
+from solver import tiebreak
 from solver.answer import Answer, Policy, Proof, State, from_json, to_json
 from solver.plan import Budget, Category, Phase, Plan, Presence, Ratio, Sense, Supervision, Work
 from solver.planfile import plan_from_document, plan_to_document
 from solver.review import review
-from solver.search import tie_width
+from solver.search import Limits, tie_width
 from solver.solve import solve
 from tests.solver import agreement, checker, solved
 from tests.solver.hostile_plans import BENDS, hostile_plan
@@ -132,6 +133,20 @@ class TestTies:
                 costs = sorted(cost for cost, _ in solved.boxed(seed)[2])
                 tied += len(costs) > 1 and costs[1] - costs[0] <= tie_width(costs[0])
         assert tied >= 30
+
+    @pytest.mark.parametrize("seeds", [range(60), range(60, 120)], ids=str)
+    def test_goal_after_goal_takes_the_same_crew(self, seeds: range, monkeypatch: pytest.MonkeyPatch) -> None:
+        """The way of plans with too many ties to look at: by our own search, and by HiGHS."""
+        monkeypatch.setattr(tiebreak, "TIES", Limits(nodes=1))
+        for seed in seeds:
+            plan, _, workable = solved.boxed(seed)
+            monkeypatch.setattr(tiebreak, "GOAL_NODES", 2_000 if seed % 4 < 2 else 0)
+            agreement.assert_preferred_crew_is_taken(plan, solve(plan), workable)
+
+    @pytest.mark.parametrize("seeds", [range(40), range(40, 80)], ids=str)
+    def test_plans_without_a_box_take_the_crew_that_highs_finds_by_goals(self, seeds: range) -> None:
+        for seed in seeds:
+            agreement.assert_preferred_crew_by_goals(*solved.mixed(seed))
 
     def test_identical_categories_leave_the_work_to_the_first(self) -> None:
         answer = solve(_clones(4))
