@@ -1,0 +1,116 @@
+"""How long `cost`, `room` and `near --within 2 --most 20` take together, and how many searches they run.
+
+python -m tests.benchmark_questions [FIRST_SEEDS]: the hillside example (must stay within 2 s), and plans of
+one phase with 8 categories and about a dozen lines.
+"""
+
+from __future__ import annotations
+
+import sys
+from collections import Counter
+from collections.abc import Iterator
+from contextlib import contextmanager
+from decimal import Decimal
+from pathlib import Path
+from time import perf_counter
+from typing import Any
+from unittest.mock import patch
+
+import numpy as np
+
+from solver.plan import Category, Phase, Plan, Presence, Ratio, Sense, Share, Supervision, Work
+from solver.planfile import read_plan
+from solver.questions import QUESTIONS
+from solver.search import Search
+from solver.unanswered import Unanswered
+
+HILLSIDE = Path(__file__).parents[1] / "resources" / "examples" / "hillside.crew.json"
+ASKED: dict[str, dict[str, Any]] = {"cost": {}, "room": {}, "near": {"within": 2, "most": 20}}
+
+
+def one_phase_plan(seed: int) -> Plan:
+    """Eight categories, four works, supervision, five rules; invented numbers."""
+    rng = np.random.default_rng(seed)
+    works = [f"Work {k + 1}" for k in range(4)]
+    categories = tuple(_category(rng, j, works) for j in range(8))
+    names = [c.name for c in categories]
+    amounts = [Decimal(int(rng.integers(8_000, 40_000))) for _ in works]
+    return Plan(
+        phases=(Phase("Season", Decimal(8)),),
+        categories=categories,
+        works=tuple(Work(name, "units", (amount,)) for name, amount in zip(works, amounts, strict=True)),
+        rules=(
+            Presence("Keys", {names[0]: Decimal(1), names[1]: Decimal(1)}, Sense.AT_LEAST, Decimal(3)),
+            Presence("Places", {names[5]: Decimal(1)}, Sense.AT_MOST, Decimal(5)),
+            Ratio("Span", (names[3], names[4]), (names[0],), Decimal(2)),
+            Ratio("Helpers", (names[6],), (names[1], names[2]), Decimal("1.5")),
+            Share("Own staff", tuple(names[:3]), tuple(names), Sense.AT_LEAST, Decimal("0.3")),
+        ),
+    )
+
+
+def _category(rng: np.random.Generator, j: int, works: list[str]) -> Category:
+    by = ("Category 1",) if rng.random() < 0.6 else ("Category 2", "Category 3")
+    drawn = j > 2 and rng.random() < 0.7
+    return Category(
+        f"Category {j + 1}",
+        Decimal(int(rng.integers(400, 1200))),
+        Decimal(int(rng.integers(30, 41))),
+        on_books=Decimal(int(rng.integers(0, 4))),
+        at_most=Decimal(int(rng.integers(6, 20))) if rng.random() < 0.3 else None,
+        join_cost=Decimal(int(rng.integers(0, 500))),
+        leave_cost=Decimal(int(rng.integers(0, 900))),
+        absence=Decimal("0.05"),
+        overtime_hours=Decimal(4 if rng.random() < 0.3 else 0),
+        overtime_rate=Decimal(40),
+        supervision=Supervision(Decimal(int(rng.integers(2, 8))), by) if drawn else Supervision(),
+        output={w: Decimal(int(rng.integers(10, 60))) / 2 for w in works if rng.random() < 0.6},
+    )
+
+
+@contextmanager
+def counted() -> Iterator[Counter[str]]:
+    """Counts the integer programs that are searched meanwhile."""
+    count: Counter[str] = Counter()
+    cheapest, within = Search.cheapest, Search.within
+
+    def counting_cheapest(search: Search, *args: Any, **options: Any) -> Any:
+        count["programs"] += 1
+        return cheapest(search, *args, **options)
+
+    def counting_within(search: Search, *args: Any, **options: Any) -> Any:
+        count["programs"] += 1
+        return within(search, *args, **options)
+
+    with patch.object(Search, "cheapest", counting_cheapest), patch.object(Search, "within", counting_within):
+        yield count
+
+
+def measured(plan: Plan) -> tuple[dict[str, float], int]:
+    """Seconds of each question, the exact solve it starts from included, and integer programs of all."""
+    seconds = {}
+    with counted() as count:
+        for name, options in ASKED.items():
+            began = perf_counter()
+            QUESTIONS[name].ask(plan, options, lambda part, value: None)
+            seconds[name] = perf_counter() - began
+    return seconds, count["programs"]
+
+
+def main(seeds: int) -> None:
+    plans = [("hillside", read_plan(HILLSIDE))]
+    plans += [(f"8 categories, seed {seed}", one_phase_plan(seed)) for seed in range(seeds)]
+    QUESTIONS["solve"].ask(plans[0][1], {}, lambda part, value: None)  # loads the libraries
+    print(f"{'plan':24}{'cost':>8}{'room':>8}{'near':>8}{'together':>10}{'programs':>10}", file=sys.stderr)
+    for title, plan in plans:
+        try:
+            seconds, programs = measured(plan)
+        except Unanswered as why:
+            print(f"{title:24}{str(why).splitlines()[0]:>36}", file=sys.stderr)
+            continue
+        each = "".join(f"{seconds[name]:8.2f}" for name in ASKED)
+        print(f"{title:24}{each}{sum(seconds.values()):10.2f}{programs:10}", file=sys.stderr)
+
+
+if __name__ == "__main__":
+    main(int(sys.argv[1]) if len(sys.argv) > 1 else 8)
