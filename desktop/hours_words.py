@@ -47,7 +47,7 @@ TAKE = "&Put into the plan"
 MISSING = "{field}: a number is needed"
 WRONG = "{field}: {reason}"
 
-CHANGED_BY_HAND = "{what} was changed by hand since."
+CHANGED_BY_HAND = "{what}: changed by hand since."
 
 FIELD_OF = {
     "hours_a_week": HOURS_A_WEEK,
@@ -71,12 +71,12 @@ YEARLY_COST = "Cost a year"
 
 def paid_per(period: str) -> str:
     """Paid hours of one period."""
-    return f"Paid hours a {period}"
+    return f"Paid hours per {period}"
 
 
 def attended_per(period: str) -> str:
     """Attended hours of one period."""
-    return f"Attended hours a {period}"
+    return f"Attended hours per {period}"
 
 
 def periods_a_year(period: str) -> str:
@@ -86,7 +86,7 @@ def periods_a_year(period: str) -> str:
 
 def pay_per(period: str) -> str:
     """Pay of one period."""
-    return f"Pay a {period}"
+    return f"Pay per {period}"
 
 
 def outcome(category: str, parts: tuple[str, ...]) -> str:

@@ -98,7 +98,8 @@ def _year_steps(year: WorkingYear) -> Iterator[Step]:
         yield Step(away.name, _away(year, away), _hours(year.hours_away(away)))
     lost = _hours(year.gross - year.available)
     if len(taken) > 1:
-        yield Step(say.AWAY_A_YEAR, " + ".join(_hours(year.hours_away(away)) for away in taken), lost)
+        sums = " + ".join(_number(year.hours_away(away)) for away in taken)
+        yield Step(say.AWAY_A_YEAR, f"{sums}{figures.NBSP}h", lost)
     yield Step(say.ATTENDED_A_YEAR, f"{gross} {_MINUS} {lost}", _hours(year.available))
     yield Step(say.ABSENCE, f"{lost} ÷ {gross}", _percent(year.absence), taken=True)
 

@@ -233,7 +233,11 @@ def _category(row: _Row, before: Category | None, _plan: Plan) -> Category:
     by = values.pop("supervision.by", base.supervision.by)
     plain = {k: v for k, v in values.items() if not k.startswith("output:")}
     merged = MappingProxyType({**base.output, **output})
-    return replace(base, **plain, output=merged, supervision=Supervision(hours, by))
+    made = replace(base, **plain, output=merged, supervision=Supervision(hours, by))
+    over = any(getattr(made, key) != getattr(base, key) for key in ("hours", "absence", "pay"))
+    if over and base.hours_note:  # what was worked out is typed over: its note must not vouch for it
+        made = replace(made, hours_note=f"{base.hours_note} Changed by an imported table since.")
+    return made
 
 
 def _work(row: _Row, before: Work | None, plan: Plan) -> Work:

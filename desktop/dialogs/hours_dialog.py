@@ -68,7 +68,7 @@ class HoursDialog(QDialog):
         whole.addLayout(across, 1)
         for part in (self.outcome, self.wrong, buttons):
             whole.addWidget(part)
-        self.resize(current().px(118), current().px(70))
+        self.resize(current().px(136), current().px(70))
 
     def _show(self) -> None:
         """The steps of what is typed now, or what is wrong with it."""

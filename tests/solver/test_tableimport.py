@@ -119,6 +119,15 @@ class TestCategories:
         assert len(brought_in(CATEGORIES.replace("Learner", ";;;;;;\n\nLearner")).rows) == 2
 
 
+def test_hours_that_were_worked_out_are_not_vouched_for_after_a_table_changed_them() -> None:
+    worked = Category("A", D(900), D(38), hours_note="Hours: 38 h a week.")
+    plan = replace(ONE_WORK, categories=(worked,))
+    same = brought_in("Category;Hours;On books\nA;38;3\n", plan=plan).plan_after()
+    assert same.category("A").hours_note == "Hours: 38 h a week."
+    other = brought_in("Category;Hours\nA;40\n", plan=plan).plan_after()
+    assert other.category("A").hours_note == "Hours: 38 h a week. Changed by an imported table since."
+
+
 class TestRefusedRows:
     def test_say_where_and_why(self) -> None:
         text = "Category;Pay;Hours\nA;12 EUR;38\nB;1;x\nC;-3;38\n;5;38\nD;1;38\nD;2;38\n"
