@@ -18,6 +18,7 @@ from solver.turnout import binomial
 BINS = 512
 # numbers of absences rarer than this are left out and their chance given away
 RARE = 1e-7
+MOST_HEADS = 500
 
 
 def sure_loss(each: Sequence[float], heads: Sequence[int], away: Sequence[float], chance: float) -> float:
@@ -25,9 +26,13 @@ def sure_loss(each: Sequence[float], heads: Sequence[int], away: Sequence[float]
 
     z_j are the absences of `heads[j]` heads. Values are counted in bins, each rounded down.
     """
-    parts = [(a, _absences(n, q)) for a, n, q in zip(each, heads, away, strict=True) if a and n > 0 and q > 0]
-    if not parts:
-        return 0.0
+    known = [(a, n, q) for a, n, q in zip(each, heads, away, strict=True) if a and n > 0 and q > 0]
+    # of a crew that nothing limits yet nobody is away, or all are, whichever loses less
+    least = sum(min(a, 0.0) * n for a, n, _ in known if n > MOST_HEADS)
+    return least + _quantile([(a, _absences(n, q)) for a, n, q in known if n <= MOST_HEADS], chance)
+
+
+def _quantile(parts: Sequence[tuple[float, Floats]], chance: float) -> float:
     span = sum(abs(a) * (len(chances) - 1) for a, chances in parts)
     if span == 0.0:
         return 0.0

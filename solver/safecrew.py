@@ -75,7 +75,9 @@ class SafeSearch:
         window: int | None = None,
     ) -> Safe:
         """`window`: only that phase's head counts may differ from `start`."""
-        limit = inf if start is None else start.objective + tie_width(start.objective)
+        money = min((float(most) for most in self.program.budget_of.values()), default=inf)
+        money = money if start is None else start.objective
+        limit = money + tie_width(money) if money < inf else inf
         program, matrix = self._tightened(limit, floors)
         if window is not None and start is not None:
             self._hold_others(matrix, start.lots, window)
