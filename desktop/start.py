@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import logging
 import signal
 import sys
 from pathlib import Path
@@ -15,8 +16,10 @@ from desktop import messages, recent
 from desktop.workers import Workers
 
 if TYPE_CHECKING:
+    from desktop.answers import Answers
     from desktop.window import Window
 
+_log = logging.getLogger("desktop")
 _SIGNALS = 500  # ms between looks for signals, which Python misses while Qt waits
 
 
@@ -60,10 +63,23 @@ def open_window(app: QApplication, workers: Workers, plan: Path | None) -> Windo
     FailureReporter().install()
     load_fonts()
     window = Window(Document(), workers, Look(app))
+    note_first_answer(window.answers)
     window.show()
     # once the window is there, so that questions have something to stand on
     QTimer.singleShot(0, window, lambda: first_plan(window, plan))
     return window
+
+
+def note_first_answer(answers: Answers) -> None:
+    """One line of the log when the first answer is there: how long starting takes on a machine we never see."""
+    from desktop.answers import Status
+
+    def note() -> None:
+        if answers.status is Status.READY:
+            answers.changed.disconnect(note)
+            _log.info("first answer")
+
+    answers.changed.connect(note)
 
 
 def first_plan(window: Window, plan: Path | None) -> None:
