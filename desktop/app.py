@@ -20,6 +20,10 @@ def main(arguments: Sequence[str] | None = None) -> int:
         from solver.service import main as serve
 
         return serve()
+    if given[:1] == ["--engine"]:  # and as the process of one engine
+        from solver.enginehost import main as host
+
+        return host()
     if given[:1] == ["--solve"]:  # the same for one answer as text
         from solver.commands import main as command
 

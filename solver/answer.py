@@ -28,10 +28,12 @@ class State(StrEnum):
 
 
 class Proof(StrEnum):
-    """What stands behind PROVED or IMPOSSIBLE."""
+    """What stands behind PROVED or IMPOSSIBLE. ONE_ENGINE: the first proof of a race, which the other
+    engine had no time to confirm."""
 
     OWN_SEARCH = "own search"
     TWO_ENGINES = "two engines"
+    ONE_ENGINE = "one engine"
 
 
 class Policy(StrEnum):

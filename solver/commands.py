@@ -42,6 +42,7 @@ def _no_arguments(parser: argparse.ArgumentParser) -> None:
 
 def _solve_arguments(parser: argparse.ArgumentParser) -> None:
     parser.add_argument("--seconds", type=float, default=None, help="time limit of the exact solve")
+    parser.add_argument("--tolerance", type=float, default=0.0, help="gap in %% that is good enough")
 
 
 def _long_arguments(parser: argparse.ArgumentParser) -> None:
@@ -113,6 +114,7 @@ def _parser() -> argparse.ArgumentParser:
         verb.arguments(one)
     _export_arguments(verbs.add_parser("export", help="write .xlsx, .csv, .lp or .mps"))
     verbs.add_parser("worker", help="serve requests of the window on standard input")
+    verbs.add_parser("engine", help="run CBC or HiGHS for a worker")
     return parser
 
 
@@ -133,6 +135,10 @@ def main(arguments: Sequence[str]) -> int:
         asked = _parser().parse_args(arguments)
     except SystemExit as leaving:
         return int(leaving.code or 0)
+    if asked.verb == "engine":
+        from solver.enginehost import main as host
+
+        return host()
     if asked.verb == "worker":
         from solver.service import main as serve
 

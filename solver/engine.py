@@ -7,11 +7,13 @@ from __future__ import annotations
 
 import os
 import sys
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from enum import Enum, StrEnum
 from math import inf, isfinite
+from typing import Any
 
+import cffi
 import highsbox
 import mip
 import numpy as np
@@ -55,6 +57,9 @@ class EngineName(StrEnum):
 
     CBC = "CBC"
     HIGHS = "HIGHS"
+
+
+Heard = Callable[[float, float, Floats | None], None]
 
 
 @dataclass(frozen=True)
@@ -153,19 +158,56 @@ def whole(
     seconds: float,
     start: Sequence[float] | None = None,
     threads: int = 1,
+    heard: Heard | None = None,
 ) -> WholeResult:
     """Solve the mixed integer program with one engine, at most `seconds` long.
 
     Every integer column needs finite bounds. `start` is a whole solution, every column, or None.
+    `heard(bound, objective, x)` hears of better bounds and (x not None) solutions on the way, from
+    HiGHS only: CBC's callbacks end the process (python-mip 2.0.0).
     """
     if not matrix.cost:  # python-mip answers OTHER for a program without columns
         return _without_columns(matrix)
     model, columns = _python_mip_model(matrix, engine)
     model.threads = threads
-    if start is not None and engine is EngineName.CBC:
+    if start is not None:
         model.start = list(zip(columns, (float(v) for v in start), strict=True))
+    listening = _listen(model, len(columns), heard) if heard and engine is EngineName.HIGHS else None
     status = model.optimize(max_seconds=max(seconds, 0.01))  # sticks to later calls: always given
+    del listening  # C held it until here
     return _whole_result(model, columns, status, engine)
+
+
+def _listen(model: mip.Model, width: int, heard: Heard) -> object:
+    """Have HiGHS call back; the result must live as long as the solve."""
+    from mip import highs
+
+    reader = cffi.FFI()
+    reader.cdef("const void* Highs_getCallbackDataOutItem(const void* out, const char* name);")
+    library = reader.dlopen(os.environ["PMIP_HIGHS_LIBRARY"])
+
+    def item(out: object, name: bytes) -> Any:
+        # python-mip declares an older layout of this structure: its fields are asked for by name
+        pointer = reader.cast("void*", int(highs.ffi.cast("uintptr_t", out)))
+        return reader.cast("double*", library.Highs_getCallbackDataOutItem(pointer, name))
+
+    signature = "void(int, const char*, const HighsCallbackDataOut*, HighsCallbackDataIn*, void*)"
+
+    @highs.ffi.callback(signature)  # type: ignore[untyped-decorator] # cffi has no types for it
+    def told(kind: int, _message: object, out: object, _in: object, _user: object) -> None:
+        bound = item(out, b"mip_dual_bound")[0]
+        bound = bound if isfinite(bound) else -inf
+        if kind == highs.highslib.kHighsCallbackMipImprovingSolution:
+            x = np.frombuffer(reader.buffer(item(out, b"mip_solution"), 8 * width)).copy()
+            heard(bound, item(out, b"objective_function_value")[0], x)
+        else:
+            heard(bound, inf, None)
+
+    solver = model.solver._model
+    highs.highslib.Highs_setCallback(solver, told, highs.ffi.NULL)
+    for kind in ("kHighsCallbackMipImprovingSolution", "kHighsCallbackMipLogging"):
+        highs.highslib.Highs_startCallback(solver, getattr(highs.highslib, kind))
+    return told
 
 
 def _without_columns(matrix: Matrix) -> WholeResult:

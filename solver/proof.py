@@ -1,8 +1,8 @@
-"""The exact crew and what proves it: our own search, else CBC and HiGHS agreeing to the cent."""
+"""The exact crew and what proves it: our own search, else CBC and HiGHS, raced against each other."""
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from math import ceil, floor, inf
 from time import monotonic
@@ -10,13 +10,19 @@ from time import monotonic
 import numpy as np
 
 from solver.answer import Proof, State
-from solver.engine import EngineName, WholeResult, WholeStatus, whole
+from solver.engine import EngineName, WholeStatus, whole
+from solver.matrix import Matrix
 from solver.program import Program
+from solver.race import Standing, engines
 from solver.rounding import snapped
 from solver.search import Found, Lots, Search, tie_width
 from solver.tiebreak import cheapest_preferred, preferred
+from solver.tightening import phases_alone, tightened
 
+SECONDS = 60.0
+# plans of one phase are our own search's home; beyond it decides soon or leaves it to the engines
 OWN_SECONDS = 2.0
+OWN_SECONDS_IN_PHASES = 0.25
 CENT = 0.01
 
 
@@ -30,6 +36,17 @@ class Proved:
     bound: float
 
 
+@dataclass(frozen=True)
+class Effort:
+    """How long and how far to go: `tolerance` (a share of the cost) is the gap that is good enough;
+    `start` a crew in lots to begin from; `heard` hears of every better crew or bound."""
+
+    seconds: float = SECONDS
+    tolerance: float = 0.0
+    start: Lots | None = None
+    heard: Callable[[Proved], None] | None = None
+
+
 class Prover:
     """Finds and proves the cheapest whole crew of a program; keeps its search for later questions."""
 
@@ -37,19 +54,43 @@ class Prover:
         self.program = program
         self.search = search
 
-    def prove(self, fractional: Sequence[float], seconds: float | None) -> Proved:
-        """`fractional` is the relaxation's crew in lots; `seconds` limits everything, None is 60."""
-        until = monotonic() + (60.0 if seconds is None else seconds)
-        start = self._rounded_up(fractional)
-        caps = self._caps(start)
-        program, search = self._tightened(caps)
+    def prove(self, fractional: Sequence[float], effort: Effort) -> Proved:
+        """`fractional` is the relaxation's crew in lots."""
+        until = monotonic() + effort.seconds
+        several = len(self.program.phases) > 1
+        if several:
+            engines().warm()
+        start = self._first_crew(fractional, effort.start)
+        program, search = self._tightened(self._caps(start))
+        matrix = program.matrix
+        if several:
+            alone = phases_alone(program)
+            matrix = tightened(program, alone)
+            search = Search(program, matrix, grain=search.grain)
+            start = start or self._patched(fractional)
         own = self._own_search(program, search, start, until)
         if own.state is not State.BEST_FOUND:
             return own
-        return self._two_engines(program, search, own, until)
+        return _Contest(self, program, search, matrix, own, effort, until).run()
 
-    def _rounded_up(self, fractional: Sequence[float]) -> Found | None:
-        lots = tuple(ceil(snapped(v)) for v in fractional)
+    def _first_crew(self, fractional: Sequence[float], given: Lots | None) -> Found | None:
+        """The best of the crew to begin from and the fractional one rounded up, where workable."""
+        up = tuple(ceil(snapped(v)) for v in fractional)
+        found: Found | None = None
+        for lots in (given, up):
+            objective = None if lots is None else self.search.evaluate(lots)
+            if lots is not None and objective is not None:
+                found = _cheaper(found, Found(lots, objective))
+        return found
+
+    def _patched(self, fractional: Sequence[float]) -> Found | None:
+        """The fractional crew rounded up, each phase then mended on its own by additions."""
+        alone = phases_alone(self.program, [ceil(snapped(v)) for v in fractional])
+        if any(phase.lots is None for phase in alone):
+            return None
+        lots = tuple(
+            phase.lots[j] for j in range(len(self.program.categories)) for phase in alone if phase.lots
+        )
         objective = self.search.evaluate(lots)
         return None if objective is None else Found(lots, objective)
 
@@ -76,7 +117,8 @@ class Prover:
     # ---- own search --------------------------------------------------------------------------
 
     def _own_search(self, program: Program, search: Search, start: Found | None, until: float) -> Proved:
-        outcome = cheapest_preferred(search, min(OWN_SECONDS, until - monotonic()), start=start)
+        most = OWN_SECONDS if len(program.phases) == 1 else OWN_SECONDS_IN_PHASES
+        outcome = cheapest_preferred(search, max(min(most, until - monotonic()), 0.0), start=start)
         if not outcome.complete:
             return Proved(State.BEST_FOUND, None, outcome.best, outcome.bound)
         if outcome.best is None:
@@ -88,55 +130,102 @@ class Prover:
         answer = whole(program.matrix, EngineName.HIGHS, seconds=10.0)
         if answer.status is WholeStatus.INFEASIBLE:
             return Proved(State.IMPOSSIBLE, Proof.TWO_ENGINES, None, inf)
-        return Proved(State.BEST_FOUND, None, self._checked(answer), -inf)
+        best = None if answer.x is None else self.checked(answer.x.tolist())
+        return Proved(State.BEST_FOUND, None, best, -inf)
 
-    # ---- two engines -------------------------------------------------------------------------
-
-    def _two_engines(self, program: Program, search: Search, own: Proved, until: float) -> Proved:
-        best = own.best
-        first = self._ask(program, EngineName.HIGHS, None, until)
-        best = _cheaper(best, self._checked(first))
-        start = None if best is None else self._start(search, best)
-        second = self._ask(program, EngineName.CBC, start, until)
-        best = _cheaper(best, self._checked(second))
-        infeasible = {first.status, second.status} == {WholeStatus.INFEASIBLE}
-        if best is None and infeasible:
-            return Proved(State.IMPOSSIBLE, Proof.TWO_ENGINES, None, inf)
-        bound = max(first.bound, second.bound, own.bound)
-        if best is not None and _agree(best, first, second):
-            best = preferred(program, best, min(2.0, max(until - monotonic(), 0.5)))
-            return Proved(State.PROVED, Proof.TWO_ENGINES, best, best.objective)
-        return Proved(State.BEST_FOUND, None, best, min(bound, best.objective) if best else bound)
-
-    def _ask(
-        self, program: Program, engine: EngineName, start: Sequence[float] | None, until: float
-    ) -> WholeResult:
-        return whole(program.matrix, engine, seconds=max((until - monotonic()) / 2, 0.5), start=start)
-
-    def _checked(self, answer: WholeResult) -> Found | None:
+    def checked(self, x: Sequence[float]) -> Found | None:
         """An engine's crew at whole lots, every line checked again; None if it does not stand."""
-        if answer.x is None:
-            return None
-        lots: Lots = tuple(int(v) for v in np.rint(answer.x[: self.program.head_count]))
+        lots: Lots = tuple(int(v) for v in np.rint(x[: self.program.head_count]))
         objective = self.search.evaluate(lots)
         return None if objective is None else Found(lots, objective)
 
-    def _start(self, search: Search, best: Found) -> list[float] | None:
-        if search.evaluate(best.lots) is None:
+
+class _Contest:
+    """One race of the engines over a program, and what it proves."""
+
+    def __init__(
+        self,
+        prover: Prover,
+        program: Program,
+        search: Search,
+        matrix: Matrix,
+        own: Proved,
+        effort: Effort,
+        until: float,
+    ) -> None:
+        self._prover = prover
+        self._program = program
+        self._search = search
+        self._matrix = matrix
+        self._best = own.best
+        self._floor = max(own.bound, search.root_bound())
+        self._effort = effort
+        self._until = until
+        self._told: Proved | None = None
+
+    def run(self) -> Proved:
+        """Race, and make of it what it proves."""
+        standing = Standing(bound=self._floor)
+        if self._best is not None:
+            standing.objective = self._best.objective
+            self._tell(standing)
+        engines().run(
+            self._matrix,
+            self._start(),
+            standing,
+            seconds=max(self._until - monotonic(), 0.1),
+            good_enough=self._good_enough,
+            rounded=self._search.rounded,
+            on_crew=self._crew,
+            on_news=self._tell,
+        )
+        return self._verdict(standing)
+
+    def _start(self) -> list[float] | None:
+        """Every column of the best crew so far, for engines that take a start."""
+        if self._best is None or self._search.evaluate(self._best.lots) is None:
             return None
-        return [float(v) for v in search.relaxation.x]
+        return [float(v) for v in self._search.relaxation.x]
+
+    def _crew(self, x: Sequence[float]) -> float | None:
+        found = self._prover.checked(x)
+        if found is not None:
+            self._best = _cheaper(self._best, found)
+        return None if found is None else found.objective
+
+    def _good_enough(self, standing: Standing) -> bool:
+        allowed = self._effort.tolerance * abs(standing.objective)
+        return standing.objective < inf and allowed > 0 and standing.objective - standing.bound <= allowed
+
+    def _tell(self, standing: Standing) -> None:
+        if self._effort.heard is None or self._best is None:
+            return
+        now = Proved(State.BEST_FOUND, None, self._best, min(standing.bound, self._best.objective))
+        if now != self._told:
+            self._told = now
+            self._effort.heard(now)
+
+    def _verdict(self, standing: Standing) -> Proved:
+        best = self._best
+        if best is None:
+            if len(standing.infeasible) == len(EngineName):
+                return Proved(State.IMPOSSIBLE, Proof.TWO_ENGINES, None, inf)
+            return Proved(State.BEST_FOUND, None, None, standing.bound)
+        agreeing = [cost for cost in standing.proofs.values() if _same_cost(cost, best.objective)]
+        if not agreeing or len(agreeing) < len(standing.proofs):
+            return Proved(State.BEST_FOUND, None, best, min(standing.bound, best.objective))
+        proof = Proof.TWO_ENGINES if len(agreeing) == len(EngineName) else Proof.ONE_ENGINE
+        left = max(self._until - monotonic(), 0.5)
+        best = preferred(self._program, best, min(left, OWN_SECONDS))
+        return Proved(State.PROVED, proof, best, best.objective)
+
+
+def _same_cost(a: float, b: float) -> bool:
+    """Equal to the cent."""
+    return abs(a - b) < CENT / 2 + 1e-9 * abs(b)
 
 
 def _cheaper(a: Found | None, b: Found | None) -> Found | None:
     if a is None or b is None:
         return a or b
     return b if b.objective < a.objective - tie_width(a.objective) else a
-
-
-def _agree(best: Found, first: WholeResult, second: WholeResult) -> bool:
-    """Both engines proved, and both mean the cost of the crew that stood the check, to the cent."""
-    proved = first.status is WholeStatus.OPTIMAL and second.status is WholeStatus.OPTIMAL
-    near = all(
-        abs(r.objective - best.objective) < CENT / 2 + 1e-9 * abs(best.objective) for r in (first, second)
-    )
-    return proved and near

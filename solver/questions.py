@@ -35,7 +35,21 @@ class Question:
 
 
 def _solve(plan: Plan, options: Options, heard: Heard) -> Any:
-    return solve(plan, seconds=_seconds(options), heard=heard)
+    return solve(
+        plan,
+        seconds=_seconds(options),
+        tolerance=_tolerance(options),
+        start=options.get("start"),
+        heard=heard,
+    )
+
+
+def _tolerance(options: Options) -> float:
+    """The gap that is good enough, given in per cent of the cost."""
+    percent = options.get("tolerance") or 0.0
+    if not isinstance(percent, (int, float)) or not 0 <= percent <= 100:
+        raise BadOption(f"tolerance: {percent!r} will not do: allowed is a per cent from 0 to 100.")
+    return float(percent) / 100
 
 
 def _cost(plan: Plan, options: Options, heard: Heard) -> Any:

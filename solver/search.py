@@ -122,6 +122,10 @@ class Search:
         self.relaxation.set_rhs(row, rhs)
         self._dual_bound.set_rhs(row, rhs)
 
+    def root_bound(self) -> float:
+        """A safe bound on every whole crew's objective from the relaxation alone; inf if it is empty."""
+        return self._bound(self._now) if self.relax() is LpStatus.OPTIMAL else inf
+
     def evaluate(self, lots: Sequence[int]) -> float | None:
         """The objective of a whole crew, None if it is not workable."""
         if any(line.margin(lots) < 0 for line in self._head_lines):

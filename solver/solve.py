@@ -14,6 +14,7 @@ from solver import heads
 from solver.answer import (
     Answer,
     Conflict,
+    Crew,
     CrewReport,
     ExactCrew,
     Policy,
@@ -27,13 +28,14 @@ from solver.engine import EngineName, LpStatus, WholeStatus, whole
 from solver.ledger import Counts
 from solver.plan import Plan
 from solver.program import Line, Program
-from solver.proof import Proved, Prover
+from solver.proof import SECONDS, Effort, Proved, Prover
 from solver.rounding import largest_remainder, rounded, snapped
 from solver.search import Found, Search, whole_grain
 from solver.tiebreak import cheapest_preferred
 
 Heard = Callable[[str, Any], None]
 BOXED_SECONDS = 2.0
+SOON = 0.5  # after so many seconds people want to see the crew before its company is worked out
 ROUNDINGS = (Policy.DOWN, Policy.NEAREST, Policy.UP, Policy.LARGEST_REMAINDER)
 
 
@@ -48,10 +50,10 @@ class Relaxed:
 class Case:
     """A plan being worked on: its program and what was found, each thing once. Later questions start here."""
 
-    def __init__(self, plan: Plan, seconds: float | None = None) -> None:
-        """`seconds` limits the exact solve."""
+    def __init__(self, plan: Plan, seconds: float | None = None, effort: Effort | None = None) -> None:
+        """`seconds` limits the exact solve; `effort` says more about it."""
         self.plan = plan
-        self._seconds = seconds
+        self._effort = effort or Effort(SECONDS if seconds is None else seconds)
 
     @cached_property
     def program(self) -> Program:
@@ -85,7 +87,7 @@ class Case:
         """The exact crew with its proof."""
         if self.relaxed is None:
             return self._impossible_even_in_fractions()
-        return Prover(self.program, self.search).prove(self.relaxed.lots, self._seconds)
+        return Prover(self.program, self.search).prove(self.relaxed.lots, self._effort)
 
     def _impossible_even_in_fractions(self) -> Proved:
         """CLP says so; HiGHS must agree before people are told."""
@@ -162,6 +164,11 @@ class Case:
         return self.appraiser.appraise(policy, lots, self.relaxed.lots)
 
     @cached_property
+    def roundings(self) -> tuple[CrewReport, ...]:
+        """The plain roundings appraised. Needs a fractional crew."""
+        return tuple(self._report(policy, self.rounding(policy)) for policy in ROUNDINGS)
+
+    @cached_property
     def exact_report(self) -> CrewReport | None:
         """The exact crew appraised; None if there is none."""
         best = self.proved.best
@@ -171,7 +178,7 @@ class Case:
         """Every policy's crew, and the planner's own where there is one."""
         if self.relaxed is None:
             return []
-        reports = [self._report(policy, self.rounding(policy)) for policy in ROUNDINGS]
+        reports = list(self.roundings)
         reports += [self.best_corner(), self.patched()]
         if self.exact_report is not None:
             reports.append(self.exact_report)
@@ -194,7 +201,19 @@ class Case:
 
     def answer(self, crews: Sequence[CrewReport], seconds: float) -> Answer:
         """Everything of the main question."""
-        relaxed, proved, exact = self.relaxed, self.proved, self._exact()
+        return replace(self._outline(self.proved, self.exact_report, crews, seconds), conflict=self.conflict)
+
+    def so_far(self, proved: Proved, seconds: float) -> Answer:
+        """What is known while the proof is still being sought: the crew so far and the plain roundings."""
+        best = proved.best
+        report = None if best is None else self._report(Policy.EXACT, best.lots)
+        crews = [*self.roundings, *([] if report is None else [report])]
+        return self._outline(proved, report, crews, seconds)
+
+    def _outline(
+        self, proved: Proved, report: CrewReport | None, crews: Sequence[CrewReport], seconds: float
+    ) -> Answer:
+        relaxed, exact = self.relaxed, _exact(report)
         gap = None
         if relaxed is not None and exact is not None:
             gap = whole_people_cost(exact.cost, relaxed.floor)
@@ -208,19 +227,19 @@ class Case:
             bound if bound is not None else (relaxed.floor if relaxed and exact else None),
             gap,
             tuple(crews),
-            self.conflict,
+            None,
             seconds,
         )
 
-    def _exact(self) -> ExactCrew | None:
-        report = self.exact_report
-        if report is None or report.crew is None:
-            return None
-        if report.cost is None:
-            raise AssertionError(f"the exact crew {report.crew} did not stand its appraisal")
-        return ExactCrew(
-            report.crew, report.cost, report.joiners, report.leavers, report.overtime, report.bought_in
-        )
+
+def _exact(report: CrewReport | None) -> ExactCrew | None:
+    if report is None or report.crew is None:
+        return None
+    if report.cost is None:
+        raise AssertionError(f"the exact crew {report.crew} did not stand its appraisal")
+    return ExactCrew(
+        report.crew, report.cost, report.joiners, report.leavers, report.overtime, report.bought_in
+    )
 
 
 def whole_people_cost(cost: float, floor: float) -> WholePeopleCost:
@@ -237,15 +256,44 @@ def _without_row(program: Program, row: int) -> Any:
     return matrix
 
 
-def solve(plan: Plan, *, seconds: float | None = None, heard: Heard | None = None) -> Answer:
+def solve(
+    plan: Plan,
+    *,
+    seconds: float | None = None,
+    tolerance: float = 0.0,
+    start: Crew | None = None,
+    heard: Heard | None = None,
+) -> Answer:
     """Answer the main question about a plan that review() has no objection to.
 
-    `seconds` limits the exact solve (None: 60 s). `heard(part, value)` hears of "fractional" at once.
+    `seconds` limits the exact solve (None: 60 s); a gap between crew and bound of at most `tolerance`, as a
+    share of the cost, is good enough to stop; `start` is a crew to go on from. `heard(part, value)` hears
+    of "fractional" at once, and of "better" crews and bounds (Answers so far) when the proof takes long.
     Raises EngineFailure if an engine breaks.
     """
     began = monotonic()
-    case = Case(plan, seconds)
-    if heard is not None:
-        heard("fractional", case.fractional())
+    hears = heard or (lambda part, value: None)
+    reporter: list[Callable[[Proved], None]] = []
+    case = Case(plan, effort=_effort(plan, seconds, tolerance, start, reporter))
+    reporter.append(lambda proved: hears("better", case.so_far(proved, monotonic() - began)))
+    hears("fractional", case.fractional())
+    proved = case.proved
+    if monotonic() - began > SOON and proved.best is not None:
+        reporter[0](proved)
     crews = case.crews()
     return case.answer(crews, monotonic() - began)
+
+
+def _effort(
+    plan: Plan,
+    seconds: float | None,
+    tolerance: float,
+    start: Crew | None,
+    reporter: Sequence[Callable[[Proved], None]],
+) -> Effort:
+    lots = None
+    if start is not None:
+        exact = heads.lots_of(Program(plan), start)
+        lots = tuple(int(n) for n in exact) if all(n.denominator == 1 for n in exact) else None
+    limit = SECONDS if seconds is None else seconds
+    return Effort(limit, tolerance, lots, lambda proved: reporter[0](proved))
