@@ -53,8 +53,9 @@ class _Lines:
         self._negotiable = Negotiable(case.plan, best.objective)
         self._prices = FractionalPrices(case.plan)
         grain = whole_grain(case.program)
-        rounding = tie_width(best.objective) / 2 if grain else 1e-6 + 1e-12 * abs(best.objective)
-        self._cheaper = best.objective - max(CENT, grain) + rounding
+        tie = tie_width(best.objective)  # above a hundred millions a cent is no longer told
+        rounding = tie / 2 if grain else 1e-6 + 1e-12 * abs(best.objective)
+        self._cheaper = best.objective - max(CENT, grain, 3 * tie) + rounding
 
     def all(self) -> list[LineRoom]:
         """Every line's room, in the order of the program."""
