@@ -376,7 +376,7 @@ class Program:
             columns.append(self.bought[k, t])
             coefs.append(float(1 / best))
         row = self.matrix.add_row(columns, coefs, RowSense.AT_LEAST, float(amount / best))
-        says = f"{work.amounts[t].normalize():f} {work.unit} of {work.name}".replace("  ", " ")
+        says = f"{work.amounts[t].normalize():,f} {work.unit} of {work.name}".replace("  ", " ")
         self.lines.append(Line(work.name, LineKind.WORK, phase.name, work.unit, row, float(best), says))
 
     def charges(self, g: int) -> list[int]:
