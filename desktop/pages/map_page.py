@@ -6,6 +6,7 @@ from collections.abc import Sequence
 from decimal import Decimal
 from typing import TYPE_CHECKING, Any, Protocol
 
+from PySide6.QtCore import QTimer
 from PySide6.QtWidgets import QComboBox, QHBoxLayout, QLabel, QWidget
 
 from desktop import question_words as say
@@ -28,6 +29,7 @@ _KINDS = {
     Policy.OWN: SpotKind.OWN,
 }
 _SAME = 1e-6
+_AWAY_AFTER = 400  # ms the last map stays while another one is worked out
 
 
 class MapPoint(Protocol):
@@ -99,6 +101,8 @@ class MapPage(QuestionPage):
         self.hint = label(say.MAP_HINT, tone="faint")
         self.sentence = label()
         self.picture: CrewMap | None = None
+        self._away_soon = QTimer(self, singleShot=True, interval=_AWAY_AFTER)
+        self._away_soon.timeout.connect(lambda: self._show_map(False))
         self._place = QHBoxLayout()
         self.body.addLayout(self._choices())
         for widget in (self.hint, self.sentence):
@@ -175,9 +179,11 @@ class MapPage(QuestionPage):
         """Fill the map."""
         plan, answer = self.answers.plan, self.answers.answer
         there = detail is not None and plan is not None and answer is not None
-        for widget in (self.hint, self.picture):
-            if widget is not None:
-                widget.setVisible(there)
+        self._away_soon.stop()
+        if not there and self.answers.progress(self.question) is not None:
+            self._away_soon.start()  # other axes are mostly there before anybody misses the map
+            return
+        self._show_map(there)
         if detail is None or plan is None or answer is None:
             return
         at = max(0, self.phase.currentIndex())
@@ -186,6 +192,11 @@ class MapPage(QuestionPage):
         self._picture().show_spots(spots)
         self._picture().show()
         self.sentence.setText(self._picture().sentence())
+
+    def _show_map(self, there: bool) -> None:
+        for widget in (self.hint, self.picture):
+            if widget is not None:
+                widget.setVisible(there)
 
     def _on_looked_at(self, _x: float, _y: float) -> None:
         self.sentence.setText(self._picture().sentence())

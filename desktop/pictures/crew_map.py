@@ -20,6 +20,7 @@ from desktop.pictures.crew_spots import (
     next_spot,
     spot_sentence,
 )
+from desktop.pictures.name_places import Name, placed
 from desktop.pictures.plot_picture import PlotPicture, cosmetic
 from desktop.theme import Size, Theme
 
@@ -31,14 +32,7 @@ _SHAPES: dict[SpotKind, tuple[str, int]] = {
     SpotKind.EXACT: ("o", 15),
     SpotKind.OWN: ("s", 13),
 }
-# where the name stands, as the corner of its text that touches the point: kinds keep out of each other's way
-_ANCHORS: dict[SpotKind, tuple[float, float]] = {
-    SpotKind.FRACTIONAL: (1.2, 0.5),
-    SpotKind.ROUNDED: (-0.1, -0.2),
-    SpotKind.PATCHED: (1.1, -0.2),
-    SpotKind.EXACT: (-0.06, 1.3),
-    SpotKind.OWN: (1.1, 1.2),
-}
+_GAP = 8  # pixels between a point and its name
 _STEPS = {
     Qt.Key.Key_Left: (-1, 0),
     Qt.Key.Key_Right: (1, 0),
@@ -60,7 +54,9 @@ class CrewMap(PlotPicture):
         self._shown: CrewSpots | None = None
         self._cursor: Spot | None = None
         self._ring: pg.ScatterPlotItem | None = None
+        self._names: list[tuple[NamedSpot, pg.TextItem]] = []
         super().__init__(say.CREW_MAP, parent)
+        self.plot.getPlotItem().getViewBox().sigTransformChanged.connect(self._place_names)
         scene = self.plot.scene()
         scene.sigMouseMoved.connect(self._on_hover)
         scene.sigMouseClicked.connect(self._on_click)
@@ -97,17 +93,30 @@ class CrewMap(PlotPicture):
         if shown is None:
             return
         self.title_axes(say.people_axis(shown.across), say.people_axis(shown.up))
-        self.fresh_legend()
+        self.fresh_legend(above=True)
+        self._names = []
         self._add_polygon(shown, theme)
         if shown.equal_cost is not None:
             xs, ys = zip(*shown.equal_cost, strict=True)
             pen = cosmetic(theme.ink, 1, Qt.PenStyle.DashLine)
             self.plot.plot(list(xs), list(ys), pen=pen, name=say.KEY_EQUAL_COST)
         self._add_lattice(shown, theme)
-        for named in shown.named:
+        for named in sorted(shown.named, key=lambda n: n.kind is not SpotKind.EXACT):
             self._add_named(named, theme)
         self._ring = self._scatter([], "o", 24, theme.focus, None)
         self._place_ring()
+        self._place_names()
+
+    def _place_names(self) -> None:
+        """Names keep out of each other's way; where they are in pixels changes with the size."""
+        box = self.plot.getPlotItem().getViewBox()
+        texts = [text for _, text in self._names]
+        points = [box.mapViewToScene(QPointF(spot.x, spot.y)) for spot, _ in self._names]
+        sizes = [text.textItem.boundingRect().size() for text in texts]
+        names = [Name(point, size, _GAP) for point, size in zip(points, sizes, strict=True)]
+        for text, name, rect in zip(texts, names, placed(names, box.sceneBoundingRect()), strict=True):
+            off = name.point - rect.topLeft()
+            text.setAnchor((off.x() / rect.width(), off.y() / rect.height()))
 
     def _add_polygon(self, shown: CrewSpots, theme: Theme) -> None:
         if len(shown.polygon) < 3:
@@ -129,10 +138,11 @@ class CrewMap(PlotPicture):
         colour = _tone(named.kind, theme)
         fill = colour if named.kind in (SpotKind.EXACT, SpotKind.FRACTIONAL) else theme.paper
         self._scatter([(named.x, named.y)], symbol, size, colour, fill)
-        text = pg.TextItem(", ".join(named.names), color=colour, anchor=_ANCHORS[named.kind])
+        text = pg.TextItem(", ".join(named.names), color=colour)
         text.setFont(theme.font(Size.SMALL, bold=named.kind is SpotKind.EXACT))
         text.setPos(named.x, named.y)
         self.plot.addItem(text)
+        self._names.append((named, text))
 
     def _scatter(
         self, points: list[tuple[float, float]], symbol: str, size: int, edge: Any, fill: Any, name: str = ""

@@ -16,6 +16,9 @@ from desktop.pictures.copyable import Copyable
 from desktop.theme import Size, Theme, current
 
 
+_IN_A_LINE = 6  # names of a legend side by side
+
+
 def cosmetic(colour: QColor, width: float, style: Qt.PenStyle = Qt.PenStyle.SolidLine) -> QPen:
     """A pen whose width is in pixels, not in units of the axes."""
     pen = QPen(colour, width, style)
@@ -78,15 +81,25 @@ class PlotPicture(Copyable):
         self.plot.setLabel("bottom", _escaped(bottom), **style)
         self.plot.setLabel("left", _escaped(left), **style)
 
-    def fresh_legend(self) -> None:
-        """An empty legend at the top left, filled by the names of what is plotted next."""
+    def fresh_legend(self, *, above: bool = False) -> None:
+        """An empty legend at the top left, filled by the names of what is plotted next.
+
+        `above`: in a line above the plot, where there is no free corner in it.
+        """
         theme = current()
-        legend = self.plot.addLegend(offset=(theme.px(1), theme.px(1)))
+        legend = self._legend_above() if above else self.plot.addLegend(offset=(theme.px(1), theme.px(1)))
         legend.clear()
         legend.setBrush(theme.paper)
         legend.setPen(pg.mkPen(theme.rule))
         legend.setLabelTextColor(theme.ink)
         legend.setLabelTextSize(f"{theme.points(Size.SMALL)}pt")
+
+    def _legend_above(self) -> pg.LegendItem:
+        item = self.plot.getPlotItem()
+        if item.legend is None:
+            item.legend = pg.LegendItem(colCount=_IN_A_LINE)
+            item.layout.addItem(item.legend, 0, 1)
+        return item.legend
 
     def pixmap(self) -> QPixmap:
         """The picture as on the screen."""
