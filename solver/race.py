@@ -10,6 +10,7 @@ import subprocess
 import sys
 import threading
 from collections.abc import Callable, Sequence
+from contextlib import suppress
 from dataclasses import dataclass, field
 from functools import lru_cache
 from math import inf
@@ -49,6 +50,7 @@ class Host:
         """Start the process if it is not running."""
         if self._process is not None and self._process.poll() is None:
             return
+        self.close()
         place = str(Path(__file__).resolve().parent.parent)
         paths = [place, *filter(None, [os.environ.get("PYTHONPATH")])]
         self._process = subprocess.Popen(
@@ -81,18 +83,21 @@ class Host:
 
     def cancel(self) -> None:
         """End a running solve."""
-        if self._process is not None and self.busy:
-            self._process.kill()
-            self._process.wait()
+        if self.busy:
+            self.close()
         self.busy = False
         self._number += 1
 
     def close(self) -> None:
         """End the process."""
-        if self._process is not None:
-            self._process.kill()
-            self._process.wait()
-            self._process = None
+        process, self._process = self._process, None
+        if process is None:
+            return
+        process.kill()
+        process.wait()
+        if process.stdin is not None:
+            with suppress(BrokenPipeError):
+                process.stdin.close()
 
     def mine(self, event: dict[str, Any]) -> bool:
         """Whether an event answers the running request."""
