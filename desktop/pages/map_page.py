@@ -6,7 +6,7 @@ from collections.abc import Sequence
 from decimal import Decimal
 from typing import TYPE_CHECKING, Any, Protocol
 
-from PySide6.QtCore import QTimer
+from PySide6.QtCore import QElapsedTimer, QTimer
 from PySide6.QtWidgets import QComboBox, QHBoxLayout, QLabel, QWidget
 
 from desktop import question_words as say
@@ -30,6 +30,8 @@ _KINDS = {
 }
 _SAME = 1e-6
 _AWAY_AFTER = 400  # ms the last map stays while another one is worked out
+_ASK_AFTER = 50  # ms without another choice of axes
+_PATIENCE = 300  # ms a map may still be worked on after other axes were chosen
 
 
 class MapPoint(Protocol):
@@ -45,9 +47,12 @@ class MapPoint(Protocol):
 class MapAnswer(Protocol):
     """What `map` answers."""
 
+    across: str
+    up: str
+    phase: str
     polygon: Sequence[Point]
     points: Sequence[MapPoint]
-    equal_cost: tuple[Point, Point] | None
+    equal_cost: Sequence[Point] | None
 
 
 def named_spots(plan: Plan, answer: Answer, across: str, up: str, at: int) -> tuple[NamedSpot, ...]:
@@ -86,7 +91,8 @@ def spots_of(plan: Plan, answer: Answer, detail: MapAnswer, across: str, up: str
     lattice = tuple(Spot(p.x, p.y, p.workable, p.cost, tuple(p.breaks)) for p in detail.points)
     named = named_spots(plan, answer, across, up, at)
     polygon = tuple((x, y) for x, y in detail.polygon)
-    return CrewSpots(across, up, plan.currency, polygon, lattice, named, detail.equal_cost)
+    equal_cost = tuple((x, y) for x, y in detail.equal_cost) if detail.equal_cost else None
+    return CrewSpots(across, up, plan.currency, polygon, lattice, named, equal_cost)
 
 
 class MapPage(QuestionPage):
@@ -103,6 +109,9 @@ class MapPage(QuestionPage):
         self.picture: CrewMap | None = None
         self._away_soon = QTimer(self, singleShot=True, interval=_AWAY_AFTER)
         self._away_soon.timeout.connect(lambda: self._show_map(False))
+        self._ask_soon = QTimer(self, singleShot=True)
+        self._ask_soon.timeout.connect(self._ask_axes)
+        self._asked = QElapsedTimer()
         self._place = QHBoxLayout()
         self.body.addLayout(self._choices())
         for widget in (self.hint, self.sentence):
@@ -140,6 +149,15 @@ class MapPage(QuestionPage):
         same = self.across.currentText() == self.up.currentText()
         self.sentence.setText(say.SAME_TWICE if same else "")
         if not same:
+            self._ask_soon.start(_ASK_AFTER)
+
+    def _ask_axes(self) -> None:
+        """Ask for the axes chosen, once the map being worked on had its time: ending a process costs more."""
+        working = self.answers.progress(self.question) is not None
+        if working and self._asked.isValid() and self._asked.elapsed() < _PATIENCE:
+            self._ask_soon.start(_ASK_AFTER)
+        else:
+            self._asked.start()
             self.ask()
 
     def show_answer(self) -> None:
@@ -179,6 +197,8 @@ class MapPage(QuestionPage):
         """Fill the map."""
         plan, answer = self.answers.plan, self.answers.answer
         there = detail is not None and plan is not None and answer is not None
+        if detail is not None and (detail.across, detail.up, detail.phase) != tuple(self.options().values()):
+            return  # other axes were chosen meanwhile and are asked for soon
         self._away_soon.stop()
         if not there and self.answers.progress(self.question) is not None:
             self._away_soon.start()  # other axes are mostly there before anybody misses the map

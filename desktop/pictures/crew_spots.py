@@ -56,7 +56,7 @@ class CrewSpots:
     polygon: tuple[Point, ...] = ()
     lattice: tuple[Spot, ...] = ()
     named: tuple[NamedSpot, ...] = ()
-    equal_cost: tuple[Point, Point] | None = None
+    equal_cost: tuple[Point, ...] | None = None
 
 
 def nearest_spot(spots: Sequence[Spot], x: float, y: float) -> Spot | None:

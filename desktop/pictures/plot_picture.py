@@ -98,6 +98,7 @@ class PlotPicture(Copyable):
         item = self.plot.getPlotItem()
         if item.legend is None:
             item.legend = pg.LegendItem(colCount=_IN_A_LINE)
+            item.layout.removeItem(item.titleLabel)  # an empty title stands where the key goes
             item.layout.addItem(item.legend, 0, 1)
         return item.legend
 
