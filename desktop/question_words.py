@@ -193,8 +193,8 @@ KEY_NOT_WORKABLE = "not workable"
 KEY_EQUAL_COST = "as dear as the exact crew"
 MAP_HINT = (
     "Dots and crosses are crews with all other categories as in the exact crew; named crews stand where they "
-    "are, though their other categories differ. Point at a crew, or move with the arrow keys; click, or press "
-    "Space, to make it your own."
+    "are, though their other categories differ. Point at a crew, or move with the arrow keys; click, or "
+    "press Space, to make it your own."
 )
 NEEDS_TWO = "The map needs at least two categories."
 SAME_TWICE = "Choose two different categories."

@@ -2,9 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
 from decimal import Decimal
-from typing import TYPE_CHECKING, Any, Protocol
+from typing import TYPE_CHECKING, Any
 
 from PySide6.QtCore import QElapsedTimer, QTimer
 from PySide6.QtWidgets import QComboBox, QHBoxLayout, QLabel, QWidget
@@ -14,10 +13,11 @@ from desktop.answers import Answers
 from desktop.document import Document
 from desktop.pages.page_parts import label
 from desktop.pages.question_page import QuestionPage
-from desktop.pictures.crew_spots import CrewSpots, NamedSpot, Point, Spot, SpotKind
+from desktop.pictures.crew_spots import CrewSpots, NamedSpot, Spot, SpotKind
 from desktop.tables.own_crew import own_started, with_own
 from desktop.theme import current
 from solver.answer import Answer, Policy
+from solver.mapanswer import CrewMap as MapAnswer
 from solver.plan import Plan
 
 if TYPE_CHECKING:
@@ -30,29 +30,8 @@ _KINDS = {
 }
 _SAME = 1e-6
 _AWAY_AFTER = 400  # ms the last map stays while another one is worked out
-_ASK_AFTER = 50  # ms without another choice of axes
+_ASK_AFTER = 30  # ms without another choice of axes
 _PATIENCE = 300  # ms a map may still be worked on after other axes were chosen
-
-
-class MapPoint(Protocol):
-    """One whole crew of the map."""
-
-    x: float
-    y: float
-    workable: bool
-    cost: float | None
-    breaks: Sequence[str]
-
-
-class MapAnswer(Protocol):
-    """What `map` answers."""
-
-    across: str
-    up: str
-    phase: str
-    polygon: Sequence[Point]
-    points: Sequence[MapPoint]
-    equal_cost: Sequence[Point] | None
 
 
 def named_spots(plan: Plan, answer: Answer, across: str, up: str, at: int) -> tuple[NamedSpot, ...]:

@@ -90,7 +90,7 @@ class PlotPicture(Copyable):
         legend = self._legend_above() if above else self.plot.addLegend(offset=(theme.px(1), theme.px(1)))
         legend.clear()
         legend.setBrush(theme.paper)
-        legend.setPen(pg.mkPen(theme.rule))
+        legend.setPen(pg.mkPen(theme.paper if above else theme.rule))
         legend.setLabelTextColor(theme.ink)
         legend.setLabelTextSize(f"{theme.points(Size.SMALL)}pt")
 

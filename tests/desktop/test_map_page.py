@@ -1,37 +1,37 @@
-from dataclasses import dataclass
 from decimal import Decimal
 
 import pytest
-from PySide6.QtCore import QPointF, Qt
+from PySide6.QtCore import QPointF, QRectF, QSizeF, Qt
 
 from desktop.pages.map_page import MapPage, named_spots
 from desktop.pictures.crew_map import CrewMap
 from desktop.pictures.crew_spots import Spot, SpotKind, nearest_spot, next_spot, spot_sentence
+from desktop.pictures.name_places import Name, placed
+from solver.mapanswer import CrewMap as MapAnswer
+from solver.mapanswer import MapPoint
 from tests.desktop import samples
 from tests.desktop.test_question_pages import make as make
 
 NB = "\u00a0"
 
 
-@dataclass(frozen=True)
-class Mapped:
+def mapped(across="Contract hand", up="Fencing gang", phase="Whole job"):
     """A hand-made map: crews of at least 15 heads are workable."""
-
-    polygon: tuple = ((7, 8), (15, 0), (15, 14), (1, 14))
-    points: tuple = tuple(
-        Spot(
-            x, y, x + y >= 15, 1000.0 * (x + y) if x + y >= 15 else None, () if x + y >= 15 else ("Planting",)
-        )
-        for x in range(5, 14)
+    points = tuple(
+        MapPoint(x, y, x + y >= 15, 1000.0 * (x + y), ())
+        if x + y >= 15
+        else MapPoint(x, y, False, None, ("Planting",))
         for y in range(4, 12)
+        for x in range(5, 14)
     )
-    equal_cost: tuple = ((5, 10), (11, 4))
+    polygon = ((7, 8), (15, 0), (15, 14), (1, 14))
+    return MapAnswer(across, up, phase, polygon, points, (), ((5, 10), (11, 4)))
 
 
 @pytest.fixture
 def page(make):
     page, _, answers = make(MapPage)
-    answers.give("map", Mapped())
+    answers.give("map", mapped())
     yield page
     page.close()
 
@@ -44,14 +44,41 @@ def test_the_two_largest_categories_are_on_the_axes(make):
     page.close()
 
 
-def test_other_axes_are_asked_for(page):
+def test_other_axes_are_asked_for(page, qtbot):
     answers = page.answers
     page.up.setCurrentText("Learner")
-    assert answers.asked[-1][1]["y"] == "Learner"
+    qtbot.waitUntil(lambda: answers.asked[-1][1]["y"] == "Learner")
     count = len(answers.asked)
     page.across.setCurrentText("Learner")
     assert len(answers.asked) == count
     assert page.sentence.text() == "Choose two different categories."
+
+
+def test_walking_through_the_choices_asks_once(page, qtbot):
+    answers = page.answers
+    for name in ("Lead hand", "Learner", "First-aider"):
+        page.up.setCurrentText(name)
+    qtbot.waitUntil(lambda: len(answers.asked) == 2)
+    assert answers.asked[-1][1]["y"] == "First-aider"
+
+
+def test_a_map_being_worked_on_is_given_its_time(page, qtbot):
+    answers = page.answers
+    page.up.setCurrentText("Learner")
+    qtbot.waitUntil(lambda: len(answers.asked) == 2)
+    page.up.setCurrentText("Lead hand")
+    answers.give("map", mapped(up="Learner"))  # late, but it kept its process
+    assert page.picture._shown.up == "Fencing gang"
+    qtbot.waitUntil(lambda: len(answers.asked) == 3)
+    answers.give("map", mapped(up="Lead hand"))
+    assert page.picture._shown.up == "Lead hand"
+    assert page.picture.isVisible()
+
+
+def test_the_last_map_goes_when_another_takes_long(page, qtbot):
+    page.up.setCurrentText("Learner")
+    assert page.picture.isVisible()
+    qtbot.waitUntil(lambda: not page.picture.isVisible())
 
 
 def test_named_crews_on_one_point_share_it():
@@ -133,3 +160,32 @@ def test_an_empty_map_draws_nothing(qtbot):
     qtbot.addWidget(picture)
     assert picture.sentence() == ""
     assert picture.cursor_spot is None
+
+
+def test_names_keep_out_of_each_others_way():
+    room = QRectF(0, 0, 400, 300)
+    points = [QPointF(100, 100), QPointF(120, 104), QPointF(395, 150), QPointF(100, 295), QPointF(112, 96)]
+    names = [Name(point, QSizeF(90, 14), 8) for point in points]
+    rects = placed(names, room)
+    for at, rect in enumerate(rects):
+        assert room.contains(rect)
+        for other in rects[:at]:
+            assert not rect.intersects(other)
+    assert placed([], room) == []
+
+
+def test_names_on_the_map_do_not_cover_each_other(page):
+    import pyqtgraph as pg
+
+    texts = [i for i in page.picture.plot.getPlotItem().items if isinstance(i, pg.TextItem)]
+    rects = [text.mapRectToScene(text.boundingRect()) for text in texts]
+    assert len(rects) == 4
+    for at, rect in enumerate(rects):
+        assert not any(rect.adjusted(1, 1, -1, -1).intersects(other) for other in rects[:at])
+
+
+def test_the_key_stands_above_the_map(page):
+    item = page.picture.plot.getPlotItem()
+    key = item.legend.mapRectToScene(item.legend.rect())
+    assert key.bottom() <= item.getViewBox().sceneBoundingRect().top() + 1
+    assert len(item.legend.items) == 3
