@@ -140,6 +140,7 @@ TIP_WORKLOAD = "Type a workload, or drag the line in the picture, or move it wit
 RANGE = "Range"
 RANGE_TIP = "Which part of the workload is looked at, in per cent of today's"
 RANGE_TO = "to"
+NO_RANGE = "The range must begin below its end."
 CHANGE = "Against the step before"
 TIP_STEP_FROM = "The least workload of the step"
 TIP_STEP_TO = "The largest workload its crew serves at least cost"

@@ -56,6 +56,8 @@ def typed_amount(text: str, steps: Steps) -> float:
     """
     plain = text.strip().removesuffix("%").removesuffix(steps.unit).strip()
     amount = float(numbers.parse(plain))
+    if not steps.steps:
+        return amount
     low, high = steps.steps[0].from_, steps.steps[-1].to
     if numbers.reads_two_ways(plain) and not low <= amount <= high and low <= 1000 * amount <= high:
         return 1000 * amount
@@ -137,6 +139,8 @@ class StepsPage(QuestionPage):
     def _ask_within(self) -> None:
         if self.low.value() < self.high.value():
             self.ask()
+        else:
+            self.sentence.setText(say.NO_RANGE)
 
     def show_answer(self) -> None:
         """Offer the works of the plan, then ask or show."""

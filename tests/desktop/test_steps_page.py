@@ -96,6 +96,23 @@ def test_the_workload_is_typed(page, qtbot):
     assert page.picture.amount == 60000
 
 
+def test_a_range_that_no_crew_serves_is_told(page, qtbot):
+    none = replace(steps_detail(), steps=(), ends="No crew does even the smallest workload.")
+    page.answers.give("steps", none)
+    assert page.sentence.text() == say.BEYOND_STEPS
+    assert none.ends in page.accuracy.text()
+    page.amount.setText("60000")
+    qtbot.keyClick(page.amount, Qt.Key.Key_Return)
+    assert page.sentence.text() == say.BEYOND_STEPS
+
+
+def test_a_range_must_begin_below_its_end(page, qtbot):
+    asked = len(page.answers.asked)
+    page.low.setValue(250)
+    qtbot.waitUntil(lambda: page.sentence.text() == say.NO_RANGE)
+    assert len(page.answers.asked) == asked
+
+
 def test_thousands_are_understood_where_only_they_make_sense():
     steps = steps_detail()
     assert typed_amount("52,000", steps) == 52000
