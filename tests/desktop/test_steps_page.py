@@ -1,3 +1,4 @@
+from dataclasses import replace
 from math import isnan
 
 import pytest
@@ -56,7 +57,7 @@ def test_a_bend_within_a_step_and_a_gap_in_the_rounding():
     assert isnan(ys[1])
 
 
-def test_how_long_a_crew_holds():
+def test_how_long_a_crew_holds(qapp):
     plan, steps = samples.hillside_plan(), steps_detail()
     assert holds_sentence(plan, steps, 52000) == (
         f"Holds up to 53,400{NB}trees; then +1{NB}Contract hand, for EUR{NB}9,000 more."
