@@ -17,7 +17,8 @@ from solver.race import Standing, engines
 from solver.rounding import snapped
 from solver.search import Found, Lots, Search, tie_width
 from solver.tiebreak import cheapest_preferred, preferred
-from solver.tightening import phases_alone, tightened
+from solver.tightening import mended, phases_alone, tightened
+from solver.windows import Windows
 
 SECONDS = 60.0
 # plans of one phase are our own search's home; beyond it decides soon or leaves it to the engines
@@ -61,13 +62,15 @@ class Prover:
         if several:
             engines().warm()
         start = self._first_crew(fractional, effort.start)
+        if several:
+            start = start or self._mended(fractional)
+            if start is not None and effort.heard is not None:
+                effort.heard(Proved(State.BEST_FOUND, None, start, self.search.root_bound()))
         program, search = self._tightened(self._caps(start))
         matrix = program.matrix
         if several:
-            alone = phases_alone(program)
-            matrix = tightened(program, alone)
+            matrix = tightened(program, phases_alone(program))
             search = Search(program, matrix, grain=search.grain)
-            start = start or self._patched(fractional)
         own = self._own_search(program, search, start, until)
         if own.state is not State.BEST_FOUND:
             return own
@@ -83,16 +86,11 @@ class Prover:
                 found = _cheaper(found, Found(lots, objective))
         return found
 
-    def _patched(self, fractional: Sequence[float]) -> Found | None:
+    def _mended(self, fractional: Sequence[float]) -> Found | None:
         """The fractional crew rounded up, each phase then mended on its own by additions."""
-        alone = phases_alone(self.program, [ceil(snapped(v)) for v in fractional])
-        if any(phase.lots is None for phase in alone):
-            return None
-        lots = tuple(
-            phase.lots[j] for j in range(len(self.program.categories)) for phase in alone if phase.lots
-        )
-        objective = self.search.evaluate(lots)
-        return None if objective is None else Found(lots, objective)
+        lots = mended(self.program, [ceil(snapped(v)) for v in fractional])
+        objective = None if lots is None else self.search.evaluate(lots)
+        return None if lots is None or objective is None else Found(lots, objective)
 
     def _caps(self, start: Found | None) -> list[int]:
         """No crew as cheap as `start` has more of anyone than its money pays for."""
@@ -162,6 +160,7 @@ class _Contest:
         self._effort = effort
         self._until = until
         self._told: Proved | None = None
+        self._windows = Windows(prover.program, prover.search)
 
     def run(self) -> Proved:
         """Race, and make of it what it proves."""
@@ -178,6 +177,7 @@ class _Contest:
             rounded=self._search.rounded,
             on_crew=self._crew,
             on_news=self._tell,
+            idle=self._improve,
         )
         return self._verdict(standing)
 
@@ -192,6 +192,19 @@ class _Contest:
         if found is not None:
             self._best = _cheaper(self._best, found)
         return None if found is None else found.objective
+
+    def _improve(self, standing: Standing) -> bool:
+        """Use the time between the engines' news; False when nothing is left to try."""
+        if self._best is None or not self._windows.useful:
+            return False
+        found = self._windows.step(self._best)
+        if found is None:
+            return False
+        if found is not self._best:
+            self._best = found
+            standing.objective = min(standing.objective, found.objective)
+            self._tell(standing)
+        return True
 
     def _good_enough(self, standing: Standing) -> bool:
         allowed = self._effort.tolerance * abs(standing.objective)

@@ -161,12 +161,14 @@ class Race:
         rounded: Callable[[float], float],
         on_crew: OnCrew,
         on_news: OnNews,
+        idle: Callable[[Standing], bool],
     ) -> Standing:
         """Race until proved, infeasible, good enough or out of time; returns `standing`, brought up to date.
 
-        `rounded` lifts a bound to the next cost a whole crew can have.
+        `rounded` lifts a bound to the next cost a whole crew can have; `idle` may do something useful
+        for at most half a second while there is no news, and says whether it wants to again.
         """
-        run = _Run(self, matrix, start, standing, seconds, good_enough, rounded, on_crew, on_news)
+        run = _Run(self, matrix, start, standing, seconds, good_enough, rounded, on_crew, on_news, idle)
         try:
             return run.until_decided(self._events)
         finally:
@@ -189,6 +191,7 @@ class _Run:
         rounded: Callable[[float], float],
         on_crew: OnCrew,
         on_news: OnNews,
+        idle: Callable[[Standing], bool],
     ) -> None:
         self._hosts = race.hosts
         self._matrix = matrix_to_json(matrix)
@@ -200,12 +203,13 @@ class _Run:
         self._rounded = rounded
         self._on_crew = on_crew
         self._on_news = on_news
+        self._idle = idle
         self._slice = dict.fromkeys(race.hosts, 0)
 
     def until_decided(self, events: SimpleQueue[dict[str, Any]]) -> Standing:
         for engine in self._hosts:
             self._ask(engine)
-        confirm_until = inf
+        confirm_until, willing = inf, True
         while not self._decided():
             if self.standing.proofs and confirm_until == inf:
                 confirm_until = monotonic() + max(GRACE, monotonic() - self._began)
@@ -213,9 +217,9 @@ class _Run:
             if wait <= 0:
                 break
             try:
-                self._take(events.get(timeout=min(wait, 1.0)))
+                self._take(events.get(block=not willing, timeout=min(wait, 1.0)))
             except Empty:
-                continue
+                willing = willing and not self.standing.proofs and self._idle(self.standing)
         return self.standing
 
     def _ask(self, engine: EngineName) -> None:

@@ -11,15 +11,21 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
 from decimal import Decimal
+from time import monotonic
 
+from solver.engine import EngineName, whole
 from solver.matrix import Matrix, RowSense
 from solver.plan import Budget, Category, Plan
-from solver.program import Program
+from solver.program import UNLIMITED_LOTS, Program
 from solver.search import Limits, Lots, Search, tie_width, whole_grain
 
 NONE = Decimal(0)
 # one phase alone is a small program; what is not proved by then gives its bound all the same
-ALONE = Limits(nodes=20_000, seconds=1.0)
+SECONDS_IN_ALL = 2.0
+OWN_SHARE = 0.1
+ENGINE_SECONDS = 0.5
+# a first workable crew needs no proof
+FIRST = Limits(nodes=60, seconds=0.2)
 
 
 @dataclass(frozen=True)
@@ -54,20 +60,42 @@ def _untied(category: Category) -> Category:
     )
 
 
-def phases_alone(program: Program, lower: Sequence[float] | None = None) -> list[PhaseAlone]:
-    """Every phase's cheapest crew on its own; `lower` asks for at least these lots per head count."""
-    return [_alone(program, t, lower) for t in range(len(program.phases))]
+def phases_alone(program: Program) -> list[PhaseAlone]:
+    """Every phase's cheapest crew on its own, for as many phases as time allows."""
+    until = monotonic() + SECONDS_IN_ALL
+    found = []
+    for t in range(len(program.phases)):
+        if monotonic() > until:
+            break
+        found.append(_alone(Program(phase_alone(program.plan, t))))
+    return found
 
 
-def _alone(program: Program, t: int, lower: Sequence[float] | None) -> PhaseAlone:
-    part = Program(phase_alone(program.plan, t))
+def _alone(part: Program) -> PhaseAlone:
     search = Search(part, grain=whole_grain(part))
-    box = search.box()
-    if lower is not None:
+    outcome = search.cheapest(Limits(nodes=5_000, seconds=OWN_SHARE))
+    if outcome.complete or outcome.best is None:
+        return PhaseAlone(outcome.bound, None if outcome.best is None else outcome.best.lots)
+    most = [int(outcome.best.objective / cost) if cost > 0 else UNLIMITED_LOTS for cost in part.matrix.cost]
+    matrix = Program(part.plan, most[: part.head_count]).matrix
+    bound = whole(matrix, EngineName.HIGHS, seconds=ENGINE_SECONDS).bound
+    return PhaseAlone(search.rounded(max(bound, outcome.bound)), outcome.best.lots)
+
+
+def mended(program: Program, lower: Sequence[int]) -> Lots | None:
+    """A crew of at least `lower` lots, each phase mended on its own; None where one cannot be."""
+    parts: list[Lots] = []
+    for t in range(len(program.phases)):
+        part = Program(phase_alone(program.plan, t))
+        search = Search(part, grain=whole_grain(part))
+        box = search.box()
         for j in range(len(program.categories)):
             box[0][j] = max(box[0][j], lower[program.head(j, t)])
-    outcome = search.cheapest(ALONE, box=box)
-    return PhaseAlone(outcome.bound, None if outcome.best is None else outcome.best.lots)
+        best = search.cheapest(FIRST, box=box).best
+        if best is None:
+            return None
+        parts.append(best.lots)
+    return tuple(lots[j] for j in range(len(program.categories)) for lots in parts)
 
 
 def tightened(program: Program, alone: Sequence[PhaseAlone]) -> Matrix:
