@@ -15,7 +15,6 @@ from desktop import figures
 from desktop.pictures.copyable import Copyable
 from desktop.theme import Size, Theme, current
 
-
 _IN_A_LINE = 6  # names of a legend side by side
 
 
