@@ -14,16 +14,21 @@ from desktop.pictures.copyable import plain_tip
 from desktop.theme import Size
 
 PATIENCE = 150  # ms: an answer that comes at once never makes the headline flicker
-_BUTTONS = {Action.GO_TO: messages.GO_THERE, Action.ASK_AGAIN: messages.ASK_AGAIN}
+_BUTTONS = {
+    Action.GO_TO: messages.GO_THERE,
+    Action.ASK_AGAIN: messages.ASK_AGAIN,
+    Action.MEND: messages.WHAT_HELPS,
+}
 
 
 class HeadlineBar(QFrame):
     """Always true: what is out of date looks it within 150 ms, and a fresh answer stands at once.
 
-    `go_to(place)` asks to show an entry of the plan.
+    `go_to(place)` asks to show an entry of the plan, `mend()` what is to be mended.
     """
 
     go_to = Signal(str)
+    mend = Signal()
 
     def __init__(self, document: Document, answers: Answers, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -116,6 +121,8 @@ class HeadlineBar(QFrame):
     def _act(self) -> None:
         if self._said.action is Action.GO_TO:
             self.go_to.emit(self._said.place)
+        elif self._said.action is Action.MEND:
+            self.mend.emit()
         elif self._said.action is Action.ASK_AGAIN:
             self._answers.again()
 

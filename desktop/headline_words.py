@@ -20,6 +20,7 @@ class Action(StrEnum):
     NONE = ""
     GO_TO = "go to"
     ASK_AGAIN = "ask again"
+    MEND = "mend"
 
 
 @dataclass(frozen=True)
@@ -85,6 +86,8 @@ def _answered(document: Document, answers: Answers) -> Headline:
     crew, facts = _crew_and_facts(plan, answer)
     if answers.stale:
         return Headline(crew, facts, *_waiting(answers), "faint", False, note, action, place)
+    if answer.state is State.IMPOSSIBLE and not place:
+        action = Action.MEND
     state, sign, tone = _state(plan, answer, answers.status)
     return Headline(crew, facts, state, sign, tone, True, note, action, place, _tooltip(answer))
 

@@ -59,6 +59,7 @@ LEAVE = "{count} leave"
 AND_MORE = "and {count} more"
 GO_THERE = "Go there"
 ASK_AGAIN = "Ask again"
+WHAT_HELPS = "What helps"
 HEADLINE = "Headline"
 
 # grids

@@ -9,7 +9,7 @@ from importlib import import_module
 from PySide6.QtCore import QSize, Qt, Signal
 from PySide6.QtWidgets import QListWidget, QListWidgetItem, QStackedWidget, QWidget
 
-from desktop import messages, theme
+from desktop import mend_words, messages, theme
 from desktop.answers import Answers
 from desktop.document import Document
 
@@ -20,7 +20,8 @@ Factory = Callable[[Document, Answers], QWidget]
 class PageSpec:
     """One page: its title, what it is for, the keys that lead to it, and where its class is.
 
-    The module is imported when the page is first shown, so that the window is there sooner.
+    The module is imported when the page is first shown, so that the window is there sooner. One that is
+    there `on_demand` stands in the rail only while it has something to show.
     """
 
     title: str
@@ -28,6 +29,7 @@ class PageSpec:
     shortcut: str
     module: str
     name: str
+    on_demand: bool = False
 
     def make(self, document: Document, answers: Answers) -> QWidget:
         """A new page."""
@@ -36,10 +38,12 @@ class PageSpec:
 
 
 _HOME = "desktop.pages"
+MEND = mend_words.TITLE
 OUTPUT = "The page"  # what is signed: printed and written to PDF from here
 
 PAGES: tuple[PageSpec, ...] = (
     PageSpec("Plan", "What is asked", "Ctrl+1", f"{_HOME}.plan_page", "PlanPage"),
+    PageSpec(MEND, mend_words.TOOLTIP, "Ctrl+Shift+M", f"{_HOME}.mend_page", "MendPage", on_demand=True),
     PageSpec("Crew", "Who, and how many", "Ctrl+2", f"{_HOME}.crew_page", "CrewPage"),
     PageSpec("Rounding", "What rounding breaks, and why", "Ctrl+3", f"{_HOME}.rounding_page", "RoundingPage"),
     PageSpec("Whole people", "What whole people cost", "Ctrl+4", f"{_HOME}.cost_page", "CostPage"),
@@ -59,11 +63,18 @@ class Rail(QListWidget):
         self.setObjectName("rail")
         self.setAccessibleName(messages.PAGES)
         self.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        self._on_demand = [at for at, page in enumerate(pages) if page.on_demand]
         for page in pages:
             item = QListWidgetItem(page.title, self)
             item.setToolTip(f"{page.tooltip} ({page.shortcut})")
         self.setCurrentRow(0)
+        self.offer(False)
         self.fit()
+
+    def offer(self, wanted: bool) -> None:
+        """Show or hide the pages that are there on demand; the one in front stays."""
+        for at in self._on_demand:
+            self.item(at).setHidden(not wanted and at != self.currentRow())
 
     def fit(self) -> None:
         """As wide as the longest title, after the zoom changed."""

@@ -18,14 +18,16 @@ from PySide6.QtWidgets import (
 import resources
 from desktop import messages
 from desktop.answers import Answers
+from desktop.conflict_watch import ConflictWatch
 from desktop.document import Document
 from desktop.edit_menu import EditMenu
 from desktop.files import Files
 from desktop.headline import HeadlineBar
 from desktop.look import Look
 from desktop.menus import WindowActions, add, fill_file_menu, fill_help_menu, fill_view_menu, menu_of
+from desktop.mending import is_anything
 from desktop.pages.page_parts import thin_rule
-from desktop.rail import OUTPUT, PAGES, PageSpec, PageStack, Rail
+from desktop.rail import MEND, OUTPUT, PAGES, PageSpec, PageStack, Rail
 from desktop.recovery import Recovery
 from desktop.traffic import Traffic
 from desktop.workers import Workers
@@ -53,6 +55,7 @@ class Window(QMainWindow):
         self.headline = HeadlineBar(document, self.answers)
         self.rail = Rail(pages)
         self.stack = PageStack(pages, document, self.answers)
+        self.watch = ConflictWatch(document, self.answers, self)
         self.setWindowIcon(QIcon(str(resources.icon_path())))
         self._lay_out()
         self._fill_menus()
@@ -76,6 +79,11 @@ class Window(QMainWindow):
         show = getattr(page, "show_place", None)
         if show is not None:
             show(place)
+
+    def show_what_helps(self) -> None:
+        """Show why there is no crew; the keys stay with the rail, so that none makes a repair unseen."""
+        self.page(MEND)
+        self.rail.setFocus()
 
     def print_page(self) -> None:
         """Print the recommendation, if there is one to print."""
@@ -137,6 +145,10 @@ class Window(QMainWindow):
     def _connect(self) -> None:
         self.rail.currentRowChanged.connect(self.show_page)
         self.headline.go_to.connect(self.go_to)
+        self.headline.mend.connect(self.show_what_helps)
+        self.watch.impossible.connect(self.show_what_helps)
+        for changed in (self.answers.changed, self.document.changed, self.rail.currentRowChanged):
+            changed.connect(self._offer_mending)
         self.stack.shown.connect(self._on_page)
         self.files.told.connect(self.tell)
         self.traffic.told.connect(self.tell)
@@ -146,11 +158,17 @@ class Window(QMainWindow):
         self._look.changed.connect(self.rail.fit)
 
     def _on_page(self, page: QWidget) -> None:
-        """A page that can remark on entries is heard, once."""
-        remarked = getattr(page, "remarked", None)
-        if remarked is not None and not page.property("heard"):
-            remarked.connect(self.tell)
-            page.setProperty("heard", True)
+        """A page that can remark on entries, or lead to one, is heard, once."""
+        if page.property("heard"):
+            return
+        for name, hear in (("remarked", self.tell), ("go_to", self.go_to)):
+            said = getattr(page, name, None)
+            if said is not None:
+                said.connect(hear)
+        page.setProperty("heard", True)
+
+    def _offer_mending(self) -> None:
+        self.rail.offer(is_anything(self.document, self.answers))
 
     def _name_window(self) -> None:
         self.setWindowTitle(f"{self.files.name}[*] \u2013 {messages.PROGRAM}")
