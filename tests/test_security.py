@@ -9,7 +9,9 @@ from pathlib import Path
 import pytest
 
 ROOT = Path(__file__).resolve().parents[1]
-SOURCES = sorted(path for house in ("solver", "desktop", "resources") for path in (ROOT / house).rglob("*.py"))
+SOURCES = sorted(
+    path for house in ("solver", "desktop", "resources") for path in (ROOT / house).rglob("*.py")
+)
 
 NETWORK = {
     "aiohttp", "asyncio", "ftplib", "http", "httpx", "imaplib", "poplib", "requests", "smtplib", "socket",

@@ -38,13 +38,23 @@ def main() -> int:
 def build() -> None:
     """Run PyInstaller on the recipe."""
     recipe = HERE / "full-complement.spec"
-    options = ["--noconfirm", "--log-level", "WARN", "--distpath", str(DIST), "--workpath", str(ROOT / "build")]
+    options = [
+        "--noconfirm",
+        "--log-level",
+        "WARN",
+        "--distpath",
+        str(DIST),
+        "--workpath",
+        str(ROOT / "build"),
+    ]
     subprocess.run([sys.executable, "-m", "PyInstaller", *options, str(recipe)], check=True, cwd=ROOT)
 
 
 def megabytes(place: Path) -> float:
     """The size of a file, or of all files in a folder, links counted once."""
-    files = [place] if place.is_file() else [p for p in place.rglob("*") if p.is_file() and not p.is_symlink()]
+    files = (
+        [place] if place.is_file() else [p for p in place.rglob("*") if p.is_file() and not p.is_symlink()]
+    )
     return sum(p.stat().st_size for p in files) / 1e6
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import sys
 import sysconfig
 from collections.abc import Iterable
 from importlib import metadata
@@ -44,7 +45,9 @@ def _is_licence(name: str) -> bool:
 
 def _python() -> Path:
     places = (Path(sysconfig.get_path("stdlib")), Path(sys.base_prefix))
-    found = [place / name for place in places for name in ("LICENSE.txt", "LICENSE") if (place / name).is_file()]
+    found = [
+        place / name for place in places for name in ("LICENSE.txt", "LICENSE") if (place / name).is_file()
+    ]
     if not found:
         raise LookupError("Python is installed without its licence text")
     return found[0]
