@@ -1,8 +1,8 @@
 """Build the self-contained folder and try it: `python resources/bundle/build.py [--archive]`.
 
 Needs the extra `bundle` of this project installed. Leaves `dist/full-complement/`; with --archive also
-`dist/full-complement.tar.xz`. Prints sizes and how long a start takes. On Linux the result is tried with nothing
-but itself within reach; elsewhere the build is prepared and untested.
+`dist/full-complement.tar.xz`. Prints sizes and how long a start takes. On Linux the result is tried with
+nothing but itself within reach; elsewhere the build is prepared and untested.
 """
 
 from __future__ import annotations
@@ -41,7 +41,7 @@ def build() -> None:
     options = [
         "--noconfirm",
         "--log-level",
-        "WARN",
+        "ERROR",
         "--distpath",
         str(DIST),
         "--workpath",

@@ -1,4 +1,4 @@
-"""The licence texts that go with the bundle: those in `resources/licences`, and those of every installed part."""
+"""The licence texts that go with the bundle: those in `resources/licences`, and those of every part."""
 
 from __future__ import annotations
 
@@ -15,7 +15,7 @@ WITHOUT_TEXT = ("PySide6-Essentials", "shiboken6", "full-complement")
 
 
 def write_licences(parts: Iterable[str], folder: Path) -> list[Path]:
-    """Write one file per licence text into `folder`; returns them. Raises LookupError for a part without one."""
+    """Write one file per text into `folder`; returns them. Raises LookupError for a part without one."""
     folder.mkdir(parents=True, exist_ok=True)
     texts = {path.stem: path.read_text("utf-8") for path in OURS.glob("*.txt")}
     texts["python"] = _python().read_text("utf-8")

@@ -1,4 +1,4 @@
-"""The native solvers of the bundle, file by file: what python-mip loads at run time, in the folders it looks in."""
+"""The native solvers of the bundle: what python-mip loads at run time, in the folders it looks in."""
 
 from __future__ import annotations
 

@@ -60,7 +60,7 @@ class Trial:
         assert "Proved cheapest" in answer, answer
 
     def window(self, example: Path) -> None:
-        """The window itself, drawn into memory, until it has an answer; a second start finds files read before."""
+        """The window, drawn into memory, until it has an answer; a second start finds files read before."""
         for name in ("first", "second"):
             print(f"{name} start to answer: {self._start_to_answer(example):.2f} s")
 

@@ -1,4 +1,4 @@
-"""Names that look like HTML are shown as typed: on every page of the window, in tooltips, in pictures, on paper."""
+"""Names that look like HTML are shown as typed: on every page, in tooltips, in pictures, on paper."""
 
 from dataclasses import replace
 
