@@ -1,7 +1,8 @@
 """The worker: one JSON request a line on standard input, framed JSON replies on standard output.
 
 A reply is an RFC 7464 record: the byte 0x1E, JSON, a line feed. Whatever else comes out of native code
-is noise to be skipped. Standard input closing ends the process.
+is noise to be skipped. Standard input closing ends the process, also in the middle of an answer: at once
+where the process that asked is gone, else (a request piped in) unless the answer is there SOON.
 """
 
 from __future__ import annotations
@@ -9,12 +10,15 @@ from __future__ import annotations
 import json
 import os
 import sys
+import threading
 import traceback
 from collections.abc import Callable, Iterable
 from dataclasses import dataclass
 from decimal import Decimal
 from functools import partial
 from os import fdopen
+from queue import SimpleQueue
+from time import monotonic, sleep
 from typing import IO, Any
 
 from solver.answer import to_json
@@ -24,6 +28,9 @@ from solver.questions import QUESTIONS, BadOption, Question
 from solver.unanswered import Unanswered
 
 RECORD = "\x1e"
+SOON = 2.0  # seconds an answer may still take after the input closed
+LOOK = 0.05  # seconds between looks whether the asking process is still there
+CUT_SHORT = 1  # exit code when a request was left without its answer
 
 
 class BadRequest(ValueError):
@@ -111,14 +118,28 @@ def _reply(replies: IO[str], number: Any, part: str, value: Any) -> None:
 
 def main() -> int:
     """Serve standard input until it closes, or until nobody reads the replies."""
+    parent = os.getppid()
     replies = fdopen(quiet_native_output(), "w", encoding="utf-8", newline="\n")
-    requests = fdopen(sys.stdin.fileno(), "r", encoding="utf-8", errors="replace", closefd=False)
+    requests: SimpleQueue[str] = SimpleQueue()
     _warm_up()
+    threading.Thread(target=_read, args=(requests, parent), daemon=True).start()
     try:
-        serve(iter(requests.readline, ""), replies)
+        serve(iter(requests.get, ""), replies)
     except BrokenPipeError:
-        os.dup2(1, replies.fileno())  # what is left to be written goes where native output goes
+        os._exit(0)  # nobody listens: neither to what is left to be written nor to how it ends
     return 0
+
+
+def _read(requests: SimpleQueue[str], parent: int) -> None:
+    """Pass requests on, "" after the last; a running solve cannot be told to stop, so the process ends."""
+    lines = fdopen(sys.stdin.fileno(), "r", encoding="utf-8", errors="replace", closefd=False)
+    for line in iter(lines.readline, ""):
+        requests.put(line)
+    requests.put("")
+    until = monotonic() + SOON
+    while monotonic() < until and os.getppid() == parent:
+        sleep(LOOK)
+    os._exit(CUT_SHORT)
 
 
 def _warm_up() -> None:

@@ -11,6 +11,7 @@ import subprocess
 import sys
 from collections.abc import Iterator
 from pathlib import Path
+from time import monotonic
 from typing import Any
 
 import numpy as np
@@ -20,14 +21,29 @@ import solver
 from solver.answer import Answer, State, from_json, to_json
 from solver.planfile import dump_plan
 from solver.questions import QUESTIONS
-from solver.service import serve
+from solver.service import CUT_SHORT, SOON, serve
 from solver.solve import solve
 from solver.warmup import TINY
+from tests.family import family_plan
+from tests.processes import PROC, engines_of, wait_for, wait_until_gone
 from tests.solver.full_plans import full_plan
 
 ROOT = Path(solver.__file__).parent.parent
 ENDINGS = {"answer", "problems", "refused", "failed"}
 TINY_DOCUMENT = json.loads(dump_plan(TINY))
+# nobody proves this one within a minute
+LONG_DOCUMENT = json.loads(dump_plan(family_plan(20, 8, 52, 0)))
+needs_proc = pytest.mark.skipif(not PROC.is_dir(), reason="processes are looked up in /proc")
+# a process that asks a worker for something long, tells the number of the worker, and waits
+ASKER = """
+import subprocess, sys
+worker = subprocess.Popen([sys.executable, "-m", "solver", "worker"], stdin=subprocess.PIPE, text=True,
+                          stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL)
+worker.stdin.write(sys.stdin.readline())
+worker.stdin.flush()
+print(worker.pid, flush=True)
+worker.wait()
+"""
 
 
 def request(number: Any = 1, ask: Any = "solve", plan: Any = TINY_DOCUMENT, **more: Any) -> str:
@@ -140,11 +156,11 @@ class TestRequests:
 class Worker:
     """A worker process; reads records with a deadline."""
 
-    def __init__(self) -> None:
+    def __init__(self, replies: int = subprocess.PIPE) -> None:
         self.process = subprocess.Popen(
             [sys.executable, "-m", "solver", "worker"],
             stdin=subprocess.PIPE,
-            stdout=subprocess.PIPE,
+            stdout=replies,
             stderr=subprocess.PIPE,
             cwd=ROOT,
             bufsize=0,
@@ -173,9 +189,24 @@ class Worker:
                 return record
 
 
+def begin_long_solve(worker: Worker) -> list[int]:
+    """Ask for what takes a minute; the processes of the engines, once they are at it."""
+    worker.send(request(1, plan=LONG_DOCUMENT).encode())
+    return wait_for(lambda: engines_of(worker.process.pid))
+
+
 @pytest.fixture
 def worker() -> Iterator[Worker]:
     made = Worker()
+    yield made
+    made.process.kill()
+    made.process.communicate()
+
+
+@pytest.fixture
+def unread() -> Iterator[Worker]:
+    """A worker whose replies nobody needs to read for it to go on."""
+    made = Worker(subprocess.DEVNULL)
     yield made
     made.process.kill()
     made.process.communicate()
@@ -210,6 +241,45 @@ class TestTheProcess:
         out, errors = worker.process.communicate(timeout=30)
         assert b'"refused"' in out
         assert (worker.process.returncode, errors) == (0, b"")
+
+    def test_a_request_piped_in_gets_its_answer_though_the_input_closes_at_once(self, worker: Worker) -> None:
+        out, errors = worker.process.communicate(request(1).encode() + b"\n", timeout=30)
+        parts = [json.loads(record)["part"] for record in out.split(b"\x1e")[1:]]
+        assert parts == ["fractional", "answer"]
+        assert (worker.process.returncode, errors) == (0, b"")
+
+    @needs_proc
+    def test_ends_soon_when_its_input_closes_in_the_middle_of_a_long_answer(self, unread: Worker) -> None:
+        engines = begin_long_solve(unread)
+        assert unread.process.stdin is not None
+        unread.process.stdin.close()
+        unread.process.stdin = None
+        assert unread.process.wait(timeout=10) == CUT_SHORT
+        wait_until_gone(engines)
+
+    @needs_proc
+    def test_takes_its_engines_along_when_killed(self, unread: Worker) -> None:
+        engines = begin_long_solve(unread)
+        unread.process.kill()
+        unread.process.wait()
+        wait_until_gone(engines)
+
+    @needs_proc
+    def test_ends_at_once_when_who_asked_is_gone(self) -> None:
+        asker = subprocess.Popen(
+            [sys.executable, "-c", ASKER], cwd=ROOT, stdin=subprocess.PIPE, stdout=subprocess.PIPE, text=True
+        )
+        assert asker.stdin is not None
+        assert asker.stdout is not None
+        asker.stdin.write(request(1, plan=LONG_DOCUMENT) + "\n")
+        asker.stdin.flush()
+        worker = int(asker.stdout.readline())
+        engines = wait_for(lambda: engines_of(worker))
+        asker.kill()
+        asker.communicate()
+        began = monotonic()
+        wait_until_gone([worker, *engines])
+        assert monotonic() - began < SOON / 2
 
     @pytest.mark.skipif(sys.platform == "win32", reason="Windows has no signals to end a process by")
     def test_can_be_ended_at_once(self, worker: Worker) -> None:
