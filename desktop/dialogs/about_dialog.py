@@ -12,6 +12,7 @@ from PySide6.QtWidgets import QWidget
 import resources
 from desktop import messages
 from desktop.dialogs.help_dialog import TextDialog
+from desktop.state_folder import state_folder
 from solver.version import program_version
 
 # what the program is made with: distribution -> its licence in words
@@ -40,6 +41,7 @@ def about_dialog(parent: QWidget | None) -> TextDialog:
     )
     html = (
         f"<h3>{messages.PROGRAM} {escape(program_version())}</h3><p>{escape(messages.ABOUT)}</p>"
+        f"<p>{escape(messages.KEPT_IN.format(folder=state_folder()))}</p>"
         f'<table cellspacing="4">{rows}</table>{texts}'
     )
     return TextDialog(messages.ABOUT_TITLE, html, parent)

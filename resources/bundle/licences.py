@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import shutil
+import subprocess
 import sys
 import sysconfig
 from collections.abc import Iterable
@@ -24,6 +26,29 @@ def write_licences(parts: Iterable[str], folder: Path) -> list[Path]:
     for name, text in texts.items():
         (folder / f"{name}.txt").write_text(text, "utf-8")
     return sorted(folder / f"{name}.txt" for name in texts)
+
+
+def system_licences(libraries: Iterable[str], folder: Path) -> list[Path]:
+    """The same for libraries of the system that are shipped, from Debian's copyright files; elsewhere none."""
+    if shutil.which("dpkg") is None:
+        return []
+    return [_copied(package, folder) for package in sorted({_package(library) for library in libraries})]
+
+
+def _package(library: str) -> str:
+    """Raises LookupError for a library that no package of the system brought."""
+    places = (library, str(Path(library).resolve()), library.removeprefix("/usr"))
+    for place in places:
+        told = subprocess.run(["dpkg", "-S", place], capture_output=True, encoding="utf-8", check=False)
+        if told.returncode == 0:
+            return told.stdout.split(":")[0]
+    raise LookupError(f"{library} belongs to no package of the system")
+
+
+def _copied(package: str, folder: Path) -> Path:
+    text = folder / f"system-{package}.txt"
+    shutil.copyfile(Path("/usr/share/doc") / package / "copyright", text)
+    return text
 
 
 def _texts_of(part: str, known: set[str]) -> dict[str, str]:
