@@ -265,7 +265,7 @@ class Answers(QObject):
         if reply.part == "better":
             self._hold(plan, reply.value)
             self._set(Status.SOLVING)
-        elif reply.part == "fractional":
+        elif reply.part == "fractional" and reply.value is not None:
             self._fractional = reply.value
             self._floor_due.start(max(0, WORTH_SHOWING - int(self._since.elapsed())))
 

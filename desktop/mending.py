@@ -51,8 +51,11 @@ def is_anything(document: Document, answers: Answers) -> bool:
 
 def said_of(plan: Plan, line: Conflicting) -> str:
     """A line in the planner's words, with its phase where there are several."""
+    said = line.says
+    if not said.startswith(line.line):  # names stay as they were typed
+        said = said[:1].upper() + said[1:]
     several = line.phase is not None and len(plan.phases) > 1
-    return say.line_in(line.says, line.phase or "") if several else line.says
+    return say.line_in(said, line.phase or "") if several else said
 
 
 def _refused(document: Document) -> Iterator[Entry]:

@@ -47,7 +47,9 @@ def _progress(raw: Any) -> Progress:
     return Progress(str(raw["says"])[:200], None if raw["done"] is None else float(raw["done"]))
 
 
-def _fractional(raw: Any) -> Fractional:
+def _fractional(raw: Any) -> Fractional | None:
+    if raw["crew"] is None:
+        return None  # not even fractional people can do it
     crew = {str(name): tuple(float(n) for n in counts) for name, counts in raw["crew"].items()}
     return Fractional(float(raw["floor"]), crew)
 

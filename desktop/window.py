@@ -24,8 +24,8 @@ from desktop.edit_menu import EditMenu
 from desktop.files import Files
 from desktop.headline import HeadlineBar
 from desktop.look import Look
-from desktop.menus import WindowActions, add, fill_file_menu, fill_help_menu, fill_view_menu, menu_of
 from desktop.mending import is_anything
+from desktop.menus import WindowActions, add, fill_file_menu, fill_help_menu, fill_view_menu, menu_of
 from desktop.pages.page_parts import thin_rule
 from desktop.rail import MEND, OUTPUT, PAGES, PageSpec, PageStack, Rail
 from desktop.recovery import Recovery

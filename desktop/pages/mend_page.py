@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
+from functools import partial
 
 from PySide6.QtCore import Qt, QTimer, Signal
 from PySide6.QtGui import QShowEvent
@@ -19,6 +20,7 @@ from desktop.theme import Size, current
 from solver.answer import Conflict, Conflicting
 from solver.repair import apply_repair, can_repair
 
+_BUTTON = 12  # width of a button, in steps of the grid
 _MOST = 100  # entries that are shown; the rest is counted
 
 
@@ -118,7 +120,7 @@ class MendPage(QWidget):
             rows.addWidget(thin_rule())
             button = QPushButton(say.GO_THERE)
             name = say.GO_TO.format(where=entry.where)
-            go = self._button(button, name, lambda place=entry.place: self.go_to.emit(place))
+            go = self._button(button, name, partial(self.go_to.emit, entry.place))
             rows.addWidget(_row(entry.says, "", go))
         if len(entries) > _MOST:
             rows.addWidget(label(say.MORE.format(count=len(entries) - _MOST), tone="faint"))
@@ -146,16 +148,18 @@ class MendPage(QWidget):
 
 
 def _row(said: str, below: str, button: QPushButton | None) -> QWidget:
+    """A button, or the room of one, before what it is about."""
     made = QFrame()
     texts = QVBoxLayout()
     texts.setSpacing(0)
     texts.addWidget(label(said))
     if below:
-        texts.addWidget(label(below, tone="faint"))
+        texts.addWidget(label(below, tone="faint" if button is None else None))
     across = QHBoxLayout(made)
     across.setContentsMargins(0, 0, 0, 0)
     across.setSpacing(current().px(2))
+    first: QWidget = QWidget() if button is None else button
+    first.setFixedWidth(current().px(_BUTTON))
+    across.addWidget(first)
     across.addLayout(texts, 1)
-    if button is not None:
-        across.addWidget(button, 0, Qt.AlignmentFlag.AlignTop)
     return made
