@@ -14,7 +14,7 @@ from solver.engine import EngineName, WholeStatus, whole
 from solver.matrix import Matrix
 from solver.program import Program
 from solver.race import Standing, engines
-from solver.rounding import snapped
+from solver.rounding import half_up, snapped
 from solver.search import Found, Lots, Search, tie_width
 from solver.tiebreak import cheapest_preferred, preferred
 from solver.tightening import mended, phases_alone, tightened
@@ -63,9 +63,7 @@ class Prover:
             engines().warm()
         start = self._first_crew(fractional, effort.start)
         if several:
-            start = start or self._mended(fractional)
-            if start is not None and effort.heard is not None:
-                effort.heard(Proved(State.BEST_FOUND, None, start, self.search.root_bound()))
+            start = self._first_of_phases(fractional, start, effort)
         program, search = self._tightened(self._caps(start))
         matrix = program.matrix
         if several:
@@ -86,9 +84,23 @@ class Prover:
                 found = _cheaper(found, Found(lots, objective))
         return found
 
-    def _mended(self, fractional: Sequence[float]) -> Found | None:
-        """The fractional crew rounded up, each phase then mended on its own by additions."""
-        lots = mended(self.program, [ceil(snapped(v)) for v in fractional])
+    def _first_of_phases(
+        self, fractional: Sequence[float], start: Found | None, effort: Effort
+    ) -> Found | None:
+        """A crew for a start: nearest costs least after mending (20x8x52: 3.52 million, up 4.17), down now
+        and then less (10x4x12)."""
+        for rounding in (half_up, floor, ceil):
+            if rounding is ceil and start is not None:
+                break
+            better = _cheaper(start, self._mended(fractional, rounding))
+            if better is not start and better is not None and effort.heard is not None:
+                effort.heard(Proved(State.BEST_FOUND, None, better, self.search.root_bound()))
+            start = better
+        return start
+
+    def _mended(self, fractional: Sequence[float], rounding: Callable[[float], int]) -> Found | None:
+        """The fractional crew rounded, each phase then mended on its own by additions."""
+        lots = mended(self.program, [rounding(snapped(v)) for v in fractional])
         objective = None if lots is None else self.search.evaluate(lots)
         return None if lots is None or objective is None else Found(lots, objective)
 
@@ -185,7 +197,7 @@ class _Contest:
         """Every column of the best crew so far, for engines that take a start."""
         if self._best is None or self._search.evaluate(self._best.lots) is None:
             return None
-        return [float(v) for v in self._search.relaxation.x]
+        return [float(v) for v in self._search.relaxation.x[: self._search.matrix.width]]
 
     def _crew(self, x: Sequence[float]) -> float | None:
         found = self._prover.checked(x)

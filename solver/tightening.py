@@ -24,8 +24,9 @@ NONE = Decimal(0)
 SECONDS_IN_ALL = 2.0
 OWN_SHARE = 0.1
 ENGINE_SECONDS = 0.5
-# a first workable crew needs no proof
-FIRST = Limits(nodes=60, seconds=0.2)
+# a first workable crew needs no proof: some 60 nodes a phase, fewer where there are very many phases
+FIRST_NODES_IN_ALL = 720
+FIRST_NODES = (12, 60)
 
 
 @dataclass(frozen=True)
@@ -85,13 +86,15 @@ def _alone(part: Program) -> PhaseAlone:
 def mended(program: Program, lower: Sequence[int]) -> Lots | None:
     """A crew of at least `lower` lots, each phase mended on its own; None where one cannot be."""
     parts: list[Lots] = []
+    fewest, most = FIRST_NODES
+    limits = Limits(nodes=min(max(fewest, FIRST_NODES_IN_ALL // len(program.phases)), most))
     for t in range(len(program.phases)):
         part = Program(phase_alone(program.plan, t))
         search = Search(part, grain=whole_grain(part))
         box = search.box()
         for j in range(len(program.categories)):
             box[0][j] = max(box[0][j], lower[program.head(j, t)])
-        best = search.cheapest(FIRST, box=box).best
+        best = search.cheapest(limits, box=box).best
         if best is None:
             return None
         parts.append(best.lots)

@@ -22,6 +22,8 @@ from solver.search import Found, Lots, Search, tie_width
 LENGTH = 4
 FEWEST_PHASES = 8
 SECONDS_EACH = 0.5
+# more head counts than these in a stretch and HiGHS finds nothing in half a second
+MOST_HEADS = 48
 
 
 class Windows:
@@ -32,6 +34,8 @@ class Windows:
         self._search = search
         self._queue: Iterator[int] = iter(())
         self._improved = True
+        fitting = MOST_HEADS // max(1, len(program.categories))
+        self._length = max(2, min(LENGTH, fitting))
 
     @property
     def useful(self) -> bool:
@@ -46,7 +50,7 @@ class Windows:
             if not self._improved:
                 return None
             self._improved = False
-            self._queue = iter(range(0, len(self._program.phases) - 1, LENGTH // 2))
+            self._queue = iter(range(0, len(self._program.phases) - 1, self._length // 2))
             return best
         found = self._reoptimised(best, first)
         if found is None or found.objective >= best.objective - tie_width(best.objective):
@@ -55,7 +59,7 @@ class Windows:
         return found
 
     def _reoptimised(self, best: Found, first: int) -> Found | None:
-        last = min(first + LENGTH, len(self._program.phases))
+        last = min(first + self._length, len(self._program.phases))
         part = self._part(best.lots, first, last)
         x = whole(part.matrix, EngineName.HIGHS, seconds=SECONDS_EACH).x
         if x is None:
