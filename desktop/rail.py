@@ -51,6 +51,13 @@ PAGES: tuple[PageSpec, ...] = (
     PageSpec("Near best", "Other good crews", "Ctrl+6", f"{_HOME}.near_page", "NearPage"),
     PageSpec("Workload", "The crew at other workloads", "Ctrl+7", f"{_HOME}.steps_page", "StepsPage"),
     PageSpec("Crew map", "All whole crews of two categories", "Ctrl+8", f"{_HOME}.map_page", "MapPage"),
+    PageSpec(
+        "Attendance",
+        "Will enough of them be there?",
+        "Ctrl+Shift+A",
+        f"{_HOME}.attendance_page",
+        "AttendancePage",
+    ),
     PageSpec(OUTPUT, "As it is printed", "Ctrl+9", f"{_HOME}.preview_page", "PreviewPage"),
 )
 

@@ -60,6 +60,20 @@ def _scrolling(inside: QWidget) -> QScrollArea:
     return made
 
 
+class _Inside(QWidget):
+    """As high as its content is at its width; Qt would take what wrapped texts need at their narrowest."""
+
+    def event(self, event: QEvent) -> bool:
+        """Follow the content and the width."""
+        done = super().event(event)
+        layout = self.layout()
+        if layout is not None and event.type() in (QEvent.Type.LayoutRequest, QEvent.Type.Resize):
+            high = layout.totalHeightForWidth(self.width()) if layout.hasHeightForWidth() else 0
+            if high != self.minimumHeight():
+                self.setMinimumHeight(high)
+        return done
+
+
 class AnswerPage(QWidget):
     """A page about the answer: a scrolled body, what to do where there is none, the caution at the foot.
 
@@ -70,7 +84,7 @@ class AnswerPage(QWidget):
         super().__init__(parent)
         self.answers = answers
         self.notice = label(size=Size.BODY, tone="faint")
-        self.inside = QWidget()
+        self.inside = _Inside()
         self.body = QVBoxLayout(self.inside)
         self.caution = label(CAUTION, Size.SMALL, "faint")
         self._holder = _scrolling(self.inside)
