@@ -27,6 +27,7 @@ ENGINE_SECONDS = 0.5
 # a first workable crew needs no proof: some 60 nodes a phase, fewer where there are very many phases
 FIRST_NODES_IN_ALL = 720
 FIRST_NODES = (12, 60)
+STUBBORN = Limits(nodes=500)
 
 
 @dataclass(frozen=True)
@@ -94,7 +95,7 @@ def mended(program: Program, lower: Sequence[int]) -> Lots | None:
         box = search.box()
         for j in range(len(program.categories)):
             box[0][j] = max(box[0][j], lower[program.head(j, t)])
-        best = search.cheapest(limits, box=box).best
+        best = search.cheapest(limits, box=box).best or search.cheapest(STUBBORN, box=box).best
         if best is None:
             return None
         parts.append(best.lots)
