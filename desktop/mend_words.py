@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from solver.review import quoted
+
 TITLE = "To mend"
 TOOLTIP = "What keeps the plan from having a crew"
 
@@ -43,5 +45,5 @@ def entry(where: str, says: str) -> str:
 
 
 def refused(where: str, text: str, reason: str) -> str:
-    """A refused entry."""
-    return f"{where}: {text!r} \u2013 {reason}"
+    """A refused entry; most reasons quote what was typed."""
+    return f"{where}: {reason}" if text in reason else f"{where}: {quoted(text)} \u2013 {reason}"
