@@ -14,6 +14,7 @@ import resources
 from desktop import messages, recent
 from desktop.dialogs.about_dialog import about_dialog
 from desktop.dialogs.help_dialog import help_dialog
+from desktop.export import Export
 from desktop.files import Files
 from desktop.look import Look, Palette
 from desktop.rail import PageSpec
@@ -45,7 +46,9 @@ class WindowActions:
     close: Callable[[], object]
 
 
-def fill_file_menu(menu: QMenu, files: Files, traffic: Traffic, window: WindowActions) -> None:
+def fill_file_menu(
+    menu: QMenu, files: Files, traffic: Traffic, export: Export, window: WindowActions
+) -> None:
     """New, open, save, tables in and out, print, and leave."""
     add(menu, "&New", files.new, Keys.New)
     add(menu, "&Open...", files.ask_and_open, Keys.Open)
@@ -60,6 +63,7 @@ def fill_file_menu(menu: QMenu, files: Files, traffic: Traffic, window: WindowAc
     menu.addSeparator()
     add(menu, "&Import a table...", traffic.import_table, "Ctrl+Shift+I")
     add(menu, "Save a &template workbook...", traffic.save_template)
+    add(menu, "&Export...", export.ask, "Ctrl+E")
     menu.addSeparator()
     add(menu, "&Print the page...", window.print_page, Keys.Print)
     add(menu, "Save the page as P&DF...", window.save_pdf, "Ctrl+Shift+P")

@@ -27,7 +27,7 @@ class Traffic(QObject):
     def import_table(self) -> None:
         """Let the planner choose a table and say what it holds."""
         chosen, _ = QFileDialog.getOpenFileName(
-            self._window, say.CHOOSE_TABLE, str(self.folder()), say.TABLE_FILES
+            self._window, say.CHOOSE_TABLE, str(start_folder(self._document)), say.TABLE_FILES
         )
         if chosen:
             self.read(Path(chosen))
@@ -51,7 +51,7 @@ class Traffic(QObject):
         """Write a workbook with the headers that the import understands."""
         from solver.tableimport import write_template
 
-        start = str(self.folder() / say.TEMPLATE_NAME)
+        start = str(start_folder(self._document) / say.TEMPLATE_NAME)
         chosen, _ = QFileDialog.getSaveFileName(self._window, say.TEMPLATE, start, say.TEMPLATE_FILES)
         if not chosen:
             return
@@ -63,7 +63,8 @@ class Traffic(QObject):
         else:
             self.told.emit(say.TEMPLATE_SAVED.format(name=path.name))
 
-    def folder(self) -> Path:
-        """Where dialogs start: beside the plan, else beside the latest one."""
-        path = self._document.path or next(iter(recent.recent()), None)
-        return path.parent if path else Path.home()
+
+def start_folder(document: Document) -> Path:
+    """Where dialogs start: beside the plan, else beside the latest one."""
+    path = document.path or next(iter(recent.recent()), None)
+    return path.parent if path else Path.home()

@@ -21,6 +21,7 @@ from desktop.answers import Answers
 from desktop.conflict_watch import ConflictWatch
 from desktop.document import Document
 from desktop.edit_menu import EditMenu
+from desktop.export import Export
 from desktop.files import Files
 from desktop.headline import HeadlineBar
 from desktop.look import Look
@@ -52,6 +53,7 @@ class Window(QMainWindow):
         self.recovery = Recovery(document, self)
         self.files = Files(document, self.recovery, self)
         self.traffic = Traffic(document, self)
+        self.export = Export(document, self.answers, self)
         self.headline = HeadlineBar(document, self.answers)
         self.rail = Rail(pages)
         self.stack = PageStack(pages, document, self.answers)
@@ -135,7 +137,7 @@ class Window(QMainWindow):
     def _fill_menus(self) -> None:
         bar = self.menuBar()
         pages = WindowActions(self.print_page, self.save_pdf, self.close)
-        fill_file_menu(menu_of(bar, "&File"), self.files, self.traffic, pages)
+        fill_file_menu(menu_of(bar, "&File"), self.files, self.traffic, self.export, pages)
         self.edit_menu = EditMenu(menu_of(bar, "&Edit"), self.document)
         view = menu_of(bar, "&View")
         fill_view_menu(view, self._pages, self.show_page, self._look)
@@ -152,6 +154,7 @@ class Window(QMainWindow):
         self.stack.shown.connect(self._on_page)
         self.files.told.connect(self.tell)
         self.traffic.told.connect(self.tell)
+        self.export.told.connect(self.tell)
         self.recovery.failed.connect(lambda why: self.tell(messages.NO_RECOVERY_COPY.format(why=why)))
         self.document.renamed.connect(self._name_window)
         self.document.changed.connect(self._name_window)
