@@ -26,7 +26,7 @@ TIP_CREW = "Where the crew comes from, and who is in it"
 COVERS = "Enough\non"
 TIP_COVERS = "Days on which those present cover the day; in the worst phase"
 TIP_COST = "Cost of the crew, where it is workable"
-MORE = "Above\nexact"
+MORE = "Above exact"
 TIP_MORE = "What it costs above the exact crew"
 WHO = "Who"
 NOT_WORKABLE = "not workable"
@@ -54,6 +54,11 @@ MODEL = (
     "counts as that part."
 )
 EXACT_CHANCES = "Chances are exact: every pattern of attendance was looked at."
+
+
+def over_unit(title: str, unit: str) -> str:
+    """A title with its unit below."""
+    return f"{title}\n({unit})"
 
 
 def drawn_chances(days: str, error: str) -> str:

@@ -145,7 +145,7 @@ class _Attending:
             yield self._judged(name, lots)
         for rank, lots in enumerate(self._near(), start=2):
             if lots not in shown:
-                yield self._judged(f"near-best, no. {rank}", lots)
+                yield self._judged(f"near-best {rank}", lots)
         if safe is not None:
             yield self._judged("safe", safe.lots)
 

@@ -51,9 +51,10 @@ def crew_columns(plan: Plan, exact: float) -> list[ShownColumn[CrewChance]]:
         return say.NOT_WORKABLE if crew.cost is None else figures.money(crew.cost)
 
     return [
+        ShownColumn(say.CREW, say.TIP_CREW, lambda c: c.name, left=True),
         ShownColumn(say.COVERS, say.TIP_COVERS, lambda c: share(c.covered), bold=True, tone="exact"),
-        ShownColumn(say.in_unit(say.COST, plan.currency), say.TIP_COST, cost),
-        ShownColumn(say.in_unit(say.MORE, plan.currency), say.TIP_MORE, more),
+        ShownColumn(say.over_unit(say.COST, plan.currency), say.TIP_COST, cost),
+        ShownColumn(say.over_unit(say.MORE, plan.currency), say.TIP_MORE, more),
     ]
 
 
@@ -140,7 +141,7 @@ class AttendancePage(QuestionPage):
             (self.missed_view, self.missed),
         ):
             view.setModel(table)
-        for view in (self.lines_view, self.missed_view):
+        for view in (self.crews_view, self.lines_view, self.missed_view):
             view.verticalHeader().hide()
         self.crews_view.setSelectionBehavior(QAbstractItemView.SelectionBehavior.SelectRows)
         self.crews_view.selectionModel().currentRowChanged.connect(self._on_crew)
@@ -255,7 +256,7 @@ class AttendancePage(QuestionPage):
         shown = tuple(c for c in detail.compared if not (own_changed and c.name == _OWN))
         if self.crews.rows != shown or not self.crews.columns:
             self.crews.show(shown, crew_columns(plan, detail.compared[0].cost or 0.0))
-            self.crews_view.share_width(range(3))
+            self.crews_view.share_width([0])
             self.crews_view.selectRow(0)
 
     def _show_phase(self) -> None:

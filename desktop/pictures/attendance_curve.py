@@ -104,7 +104,7 @@ class AttendanceCurve(PlotPicture):
 
     def _name(self, name: str, x: float, y: float, theme: Theme, bold: bool = False) -> None:
         colour = theme.exact if bold else theme.faint
-        text = pg.TextItem(name, color=colour, anchor=(-0.1, 0.9))
+        text = pg.TextItem(name, color=colour, anchor=(-0.15, 0.4) if bold else (0.5, 1.35))
         text.setFont(theme.font(Size.SMALL, bold=bold))
         text.setPos(x, y)
         self.plot.addItem(text)
