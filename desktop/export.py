@@ -8,7 +8,7 @@ from PySide6.QtCore import QObject, Signal
 from PySide6.QtWidgets import QFileDialog, QWidget
 
 from desktop import export_words as say
-from desktop.answers import Answers, Status
+from desktop.answers import Answers, Status, arithmetic
 from desktop.dialogs.question import tell
 from desktop.document import Document
 from desktop.traffic import start_folder
@@ -77,8 +77,8 @@ class Export(QObject):
         if question != NEAR or self._waiting is None or self._answers.progress(NEAR) is not None:
             return
         (path, plan), self._waiting = self._waiting, None
-        if plan is not self._document.plan or not self._has_answer():
-            self._refuse(path, say.CHANGED)
+        if arithmetic(plan) != arithmetic(self._document.plan) or not self._has_answer():
+            self.told.emit(say.CHANGED.format(name=path.name))  # no dialog in the way of who is typing
         else:
             self._write(path)
 

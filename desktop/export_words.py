@@ -18,4 +18,4 @@ NO_ANSWER = (
     "There is no answer yet to the plan as it stands. "
     "The integer program (.lp, .mps) can be exported without one."
 )
-CHANGED = "The plan was changed while its near-best crews were worked out. Export it again."
+CHANGED = "{name} was not written: the plan was changed meanwhile. Export it again."

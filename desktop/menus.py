@@ -63,7 +63,7 @@ def fill_file_menu(
     menu.addSeparator()
     add(menu, "&Import a table...", traffic.import_table, "Ctrl+Shift+I")
     add(menu, "Save a &template workbook...", traffic.save_template)
-    add(menu, "&Export...", export.ask, "Ctrl+E")
+    add(menu, "E&xport...", export.ask, "Ctrl+E")
     menu.addSeparator()
     add(menu, "&Print the page...", window.print_page, Keys.Print)
     add(menu, "Save the page as P&DF...", window.save_pdf, "Ctrl+Shift+P")
