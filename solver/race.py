@@ -46,6 +46,11 @@ class Host:
         self._number = 0
         self.busy = False
 
+    @property
+    def pid(self) -> int | None:
+        """Number of the process, None while there is none."""
+        return None if self._process is None else self._process.pid
+
     def warm(self) -> None:
         """Start the process if it is not running."""
         if self._process is not None and self._process.poll() is None:
