@@ -14,12 +14,13 @@ from PySide6.QtCore import QElapsedTimer, QObject, QTimer, Signal
 
 from desktop import messages
 from desktop.document import Document
+from desktop.effort import SECONDS, Effort
 from desktop.errand import Errand
 from desktop.inquiries import Inquiries
 from desktop.replies import Reply
 from desktop.understanding import Fractional, Progress
 from desktop.workers import Workers
-from solver.answer import Answer
+from solver.answer import Answer, Crew, State
 from solver.plan import Plan
 from solver.planfile import plan_to_document
 from solver.review import Problem, review
@@ -29,7 +30,8 @@ __all__ = ["Answers", "Fractional", "Progress", "Status"]
 PATIENCE = 300  # ms a solve may still run after a newer edit before its process is ended
 PAUSE = 250  # ms without an edit that are waited for on plans that take longer than PATIENCE
 WORTH_SHOWING = 150  # ms after which the fractional crew is shown ahead of the exact one
-SECONDS = 60  # time limit of one solve; then the best crew found is shown with its bound
+LONG = 1000  # ms of solving after which people may want to have a say in it
+FURTHER = 2  # how many times longer it is looked when it is looked further
 GRACE = 30  # seconds beyond the limit before a silent process counts as hung
 
 
@@ -87,6 +89,10 @@ class Answers(QObject):
         self._errand: Errand | None = None
         self._since = QElapsedTimer()
         self._slow = False
+        self._effort = Effort()
+        self._seconds: float = SECONDS
+        self._long_due = QTimer(self, singleShot=True, interval=LONG)
+        self._long_due.timeout.connect(self.changed)
         self._soon = QTimer(self, singleShot=True)
         self._soon.timeout.connect(self._begin)
         self._floor_due = QTimer(self, singleShot=True)
@@ -105,6 +111,27 @@ class Answers(QObject):
     def busy(self) -> bool:
         """True while a process is at work on an answer."""
         return self._errand is not None
+
+    @property
+    def effort(self) -> Effort:
+        """How long is looked for a crew, and how close is close enough."""
+        return self._effort
+
+    @property
+    def can_stop(self) -> bool:
+        """True while better crews than one that is here already are looked for."""
+        return self.busy and self._status is Status.SOLVING and self._has_best_found()
+
+    @property
+    def can_look_further(self) -> bool:
+        """True when the answer is a crew that is not proved cheapest, and nobody is at work on it."""
+        ready = self._workers is not None and self._status is Status.READY
+        return ready and not self.busy and self._has_best_found()
+
+    @property
+    def long(self) -> bool:
+        """True when the answer that is worked on takes long enough for people to have a say in it."""
+        return self.busy and not self._long_due.isActive()
 
     @property
     def answer(self) -> Answer | None:
@@ -146,6 +173,28 @@ class Answers(QObject):
         self._asked = None
         self._on_plan_changed()
 
+    def choose(self, effort: Effort) -> None:
+        """Look as long and as far as `effort` says from now on, also for what is being worked on."""
+        if effort == self._effort:
+            return
+        self._effort = effort
+        if self.busy and not self._overtaken():
+            self._drop_errand()
+            self._start(effort.seconds, self._best())
+
+    def stop(self) -> None:
+        """Keep the best crew found so far; the process at work can only be ended."""
+        if self.can_stop:
+            self._drop_errand()
+            self._spare()
+            self._set(Status.READY)
+
+    def look_further(self) -> None:
+        """Go on from the best crew found, longer than before; it stays the answer meanwhile."""
+        if self.can_look_further:
+            self._start(self._seconds * FURTHER, self._best())
+            self._set(Status.SOLVING)
+
     def ask(self, question: str, **options: Any) -> None:
         """Ask a long question ("cost", "room", "near", ...); dropped when the plan changes."""
         if self._status not in (Status.EMPTY, Status.PROBLEMS):
@@ -171,6 +220,7 @@ class Answers(QObject):
         """Stop asking; for the end of the window."""
         self._soon.stop()
         self._floor_due.stop()
+        self._long_due.stop()
         self._drop_errand()
         self._inquiries.drop_all()
 
@@ -219,6 +269,15 @@ class Answers(QObject):
         self._stale = arithmetic(plan) != arithmetic(self._document.plan)
         self._no_floor()
 
+    def _has_best_found(self) -> bool:
+        """Whether a crew stands there that fits the plan and is not proved cheapest."""
+        return not self.stale and self._best() is not None
+
+    def _best(self) -> Crew | None:
+        answer = self._answer
+        found = answer is not None and answer.state is State.BEST_FOUND and answer.exact is not None
+        return answer.exact.crew if found and answer is not None and answer.exact is not None else None
+
     def _no_floor(self) -> None:
         self._floor_due.stop()
         self._fractional = None
@@ -239,21 +298,43 @@ class Answers(QObject):
                 return
             self._slow = True
             self._drop_errand()
+        self._start(self._effort.seconds, self._crew_to_begin_from())
+
+    def _crew_to_begin_from(self) -> Crew | None:
+        """The crew of before where only the own crew was changed: what took long is not looked for again."""
+        answer, before, now = self._answer, self._plan, arithmetic(self._document.plan)
+        if not self._slow or before is None or answer is None or answer.exact is None:
+            return None
+        return answer.exact.crew if replace(arithmetic(before), own=now.own) == now else None
+
+    def _start(self, seconds: float, start: Crew | None = None) -> None:
+        """Ask about the plan as it stands, beginning from the crew `start`."""
+        assert self._workers is not None
         plan = self._document.plan
-        request = self._request({"seconds": SECONDS})
-        errand = Errand(self._workers, "solve", request, Answer, (SECONDS + GRACE) * 1000, self)
+        self._seconds = seconds
+        crew = None if start is None else {name: list(counts) for name, counts in start.items()}
+        options = {"seconds": seconds, "tolerance": self._effort.tolerance, "start": crew}
+        silence = int((seconds + GRACE) * 1000)
+        errand = Errand(self._workers, "solve", self._request(options), Answer, silence, self)
         errand.heard.connect(lambda reply: self._on_heard(plan, reply))
         errand.ended.connect(lambda reply: self._on_ended(plan, reply))
         errand.restarting.connect(self._on_restarting)
         errand.given_up.connect(self._on_given_up)
         self._errand = errand
         self._since.start()
+        self._long_due.start()
         errand.start()
 
     def _drop_errand(self) -> None:
         if self._errand is not None:
             errand, self._errand = self._errand, None
+            self._long_due.stop()
             errand.cancel()
+
+    def _spare(self) -> None:
+        """Have a warm process for when the one at work has to be ended."""
+        if self._workers is not None:
+            self._workers.warm_up()
 
     def _overtaken(self) -> bool:
         """True while a newer plan waits to be asked about: what is heard now is late."""
@@ -263,7 +344,9 @@ class Answers(QObject):
         if self._overtaken():
             return
         if reply.part == "better":
-            self._hold(plan, reply.value)
+            if not self._has_best_found():
+                self._spare()
+            self._hold(plan, self._with_what_is_known(reply.value))
             self._set(Status.SOLVING)
         elif reply.part == "fractional" and reply.value is not None:
             self._fractional = reply.value
@@ -271,17 +354,30 @@ class Answers(QObject):
 
     def _on_ended(self, plan: Plan, reply: Reply) -> None:
         self._errand = None
+        self._long_due.stop()
         self._slow = self._since.elapsed() > PATIENCE
-        if self._workers is not None:
-            self._workers.warm_up()
+        self._spare()
         if self._overtaken():
             self._soon.start(0)
         elif reply.part == "answer":
-            self.receive(plan, reply.value)
+            self.receive(plan, self._with_what_is_known(reply.value))
         elif reply.part == "problems":
             self._set(Status.PROBLEMS, reply.value)
         else:
             self._set(Status.FAILED, failure=messages.no_answer(reply.part, reply.value))
+
+    def _with_what_is_known(self, answer: Answer) -> Answer:
+        """`answer` against the best crew and the best bound heard before: neither ever gets worse."""
+        before = self._answer
+        if before is None or not self._has_best_found() or answer.state is not State.BEST_FOUND:
+            return answer
+        if before.exact is not None and (answer.exact is None or before.exact.cost < answer.exact.cost):
+            bounds = [b for b in (before.bound, answer.bound) if b is not None]
+            return replace(before, bound=max(bounds, default=None))
+        if before.bound is None or answer.exact is None:
+            return answer
+        bound = max(before.bound, before.bound if answer.bound is None else answer.bound)
+        return replace(answer, bound=min(bound, answer.exact.cost))
 
     def _on_restarting(self) -> None:
         if not self._overtaken():
@@ -289,5 +385,6 @@ class Answers(QObject):
 
     def _on_given_up(self, how: str) -> None:
         self._errand = None
+        self._long_due.stop()
         if not self._overtaken():
             self._set(Status.FAILED, failure=messages.SOLVER_LOST.format(how=how))

@@ -18,8 +18,10 @@ FRACTIONAL = "fractional"
 EXACT = "exact"
 LEGEND_FRACTIONAL = "fractional crew"
 LEGEND_EXACT = "exact crew"
+LEGEND_BEST_FOUND = "best crew found"
 OWN_HEIGHT = "each category to its own height"
 LEGEND_STAYS = "exact crew, on the books"
+LEGEND_BEST_FOUND_STAYS = "best crew found, on the books"
 LEGEND_JOINS = "joins"
 LEGEND_LEAVES = "leaves"
 NO_CREW = "no crew"
@@ -205,6 +207,10 @@ POLICY_TIPS = {
 }
 
 
+BEST_FOUND = "best\nfound"
+TIP_BEST_FOUND = "The cheapest workable whole crew found; not proved that there is no cheaper one"
+
+
 def policy_title(policy: Policy) -> str:
     """A column title: two lines where the name is long."""
     return str(policy).replace(" ", "\n")
@@ -266,6 +272,8 @@ NOTICE_EMPTY = (
 )
 NOTICE_PROBLEMS = "Some entries of the plan must be mended first; the Plan page marks them."
 NOTICE_FIRST = "Working out the first answer."
+NOTICE_SO_FAR = "The best crew so far; cheaper ones are being looked for."
+NOTICE_BEST_FOUND = "The best crew found; it is not proved that there is no cheaper one."
 NOTICE_STALE = "Out of date: this belongs to the plan before the last change."
 
 

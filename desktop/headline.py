@@ -4,9 +4,19 @@ from __future__ import annotations
 
 from PySide6.QtCore import QEvent, QSize, Qt, QTimer, Signal
 from PySide6.QtGui import QFontMetrics, QResizeEvent
-from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QPushButton, QSizePolicy, QVBoxLayout, QWidget
+from PySide6.QtWidgets import (
+    QFrame,
+    QHBoxLayout,
+    QLabel,
+    QPushButton,
+    QSizePolicy,
+    QSpacerItem,
+    QVBoxLayout,
+    QWidget,
+)
 
 from desktop import messages, theme
+from desktop.answer_menu import FURTHER_KEYS, STOP_KEYS
 from desktop.answers import Answers
 from desktop.document import Document
 from desktop.headline_words import Action, Headline, headline
@@ -43,6 +53,11 @@ class HeadlineBar(QFrame):
         self.note = _label(Size.SMALL, "short")
         self.button = QPushButton()
         self.button.clicked.connect(self._act)
+        self.stop_button = _button(messages.STOP_HERE, messages.STOP_HERE_TIP, STOP_KEYS)
+        self.stop_button.clicked.connect(answers.stop)
+        self.further_button = _button(messages.LOOK_FURTHER, messages.LOOK_FURTHER_TIP, FURTHER_KEYS)
+        self.further_button.clicked.connect(answers.look_further)
+        self._height_of_buttons = QSpacerItem(0, 0)
         self._soon = QTimer(self, singleShot=True, interval=PATIENCE)
         self._soon.timeout.connect(self._show)
         self._lay_out()
@@ -65,8 +80,9 @@ class HeadlineBar(QFrame):
         self.note.setAlignment(Qt.AlignmentFlag.AlignRight)
         below = QHBoxLayout()
         below.addStretch(1)
-        below.addWidget(self.note)
-        below.addWidget(self.button)
+        below.addItem(self._height_of_buttons)
+        for shown in (self.note, self.button, self.stop_button, self.further_button):
+            below.addWidget(shown)
         right.addWidget(self.state)
         right.addLayout(below)
         right.addStretch(1)
@@ -99,8 +115,18 @@ class HeadlineBar(QFrame):
         self.note.setVisible(bool(said.note))
         self.button.setText(_BUTTONS.get(said.action, ""))
         self.button.setVisible(said.action is not Action.NONE)
+        self._show_controls()
         self.setAccessibleName(messages.HEADLINE)
         self.setAccessibleDescription(f"{', '.join(said.crew)}. {said.facts}. {said.state}. {said.note}")
+
+    def _show_controls(self) -> None:
+        """What there is to be said about a long solve; while one runs the crew keeps its place."""
+        answers = self._answers
+        wide = max(self.state.minimumWidth(), self.state.sizeHint().width()) if answers.can_stop else 0
+        self.state.setMinimumWidth(wide)
+        self.stop_button.setVisible(answers.can_stop and answers.long)
+        self.further_button.setVisible(answers.can_look_further)
+        self._height_of_buttons.changeSize(0, self.stop_button.sizeHint().height())
 
     def _fit_crew(self) -> None:
         """As many categories as there is room for, and how many are left out."""
@@ -140,6 +166,14 @@ class HeadlineBar(QFrame):
     def minimumSizeHint(self) -> QSize:
         """Never the reason why a window cannot be narrower."""
         return QSize(theme.current().px(60), super().minimumSizeHint().height())
+
+
+def _button(text: str, tip: str, keys: str) -> QPushButton:
+    made = QPushButton(text)
+    made.setToolTip(tip.format(keys=keys))
+    made.setAccessibleDescription(made.toolTip())
+    made.hide()
+    return made
 
 
 def _label(size: Size = Size.BODY, tone: str | None = None) -> QLabel:

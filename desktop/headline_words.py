@@ -13,6 +13,8 @@ from desktop.places import TABLES, in_words
 from solver.answer import Answer, Crew, Proof, State
 from solver.plan import Plan
 
+_CENT = 0.005
+
 
 class Action(StrEnum):
     """What the headline's button does."""
@@ -89,7 +91,7 @@ def _answered(document: Document, answers: Answers) -> Headline:
     if answer.state is State.IMPOSSIBLE and not place:
         action = Action.MEND
     state, sign, tone = _state(plan, answer, answers.status)
-    return Headline(crew, facts, state, sign, tone, True, note, action, place, _tooltip(answer))
+    return Headline(crew, facts, state, sign, tone, True, note, action, place, _tooltip(plan, answer))
 
 
 def _waiting(answers: Answers) -> tuple[str, str]:
@@ -137,7 +139,9 @@ def _facts(plan: Plan, answer: Answer) -> str:
     extra = answer.whole_people_cost
     if extra is not None:
         money = figures.money(extra.absolute, plan.currency)
-        said.append(messages.WHOLE_PEOPLE.format(money=money, percent=figures.percent(extra.percent)))
+        known = answer.state is State.PROVED
+        words = messages.WHOLE_PEOPLE if known else messages.WHOLE_PEOPLE_AT_MOST
+        said.append(words.format(money=money, percent=figures.percent(extra.percent)))
     said.append(_moves(answer.exact.joiners, answer.exact.leavers))
     return messages.SEPARATOR.join(part for part in said if part)
 
@@ -159,21 +163,36 @@ def _state(plan: Plan, answer: Answer, status: Status) -> tuple[str, str, str]:
         return messages.IMPOSSIBLE_STATE, "✗", "short"
     if answer.state is State.PROVED:
         return messages.PROVED, "✓", "exact"
-    still = messages.STILL_WORKING if status is not Status.READY else ""
-    return _gap(plan, answer) + still, "△", "ink"
+    if status is Status.RESTARTING:
+        return messages.SOLVER_RESTARTING, "↻", "ink"
+    return _distance(plan, answer, status is Status.READY), "△", "ink"
 
 
-def _gap(plan: Plan, answer: Answer) -> str:
+def _distance(plan: Plan, answer: Answer, final: bool) -> str:
+    """How far from the cheapest a crew that is not proved can be."""
     if answer.exact is None or answer.bound is None:
-        return messages.BEST_FOUND_NO_BOUND
+        return messages.BEST_FOUND_NO_BOUND if final else messages.SO_FAR_NO_BOUND
     gap = answer.exact.cost - answer.bound
-    return messages.BEST_FOUND.format(gap=figures.money(gap, plan.currency))
+    if gap < _CENT:
+        return messages.BEST_FOUND_NO_GAP if final else messages.SO_FAR_NO_GAP
+    share = figures.percent(100 * gap / answer.exact.cost)
+    said = messages.GAP.format(money=figures.money(gap, plan.currency), percent=share)
+    return (messages.BEST_FOUND if final else messages.SO_FAR).format(gap=said)
 
 
-def _tooltip(answer: Answer) -> str:
-    if answer.proof is Proof.OWN_SEARCH:
-        return messages.PROOF_OWN
-    return messages.PROOF_TWO if answer.proof is Proof.TWO_ENGINES else ""
+_PROOFS = {
+    Proof.OWN_SEARCH: messages.PROOF_OWN,
+    Proof.TWO_ENGINES: messages.PROOF_TWO,
+    Proof.ONE_ENGINE: messages.PROOF_ONE,
+}
+
+
+def _tooltip(plan: Plan, answer: Answer) -> str:
+    if answer.proof is not None:
+        return _PROOFS[answer.proof]
+    if answer.state is not State.BEST_FOUND or answer.bound is None:
+        return ""
+    return messages.GAP_TIP.format(bound=figures.money(answer.bound, plan.currency))
 
 
 def _refused(count: int) -> str:

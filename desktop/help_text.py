@@ -45,5 +45,7 @@ KEYS: tuple[tuple[str, str], ...] = (
     ("Escape", "Leave a cell as it was; drop an entry that was refused"),
     ("Typing into the last line", "Adds a category, work or phase"),
     ("Space", "Tick a name in a list"),
+    ("Ctrl+.", "Stop looking for a cheaper crew and keep the best one found"),
+    ("Ctrl+Shift+L", "Look further, from the best crew found"),
     ("F6", "From one part of the page to the next"),
 )

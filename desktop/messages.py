@@ -33,9 +33,17 @@ OUT_OF_DATE = "out of date, working on the change"
 PROVED = "proved cheapest"
 PROOF_OWN = "Proved by a complete search; every line was checked again in exact arithmetic."
 PROOF_TWO = "Two solvers agree to the cent; every line was checked again in exact arithmetic."
+PROOF_ONE = (
+    "Proved by one solver; there was no time for the second to confirm it. Every line was checked again."
+)
 BEST_FOUND = "best found, at most {gap} above the cheapest possible"
+BEST_FOUND_NO_GAP = "best found, probably the cheapest"
 BEST_FOUND_NO_BOUND = "best found, not proved"
-STILL_WORKING = "; still working"
+SO_FAR = "at most {gap} above the cheapest possible, still improving"
+SO_FAR_NO_GAP = "probably the cheapest, proof under way"
+SO_FAR_NO_BOUND = "crew so far, still improving"
+GAP = "{money} ({percent})"
+GAP_TIP = "No whole crew costs less than {bound}. Whether one costs less than this one is not known yet."
 IMPOSSIBLE = "No crew can meet this plan"
 IMPOSSIBLE_WHOLE = "No whole crew can meet this plan; fractional people could"
 IMPOSSIBLE_STATE = "impossible"
@@ -54,6 +62,7 @@ RANGE = "{low} to {high}"
 COSTS = "costs {money}"
 FLOOR = "floor {money}"
 WHOLE_PEOPLE = "whole people cost {money} ({percent})"
+WHOLE_PEOPLE_AT_MOST = "whole people cost at most {money} ({percent})"
 JOIN = "{count} join"
 LEAVE = "{count} leave"
 AND_MORE = "and {count} more"
@@ -61,6 +70,22 @@ GO_THERE = "Go there"
 ASK_AGAIN = "Ask again"
 WHAT_HELPS = "What helps"
 HEADLINE = "Headline"
+STOP_HERE = "Stop here"
+STOP_HERE_TIP = "Keep the best crew found so far, with what is known about it ({keys})"
+LOOK_FURTHER = "Look further"
+LOOK_FURTHER_TIP = "Go on from this crew for twice as long; it stays on show meanwhile ({keys})"
+
+# how long to look, and how close
+
+EFFORT = "Time and tolerance"
+GOOD_ENOUGH = "&Good enough when within"
+OF_THE_CHEAPEST = " % of the cheapest"
+LOOK_AT_MOST = "&Look for at most"
+SECONDS_OF_SOLVE = " s"
+EFFORT_NOTE = (
+    "With 0 % the search goes on until the crew is proved cheapest or the time is up. Small plans are proved "
+    "at once whatever stands here. Both hold for every plan from now on."
+)
 
 # grids
 

@@ -17,6 +17,7 @@ from PySide6.QtWidgets import (
 
 import resources
 from desktop import messages
+from desktop.answer_menu import AnswerMenu
 from desktop.answers import Answers
 from desktop.conflict_watch import ConflictWatch
 from desktop.document import Document
@@ -142,6 +143,7 @@ class Window(QMainWindow):
         view = menu_of(bar, "&View")
         fill_view_menu(view, self._pages, self.show_page, self._look)
         add(view, "Next &part of the page", self.next_part, "F6")
+        self.answer_menu = AnswerMenu(menu_of(bar, "&Answer"), self.answers, self)
         fill_help_menu(menu_of(bar, "&Help"), self)
 
     def _connect(self) -> None:

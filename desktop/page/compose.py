@@ -110,7 +110,8 @@ def _no_consequence(answer: Answer) -> str:
 def _tally(plan: Plan, answer: Answer, chosen: Chosen | None) -> Tally | None:
     if chosen is None:
         return None
-    tally = tally_of(plan, answer.fractional, chosen.crew)
+    proved = answer.state is not State.BEST_FOUND
+    tally = tally_of(plan, answer.fractional, chosen.crew, proved=proved)
     rows = tuple(replace(row, name=name(row.name, ALL_OF_IT)) for row in tally.rows)
     phases = tuple(replace(phase, name=name(phase.name, ALL_OF_IT)) for phase in tally.phases)
     return replace(tally, rows=rows, phases=phases)
@@ -160,6 +161,7 @@ def _costs(speech: Speech, answer: Answer, chosen: Chosen | None, *, own: bool) 
 _PROOFS = {
     Proof.OWN_SEARCH: "by branch and bound with safe bounds",
     Proof.TWO_ENGINES: "by two engines (CBC and HiGHS) that agree to the cent",
+    Proof.ONE_ENGINE: "by one engine (the other had no time to confirm it)",
 }
 
 

@@ -6,7 +6,7 @@ from PySide6.QtCore import QModelIndex, Qt, Signal
 from PySide6.QtWidgets import QAbstractItemView, QHBoxLayout, QLabel, QPushButton, QVBoxLayout, QWidget
 
 from desktop import crew_words as say
-from desktop.answers import Answers
+from desktop.answers import Answers, Status
 from desktop.document import Document
 from desktop.pages.crew_notes import binding_lines, run_lines
 from desktop.pages.page_parts import AnswerPage, heading, label
@@ -15,6 +15,7 @@ from desktop.pictures.tally_layout import tally_of
 from desktop.tables.crews import CrewTable
 from desktop.tables.quiet_view import QuietView
 from desktop.theme import Size, current
+from solver.answer import State
 
 
 class CrewPage(AnswerPage):
@@ -84,6 +85,14 @@ class CrewPage(AnswerPage):
         bar.addWidget(self.clear_own)
         return bar
 
+    def notice_text(self) -> str:
+        """As on every page; and whether the crew is only the best one found."""
+        answer = self.answers.answer
+        said = super().notice_text()
+        if said or answer is None or answer.exact is None or answer.state is not State.BEST_FOUND:
+            return said
+        return say.NOTICE_SO_FAR if self.answers.status is Status.SOLVING else say.NOTICE_BEST_FOUND
+
     def show_answer(self) -> None:
         """Fill tally, notes and table from the latest answer."""
         answer, plan = self.answers.answer, self.answers.plan
@@ -94,7 +103,9 @@ class CrewPage(AnswerPage):
         if answer.conflict is not None:
             self.impossible.setText(say.conflict([c.says for c in answer.conflict.lines]))
         self.tally.setVisible(possible or answer.fractional is not None)
-        self.tally.show_tally(tally_of(plan, answer.fractional, answer.exact.crew if answer.exact else None))
+        exact = answer.exact.crew if answer.exact else None
+        proved = answer.state is not State.BEST_FOUND
+        self.tally.show_tally(tally_of(plan, answer.fractional, exact, proved=proved))
         self._show_notes()
         self._show_table()
 

@@ -94,7 +94,8 @@ def paint_phases(painter: QPainter, rect: QRectF, tally: Tally, theme: Theme) ->
             _paint_cell(painter, frame, at)
         top += (_NUMBERS + _GAP) * unit + frame.step
     if tally.rows:
-        _paint_key(painter, QRectF(edges[0], top, rect.right() - edges[0], 20 * unit), theme)
+        whole = say.LEGEND_EXACT if tally.proved else say.LEGEND_BEST_FOUND
+        _paint_key(painter, QRectF(edges[0], top, rect.right() - edges[0], 20 * unit), whole, theme)
 
 
 def _name_width(tally: Tally, most: float, theme: Theme) -> float:
@@ -181,7 +182,7 @@ def _paint_moves(painter: QPainter, box: QRectF, frame: _Frame, at: int) -> None
     write(painter, words, text, font, theme.ink, LEFT)
 
 
-def _paint_key(painter: QPainter, box: QRectF, theme: Theme) -> None:
+def _paint_key(painter: QPainter, box: QRectF, whole: str, theme: Theme) -> None:
     """What the line, the area and the small figures mean."""
     unit = theme.zoom
     y = box.center().y()
@@ -194,7 +195,7 @@ def _paint_key(painter: QPainter, box: QRectF, theme: Theme) -> None:
     painter.fillRect(area, theme.exact_soft)
     painter.setPen(QPen(theme.exact, 2))
     painter.drawLine(area.topLeft(), area.topRight())
-    x = paint_entry(painter, box, x + 30 * unit, None, say.LEGEND_EXACT, theme)
+    x = paint_entry(painter, box, x + 30 * unit, None, whole, theme)
     rest = QRectF(x, box.top(), box.right() - x, box.height())
     moves = [(Mark.JOINS, say.LEGEND_JOINS), (Mark.LEAVES, say.LEGEND_LEAVES), (None, say.OWN_HEIGHT)]
     paint_key(painter, rest, moves, theme)

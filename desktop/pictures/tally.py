@@ -151,7 +151,8 @@ def _paint_figures(
 def _legend(tally: Tally, scale: int) -> list[tuple[Mark | None, str]]:
     rows = tally.rows
     shown = [(Mark.FRACTIONAL, say.LEGEND_FRACTIONAL, any(r.fractional for r in rows))]
-    shown.append((Mark.STAYS, say.LEGEND_STAYS, any(r.exact and min(r.exact[0], r.before) > 0 for r in rows)))
+    stays = say.LEGEND_STAYS if tally.proved else say.LEGEND_BEST_FOUND_STAYS
+    shown.append((Mark.STAYS, stays, any(r.exact and min(r.exact[0], r.before) > 0 for r in rows)))
     shown.append((Mark.JOINS, say.LEGEND_JOINS, any(r.joiners() > 0 for r in rows)))
     shown.append((Mark.LEAVES, say.LEGEND_LEAVES, any(r.leavers() > 0 for r in rows)))
     made: list[tuple[Mark | None, str]] = [(mark, text) for mark, text, there in shown if there]

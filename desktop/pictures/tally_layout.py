@@ -53,14 +53,15 @@ class TallyRow:
 
 @dataclass(frozen=True)
 class Tally:
-    """Everything the people tally shows."""
+    """Everything the people tally shows. `proved` False: the whole crew is only the best found."""
 
     phases: tuple[TallyPhase, ...]
     rows: tuple[TallyRow, ...]
     period: str = ""
+    proved: bool = True
 
 
-def tally_of(plan: Plan, fractional: Crew | None, exact: Crew | None) -> Tally:
+def tally_of(plan: Plan, fractional: Crew | None, exact: Crew | None, *, proved: bool = True) -> Tally:
     """The tally of two crews of `plan`; a crew may be missing, or a category in it."""
     phases = tuple(TallyPhase(p.name, float(p.periods)) for p in plan.phases)
     rows = tuple(
@@ -73,7 +74,7 @@ def tally_of(plan: Plan, fractional: Crew | None, exact: Crew | None) -> Tally:
         )
         for c in plan.categories
     )
-    return Tally(phases, rows, plan.period)
+    return Tally(phases, rows, plan.period, proved)
 
 
 @dataclass(frozen=True)

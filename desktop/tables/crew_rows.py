@@ -9,7 +9,7 @@ from enum import IntEnum
 from desktop import crew_words as say
 from desktop import figures
 from desktop.figures import Number
-from solver.answer import Answer, CrewReport, Policy
+from solver.answer import Answer, CrewReport, Policy, State
 from solver.plan import Category, Plan
 
 
@@ -62,10 +62,16 @@ def crew_columns(plan: Plan, answer: Answer | None) -> tuple[CrewColumn, ...]:
     for policy in Policy:
         report = answer.report(policy) if answer else None
         crew = plan.own or None if policy is Policy.OWN else report.crew if report else None
-        made.append(
-            CrewColumn(say.policy_title(policy), say.POLICY_TIPS[policy], policy, crew, report, floor)
-        )
+        title, tip = _heading(policy, answer)
+        made.append(CrewColumn(title, tip, policy, crew, report, floor))
     return tuple(made)
+
+
+def _heading(policy: Policy, answer: Answer | None) -> tuple[str, str]:
+    """Title and meaning of a column; a crew is called exact only where it is proved."""
+    if policy is Policy.EXACT and answer is not None and answer.state is State.BEST_FOUND:
+        return say.BEST_FOUND, say.TIP_BEST_FOUND
+    return say.policy_title(policy), say.POLICY_TIPS[policy]
 
 
 def crew_rows(plan: Plan, exact_cost: float | None) -> tuple[CrewRow, ...]:

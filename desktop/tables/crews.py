@@ -59,12 +59,15 @@ class CrewTable(QAbstractTableModel):
         same = [r.title for r in rows] == [r.title for r in self._rows] and len(columns) == len(self._columns)
         if not same:
             self.beginResetModel()
+        titled = [c.title for c in columns] == [c.title for c in self._columns]
         self._answer, self._columns, self._rows = answer, columns, rows
         names = {c.name for c in plan.categories}
         kept = {k: v for k, v in self._refused.items() if k[0] in names and k[1] < len(plan.phases)}
         self._refused = kept
         if same:
             self.dataChanged.emit(self.index(0, 0), self.index(len(rows) - 1, len(columns) - 1))
+            if not titled:
+                self.headerDataChanged.emit(Qt.Orientation.Horizontal, 0, len(columns) - 1)
         else:
             self.endResetModel()
 

@@ -8,6 +8,7 @@ import pytest
 from desktop import answers as answers_module
 from desktop.answers import Answers, Fractional, Status
 from desktop.document import Document
+from desktop.effort import Effort
 from desktop.workers import Workers
 from solver.answer import State
 from solver.plan import Category, Plan, Work
@@ -139,10 +140,10 @@ def test_a_plan_that_breaks_two_processes_gets_a_sentence(word, made, workers, q
 
 
 def test_a_hung_process_is_ended(made, fake_command, qtbot, tmp_path, monkeypatch):
-    monkeypatch.setattr(answers_module, "SECONDS", 0)
     monkeypatch.setattr(answers_module, "GRACE", 1)
     workers = Workers(fake_command(str(tmp_path / "seen")))
     _, answers = made(plan(word="once hang"), workers)
+    answers.choose(Effort(seconds=0))
     qtbot.waitUntil(lambda: ready(answers), timeout=15000)
     assert answers.answer.exact.cost == 100
     workers.close()
