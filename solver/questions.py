@@ -15,6 +15,7 @@ from solver.plan import Plan
 from solver.room import room
 from solver.solve import Heard, solve
 from solver.steps import steps
+from solver.tightest import tightest_line
 from solver.wholecost import whole_cost
 
 Options = Mapping[str, Any]
@@ -104,6 +105,21 @@ def _map(plan: Plan, options: Options, heard: Heard) -> Any:
     return crew_map(plan, str(across), str(up), str(phase))
 
 
+def _tightest(plan: Plan, options: Options, heard: Heard) -> Any:
+    crew = options.get("crew")
+    if not isinstance(crew, Mapping) or not all(_is_counts(plan, counts) for counts in crew.values()):
+        raise BadOption("The tightest line is that of a crew: people of each category in each phase.")
+    return tightest_line(plan, crew)
+
+
+def _is_counts(plan: Plan, counts: Any) -> bool:
+    return (
+        isinstance(counts, (list, tuple))
+        and len(counts) == len(plan.phases)
+        and all(_is_number(n) and n >= 0 for n in counts)
+    )
+
+
 def _attend(plan: Plan, options: Options, heard: Heard) -> Any:
     chance = options.get("chance", 0.95)
     if not _is_number(chance) or not 0 < chance < 100 or chance == 1:
@@ -139,6 +155,7 @@ QUESTIONS: Mapping[str, Question] = {
         Question("near", _near),
         Question("steps", _steps),
         Question("map", _map),
+        Question("tightest", _tightest),
         Question("attend", _attend),
     )
 }

@@ -2,10 +2,16 @@
 
 from __future__ import annotations
 
-from solver.answer import CrewReport
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+
+from solver.answer import CrewReport, Policy
+from solver.appraisal import Appraiser
+from solver.heads import lots_of
 from solver.ledger import Counts
 from solver.loosened import is_settling
 from solver.matrix import RowSense
+from solver.plan import Plan
 from solver.program import HeadLine, Line, Program
 
 
@@ -45,3 +51,18 @@ def _asked(program: Program, line: Line, head: HeadLine | None, lots: Counts) ->
         if column < program.head_count and coef < 0
     )
     return (row.rhs + drawn) * line.scale
+
+
+@dataclass(frozen=True)
+class TightestLine:
+    """Answer of `tightest`; empty where no line asks for anything."""
+
+    line: str
+
+
+def tightest_line(plan: Plan, crew: Mapping[str, Sequence[float]]) -> TightestLine:
+    """The line on which `crew` (people per category and phase) has least room. Categories left out are 0."""
+    program = Program(plan)
+    lots = lots_of(program, crew)
+    report = Appraiser(program).appraise(Policy.OWN, lots)
+    return TightestLine(tightest(program, lots, report))
