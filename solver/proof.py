@@ -119,7 +119,8 @@ class Prover:
 
     def _tightened(self, caps: list[int]) -> tuple[Program, Search]:
         """Switches need close limits on head counts; without switches the warm program will do."""
-        if not self.program.switches:
+        switched = {head for heads in self.program.switches.values() for head in heads}
+        if all(caps[head] == self.program.matrix.upper[head] for head in switched):
             return self.program, self.search
         program = Program(self.program.plan, caps)
         return program, Search(program, grain=self.search.grain)

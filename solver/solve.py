@@ -74,7 +74,7 @@ class Case:
     def relaxed(self) -> Relaxed | None:
         """The fractional crew, None if not even fractional people can do it."""
         search = self.search
-        if self.program.switches:
+        if any(c.open_cost > 0 and c.at_most is None for c in self.plan.categories):
             search = Search(Program(self.plan, open_ended=True))
         if search.relax() is not LpStatus.OPTIMAL:
             return None
