@@ -47,6 +47,7 @@ class Worker(QObject):
         super().__init__(parent)
         self._reader = ReplyReader()
         self._last_words = b""
+        self._served = 0
         self._process = QProcess(self)
         self._process.setProgram((command or worker_command())[0])
         self._process.setArguments(list((command or worker_command())[1:]))
@@ -72,8 +73,14 @@ class Worker(QObject):
         """The end of what the process wrote on its error stream."""
         return self._last_words.decode("utf-8", "replace")
 
+    @property
+    def served(self) -> int:
+        """How many requests it was given."""
+        return self._served
+
     def send(self, request: dict[str, Any]) -> None:
         """Hand over one request; replies arrive through `replied`."""
+        self._served += 1
         line = simplejson.dumps(request, use_decimal=True) + "\n"
         self._process.write(line.encode("utf-8"))
 

@@ -11,6 +11,7 @@ from shiboken6 import isValid
 from desktop.worker import Worker
 
 MOST_IDLE = 2  # one to answer the next edit, one spare for when that has to be stopped
+MOST_SERVED = 200  # requests: the native solvers keep a little of every program, so nobody serves for ever
 
 
 class Workers(QObject):
@@ -45,6 +46,10 @@ class Workers(QObject):
         """Its request was answered: it may wait for the next."""
         if self._closed or not worker.alive or len(self._idle) >= MOST_IDLE:
             self.drop(worker)
+            return
+        if worker.served >= MOST_SERVED:
+            self.drop(worker)
+            self.warm_up()
             return
         worker.lost.connect(self._forget)
         self._idle.append(worker)  # the last one back is taken first: its caches are warm

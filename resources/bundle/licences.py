@@ -29,7 +29,7 @@ def write_licences(parts: Iterable[str], folder: Path) -> list[Path]:
 
 
 def system_licences(libraries: Iterable[str], folder: Path) -> list[Path]:
-    """The same for libraries of the system that are shipped, from Debian's copyright files; elsewhere none."""
+    """The same for shipped libraries of the system, from Debian's copyright files; elsewhere none."""
     if shutil.which("dpkg") is None:
         return []
     return [_copied(package, folder) for package in sorted({_package(library) for library in libraries})]

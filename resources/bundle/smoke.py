@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import json
 import os
 import shutil
 import signal
@@ -20,6 +21,7 @@ def try_folder(folder: Path, example: Path) -> None:
         print(trial.run("--version").strip())
         trial.page(example)
         trial.answer_without_display(example)
+        trial.engines()
         trial.window(example)
 
 
@@ -58,6 +60,30 @@ class Trial:
         self.run(str(example))
         answer = (self._home / "hillside.txt").read_text("utf-8")
         assert "Proved cheapest" in answer, answer
+
+    def engines(self) -> None:
+        """Both engines, each in a process of its own: the smallest program with a whole number in it."""
+        matrix = {
+            "cost": [1.0],
+            "lower": [0.0],
+            "upper": [9.0],
+            "integer": [True],
+            "rows": [[[0], [2.0], "G", 3.0]],
+        }
+        for engine in ("CBC", "HIGHS"):
+            request = {"number": 1, "engine": engine, "matrix": matrix, "seconds": 9.0, "start": None}
+            asked = {"env": self._environment, "cwd": self._home, "encoding": "utf-8"}
+            process = subprocess.Popen(
+                [*self._start, "--engine"], stdin=subprocess.PIPE, stdout=subprocess.PIPE, **asked
+            )
+            process.stdin.write(json.dumps(request) + "\n")
+            process.stdin.flush()
+            said = [json.loads(line) for line in iter(process.stdout.readline, "") if '"news"' not in line][
+                :1
+            ]
+            process.stdin.close()
+            process.wait(LONGEST)
+            assert said[0]["objective"] == 2.0, f"{engine}: {said}"
 
     def window(self, example: Path) -> None:
         """The window, drawn into memory, until it has an answer; a second start finds files read before."""
