@@ -17,7 +17,7 @@ from solver.engine import LpStatus, Relaxation
 from solver.matrix import Matrix
 from solver.plan import Plan
 from solver.program import Program
-from solver.search import Lots, Search, whole_grain
+from solver.search import Lots, Search, tie_width, whole_grain
 
 
 def scaled(plan: Plan, work: str | None, factor: Decimal) -> Plan:
@@ -159,5 +159,6 @@ def caps_for(program: Program, cost: float) -> list[int]:
     caps = [int(v) for v in program.matrix.upper[: program.head_count]]
     for i, pay in enumerate(program.matrix.cost[: len(caps)]):
         if pay > 0:
-            caps[i] = max(min(caps[i], floor(cost / pay + 1e-9)), int(program.matrix.lower[i]))
+            most = floor((cost + tie_width(cost)) / pay)
+            caps[i] = max(min(caps[i], most), int(program.matrix.lower[i]))
     return caps

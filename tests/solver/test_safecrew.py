@@ -106,8 +106,8 @@ def test_the_answer_does_not_depend_on_what_was_asked_before():
     chances = Chances(case.program)
     chances.settle(best.lots)
     search = SafeSearch(case.program, chances, best)
-    rising = [search.cheapest(wanted, 10.0).best for wanted in (0.6, 0.7, 0.75)]
-    alone = [found(case, wanted).best for wanted in (0.6, 0.7, 0.75)]
+    rising = [search.cheapest(wanted, 10.0).best.lots for wanted in (0.6, 0.7, 0.75)]
+    alone = [found(case, wanted).best.lots for wanted in (0.6, 0.7, 0.75)]
     assert rising == alone
 
 
