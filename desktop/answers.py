@@ -108,6 +108,11 @@ class Answers(QObject):
         return self._status
 
     @property
+    def workers(self) -> Workers | None:
+        """The processes that answer; None where answers only come through `receive`."""
+        return self._workers
+
+    @property
     def busy(self) -> bool:
         """True while a process is at work on an answer."""
         return self._errand is not None
