@@ -137,11 +137,9 @@ def _facts(plan: Plan, answer: Answer) -> str:
         _floor(plan, answer),
     ]
     extra = answer.whole_people_cost
-    if extra is not None:
+    if extra is not None and answer.state is State.PROVED:
         money = figures.money(extra.absolute, plan.currency)
-        known = answer.state is State.PROVED
-        words = messages.WHOLE_PEOPLE if known else messages.WHOLE_PEOPLE_AT_MOST
-        said.append(words.format(money=money, percent=figures.percent(extra.percent)))
+        said.append(messages.WHOLE_PEOPLE.format(money=money, percent=figures.percent(extra.percent)))
     said.append(_moves(answer.exact.joiners, answer.exact.leavers))
     return messages.SEPARATOR.join(part for part in said if part)
 

@@ -3,6 +3,8 @@
 The notes of a plan's first category (`hours_note`) say what to do: "" answer, "hang", "crash", "flood",
 "rubbish", "noise", "slow", "problems", "refused", "failed". With a file as its argument a "once" before the
 word makes only the first process that sees it do so. The cost of the exact crew is the sum of the amounts.
+"long" finds one crew that is 100 too dear, stops there if a tolerance is given, finds one that is 40 too dear
+and then nothing for a minute; with that crew to start from it proves the cheapest at once.
 """
 
 import json
@@ -81,8 +83,32 @@ def misbehave(word, number, plan):
     return False
 
 
+def solve_long(number, plan, options):
+    whole = answer(plan)
+    cost, crew = whole["bound"], whole["exact"]["crew"]
+
+    def found(over, under):
+        exact = {**whole["exact"], "cost": cost + over}
+        return {**whole, "state": "best found", "proof": None, "exact": exact, "bound": cost - under}
+
+    reply(number, "fractional", {"floor": cost - 90, "crew": crew})
+    if options["start"] == crew:
+        reply(number, "better", found(40, 80))
+        reply(number, "answer", {**whole, "seconds": options["seconds"]})
+        return
+    reply(number, "better", found(100, 60))
+    if options["tolerance"]:
+        reply(number, "answer", found(100, 60))
+        return
+    reply(number, "better", found(40, 50))
+    time.sleep(60)
+
+
 def serve(request):
     number, plan = request["id"], request["plan"]
+    if request["ask"] == "solve" and told(plan) == "long":
+        solve_long(number, plan, request["options"])
+        return
     if misbehave(told(plan), number, plan):
         return
     if request["ask"] == "solve":
