@@ -27,7 +27,7 @@ from solver.planfile import (
     write_whole,
 )
 
-DELAY = 1000  # ms from the first unsaved change to its copy; the promise is two seconds
+DELAY = 500  # ms from the first unsaved change to its copy; two seconds are promised, also on a busy machine
 FOLDER = "recovery"
 FORMAT = "full-complement/recovery"
 
@@ -84,6 +84,8 @@ class Recovery(QObject):
             self._due.start()
 
     def _write(self, content: Content, path: Path | None) -> None:
+        with contextlib.suppress(OSError):  # somebody may have cleared it away; writing tells what is wrong
+            self._file.parent.mkdir(parents=True, exist_ok=True)
         try:
             write_whole(self._file, _text(content, path).encode("utf-8"))
         except CannotSave as why:
