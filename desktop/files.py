@@ -119,6 +119,10 @@ class Files(QObject):
         chosen, _ = QFileDialog.getSaveFileName(self._window, messages.SAVE_AS, start, messages.PLAN_FILES)
         return bool(chosen) and self._write(with_suffix(Path(chosen)))
 
+    def save_to(self, path: Path) -> bool:
+        """Save to `path`, where the plan is kept from now on; True if it is saved now."""
+        return self._write(path)
+
     def may_go(self) -> bool:
         """True if the plan in the window may be replaced or closed: nothing to save, saved, or given up."""
         if not self._document.modified:

@@ -11,7 +11,7 @@ from PySide6.QtGui import QAction, QActionGroup, QKeySequence
 from PySide6.QtWidgets import QMenu, QMenuBar, QWidget
 
 import resources
-from desktop import messages, recent
+from desktop import messages, recent, variant_words
 from desktop.dialogs.about_dialog import about_dialog
 from desktop.dialogs.help_dialog import help_dialog
 from desktop.export import Export
@@ -19,6 +19,7 @@ from desktop.files import Files
 from desktop.look import Look, Palette
 from desktop.rail import PageSpec
 from desktop.traffic import Traffic
+from desktop.variants import Variants
 
 Keys = QKeySequence.StandardKey
 _PALETTES = {Palette.SYSTEM: "As the &system", Palette.LIGHT: "&Light", Palette.DARK: "&Dark"}
@@ -47,7 +48,7 @@ class WindowActions:
 
 
 def fill_file_menu(
-    menu: QMenu, files: Files, traffic: Traffic, export: Export, window: WindowActions
+    menu: QMenu, files: Files, variants: Variants, traffic: Traffic, export: Export, window: WindowActions
 ) -> None:
     """New, open, save, tables in and out, print, and leave."""
     add(menu, "&New", files.new, Keys.New)
@@ -60,6 +61,7 @@ def fill_file_menu(
     menu.addSeparator()
     add(menu, "&Save", files.save, Keys.Save)
     add(menu, "Save &as...", files.save_as, Keys.SaveAs)
+    add(menu, variant_words.ACTION, variants.duplicate)
     menu.addSeparator()
     add(menu, "&Import a table...", traffic.import_table, "Ctrl+Shift+I")
     add(menu, "Save a &template workbook...", traffic.save_template)

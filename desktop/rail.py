@@ -9,7 +9,7 @@ from importlib import import_module
 from PySide6.QtCore import QSize, Qt, Signal
 from PySide6.QtWidgets import QListWidget, QListWidgetItem, QStackedWidget, QWidget
 
-from desktop import mend_words, messages, theme
+from desktop import mend_words, messages, theme, variant_words
 from desktop.answers import Answers
 from desktop.document import Document
 
@@ -57,6 +57,13 @@ PAGES: tuple[PageSpec, ...] = (
         "Ctrl+Shift+A",
         f"{_HOME}.attendance_page",
         "AttendancePage",
+    ),
+    PageSpec(
+        variant_words.TITLE,
+        variant_words.TOOLTIP,
+        "Ctrl+Shift+R",
+        f"{_HOME}.variants_page",
+        "VariantsPage",
     ),
     PageSpec(OUTPUT, "As it is printed", "Ctrl+9", f"{_HOME}.preview_page", "PreviewPage"),
 )

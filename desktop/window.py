@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
+
 from PySide6.QtCore import QEvent, QPoint, QSettings, Qt
 from PySide6.QtGui import QCloseEvent, QIcon
 from PySide6.QtWidgets import (
@@ -32,6 +34,7 @@ from desktop.pages.page_parts import thin_rule
 from desktop.rail import MEND, OUTPUT, PAGES, PageSpec, PageStack, Rail
 from desktop.recovery import Recovery
 from desktop.traffic import Traffic
+from desktop.variants import Variants
 from desktop.workers import Workers
 
 _GEOMETRY = "window/geometry"
@@ -53,6 +56,7 @@ class Window(QMainWindow):
         self.answers = Answers(document, workers, self)
         self.recovery = Recovery(document, self)
         self.files = Files(document, self.recovery, self)
+        self.variants = Variants(document, self.files, self)
         self.traffic = Traffic(document, self)
         self.export = Export(document, self.answers, self)
         self.headline = HeadlineBar(document, self.answers)
@@ -138,7 +142,7 @@ class Window(QMainWindow):
     def _fill_menus(self) -> None:
         bar = self.menuBar()
         pages = WindowActions(self.print_page, self.save_pdf, self.close)
-        fill_file_menu(menu_of(bar, "&File"), self.files, self.traffic, self.export, pages)
+        fill_file_menu(menu_of(bar, "&File"), self.files, self.variants, self.traffic, self.export, pages)
         self.edit_menu = EditMenu(menu_of(bar, "&Edit"), self.document)
         view = menu_of(bar, "&View")
         fill_view_menu(view, self._pages, self.show_page, self._look)
@@ -155,6 +159,7 @@ class Window(QMainWindow):
             changed.connect(self._offer_mending)
         self.stack.shown.connect(self._on_page)
         self.files.told.connect(self.tell)
+        self.variants.told.connect(self.tell)
         self.traffic.told.connect(self.tell)
         self.export.told.connect(self.tell)
         self.recovery.failed.connect(lambda why: self.tell(messages.NO_RECOVERY_COPY.format(why=why)))
@@ -163,10 +168,16 @@ class Window(QMainWindow):
         self._look.changed.connect(self.rail.fit)
 
     def _on_page(self, page: QWidget) -> None:
-        """A page that can remark on entries, or lead to one, is heard, once."""
+        """A page that can remark on entries, or lead to one, or to another plan, is heard, once."""
         if page.property("heard"):
             return
-        for name, hear in (("remarked", self.tell), ("go_to", self.go_to)):
+        heard: dict[str, Callable[..., object]] = {
+            "remarked": self.tell,
+            "go_to": self.go_to,
+            "duplicate_wanted": self.variants.duplicate,
+            "open_wanted": self.files.open,
+        }
+        for name, hear in heard.items():
             said = getattr(page, name, None)
             if said is not None:
                 said.connect(hear)

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 
 from solver.answer import CrewReport, Policy
 from solver.appraisal import Appraiser
@@ -13,6 +12,7 @@ from solver.loosened import is_settling
 from solver.matrix import RowSense
 from solver.plan import Plan
 from solver.program import HeadLine, Line, Program
+from solver.tightestline import TightestLine
 
 
 def tightest(program: Program, lots: Counts, report: CrewReport) -> str:
@@ -51,13 +51,6 @@ def _asked(program: Program, line: Line, head: HeadLine | None, lots: Counts) ->
         if column < program.head_count and coef < 0
     )
     return (row.rhs + drawn) * line.scale
-
-
-@dataclass(frozen=True)
-class TightestLine:
-    """Answer of `tightest`; empty where no line asks for anything."""
-
-    line: str
 
 
 def tightest_line(plan: Plan, crew: Mapping[str, Sequence[float]]) -> TightestLine:

@@ -11,7 +11,7 @@ import pytest
 from solver.nearbest import near_best
 from solver.questions import QUESTIONS, BadOption
 from solver.solve import Heard
-from solver.tightest import TightestLine
+from solver.tightestline import TightestLine
 from solver.warmup import TINY
 from tests.solver.full_plans import full_plan
 
