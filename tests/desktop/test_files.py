@@ -310,11 +310,13 @@ def test_a_damaged_copy_is_left_alone(made):
 
 def test_a_copy_that_cannot_be_written_is_told(made, qtbot):
     document, _, copy = made()
-    copy._file = copy.file.parent / "gone" / "x.json"
+    in_the_way = copy.file.parent / "gone"
+    in_the_way.touch()
+    copy._file = in_the_way / "x.json"
     with qtbot.waitSignal(copy.failed) as failed:
         document.edit("x", PLAN)
         copy.write()
-    assert "does not exist" in failed.args[0]
+    assert "was not saved" in failed.args[0]
 
 
 def test_recent_plans_are_kept_in_order(qapp, tmp_path):
