@@ -103,10 +103,10 @@ class Appraiser:
         phase.set_heads(self._people(lots, t), self._people(lots, t - 1))
         works, groups = len(phase.work_short), len(phase.group_short)
         nothing = np.zeros(works), np.zeros(groups)
-        phase.allow([*phase.work_short, *phase.group_short], [0.0] * (works + groups))
         phase.allow([*phase.work_extra, *phase.group_extra], [inf] * (works + groups))
-        phase.cap_supervision(0.0)
-        running = phase.minimise(Aim.COST)
+        running = self._cheapest_run(phase, 0.0)
+        if running is None:  # what is met exactly may miss by the last digits of a double
+            running = self._cheapest_run(phase, phase.hair)
         if running is None:
             return self._short_run(phase, extras)
         x, prices = phase.x, phase.prices() if self.program.budget_rows else None
@@ -114,6 +114,13 @@ class Appraiser:
         bought = {k: float(x[c]) for k, c in phase.bought.items()}
         extra = self._extras(phase) if extras else {}
         return PhaseRun(*nothing, extra, running, overtime, bought, None, None, prices)
+
+    def _cheapest_run(self, phase: Shortfall, short: float) -> float | None:
+        """The least running cost with at most `short` hours short on each line, None if there is none."""
+        works, groups = len(phase.work_short), len(phase.group_short)
+        phase.allow([*phase.work_short, *phase.group_short], [short] * (works + groups))
+        phase.cap_supervision(short * groups)
+        return phase.minimise(Aim.COST)
 
     def _short_run(self, phase: Shortfall, extras: bool) -> PhaseRun:
         """Supervision short is minimised first, then, with that fixed, work short."""

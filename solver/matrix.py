@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from enum import StrEnum
 
 import numpy as np
@@ -11,6 +11,9 @@ import numpy.typing as npt
 
 Floats = npt.NDArray[np.float64]
 Ints = npt.NDArray[np.intp]
+
+
+FAR = 1e5  # columns beyond this are taken to be no further out in a solution
 
 
 class RowSense(StrEnum):
@@ -62,6 +65,38 @@ class Matrix:
     def width(self) -> int:
         """Number of columns."""
         return len(self.cost)
+
+
+def roundoff(matrix: Matrix, row: Row) -> float:
+    """What doubles may get wrong about a row of integer columns alone; 0 for any other row."""
+    if not all(matrix.integer[i] for i in row.columns):
+        return 0.0
+    size = sum(abs(a) * min(matrix.upper[i], FAR) for i, a in zip(row.columns, row.coefs, strict=True))
+    return 2e-15 * (size + abs(row.rhs))
+
+
+def forgiving(matrix: Matrix) -> Matrix:
+    """`matrix` with rows of integer columns loosened by their roundoff, other columns' limits by as little.
+
+    CLP may call a program infeasible that is met exactly but for the last digit of a double. Rows and
+    columns keep their places; equations get a column of their own, behind the others, to give way by.
+    """
+    upper = [u if whole else u * (1 + 1e-12) for u, whole in zip(matrix.upper, matrix.integer, strict=True)]
+    made = Matrix(matrix.cost[:], matrix.lower[:], upper, matrix.integer[:])
+    for row in matrix.rows:
+        slack = roundoff(matrix, row)
+        if slack and row.sense is RowSense.EQUAL:
+            free = made.add_column(0.0, -slack, slack)
+            row = replace(row, columns=(*row.columns, free), coefs=(*row.coefs, 1.0))
+        elif slack:
+            row = replace(row, rhs=loosened_rhs(row, slack))
+        made.rows.append(row)
+    return made
+
+
+def loosened_rhs(row: Row, slack: float) -> float:
+    """A row's right-hand side, `slack` looser; an equation's as it is."""
+    return row.rhs + {RowSense.AT_LEAST: -slack, RowSense.AT_MOST: slack, RowSense.EQUAL: 0.0}[row.sense]
 
 
 class DualBound:

@@ -19,7 +19,7 @@ Columns p, q, u, o are there only where something depends on them.
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import dataclass
 from decimal import Decimal
 from fractions import Fraction
@@ -32,8 +32,9 @@ from solver.ledger import Ledger
 from solver.matrix import Floats, Matrix, RowSense
 from solver.plan import Budget, Category, Plan, Presence, Ratio, Rule, Sense, Share
 
-# head counts nobody limited get at least this many lots, and ten times what any one line asks for
+# head counts nobody limited get at least this many lots, and AMPLE times what any one line asks for
 UNLIMITED_LOTS = 10**6
+AMPLE = 1000
 
 SENSES = {Sense.AT_LEAST: RowSense.AT_LEAST, Sense.AT_MOST: RowSense.AT_MOST, Sense.EXACTLY: RowSense.EQUAL}
 
@@ -168,19 +169,32 @@ class Program:
             self._add_bound_lines(j, category)
 
     def _unlimited(self, j: int) -> int:
-        """A limit in lots for a head count that nobody limited, far above what any line can ask for."""
+        """A limit in lots for a head count that nobody limited, far above what any line can ask for.
+
+        Ratios, shares and supervision pass on what is asked of one category to others: so it is the most
+        that is asked of any.
+        """
+        return max(UNLIMITED_LOTS, ceil(AMPLE * self._most_wanted / self.lots[j]))
+
+    @cached_property
+    def _most_wanted(self) -> Fraction:
+        """The most people that one bound, work or presence rule, and one ratio or share, can ask for."""
+        asked = max((x for j in range(len(self.categories)) for x in self._wanted(j)), default=Fraction(0))
+        parts = [Fraction(rule.at_most) for rule in self.plan.rules if isinstance(rule, Ratio)]
+        parts += [Fraction(rule.fraction) for rule in self.plan.rules if isinstance(rule, Share)]
+        return asked / min((part for part in parts if 0 < part < 1), default=Fraction(1))
+
+    def _wanted(self, j: int) -> Iterator[Fraction]:
         category = self.categories[j]
-        wants = [Fraction(category.at_least)]
+        yield Fraction(category.at_least)
         for work in self.plan.works:
             each = Fraction(category.output.get(work.name, 0)) * self.attended[j]
             if each > 0:
-                wants += [
-                    Fraction(amount) / (each * self.periods(t)) for t, amount in enumerate(work.amounts)
-                ]
+                for t, amount in enumerate(work.amounts):
+                    yield Fraction(amount) / (each * self.periods(t))
         for rule in self.plan.rules:
             if isinstance(rule, Presence) and rule.weights.get(category.name, 0) > 0:
-                wants.append(Fraction(rule.bound) / Fraction(rule.weights[category.name]))
-        return max(UNLIMITED_LOTS, ceil(10 * max(wants) / self.lots[j]))
+                yield Fraction(rule.bound) / Fraction(rule.weights[category.name])
 
     def _add_bound_lines(self, j: int, category: Category) -> None:
         lot = self.lots[j]

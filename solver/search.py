@@ -9,7 +9,7 @@ from __future__ import annotations
 
 import heapq
 from collections.abc import Callable, Iterable, Iterator, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from fractions import Fraction
 from math import ceil, gcd, inf
 from time import monotonic
@@ -18,7 +18,7 @@ from typing import Any
 import numpy as np
 
 from solver.engine import LpStatus, Relaxation
-from solver.matrix import DualBound, Floats, Ints, Matrix
+from solver.matrix import DualBound, Floats, Ints, Matrix, forgiving, loosened_rhs, roundoff
 from solver.program import HeadLine, Program
 
 INTEGRAL = 1e-6
@@ -87,7 +87,7 @@ class Search:
         self.program = program
         self._head_lines = program.head_lines if head_lines is None else head_lines
         self.matrix = program.matrix if matrix is None else matrix
-        self.relaxation = Relaxation(self.matrix)
+        self.relaxation = Relaxation(forgiving(self.matrix))
         self.grain = grain
         self.solved = 0
         self._dual_bound = DualBound(self.matrix)
@@ -119,7 +119,8 @@ class Search:
 
     def set_rhs(self, row: int, rhs: float) -> None:
         """Change the right-hand side of one row, also of the nodes still open."""
-        self.relaxation.set_rhs(row, rhs)
+        changed = replace(self.matrix.rows[row], rhs=rhs)
+        self.relaxation.set_rhs(row, loosened_rhs(changed, roundoff(self.matrix, changed)))
         self._dual_bound.set_rhs(row, rhs)
 
     def root_bound(self) -> float:

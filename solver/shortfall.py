@@ -27,7 +27,8 @@ from solver.engine import EngineFailure, LpStatus, Relaxation
 from solver.matrix import Floats, Matrix, RowSense
 from solver.program import Program
 
-# hours; a second of work is 2.8e-4
+# hours
+SECOND = 1 / 3600
 SHORT = 1e-6
 
 
@@ -83,6 +84,7 @@ class Shortfall:
         self._priced: dict[int, float] = {}
         self._bounds = {c: (self._matrix.lower[c], self._matrix.upper[c]) for c in range(self._matrix.width)}
         self._rhs = list(self._constant)
+        self.hair = min(SHORT + 1e-14 * max(map(abs, self._constant), default=0.0), SECOND)
         self._unsettled: dict[int, float] = {}
 
     # ---- building ----------------------------------------------------------------------------
