@@ -1,4 +1,4 @@
-"""The page of variants: several plans side by side, each a file of its own, one worked out after the other."""
+"""The page of variants: several plans side by side, each a file of its own, worked out one by one."""
 
 from __future__ import annotations
 
@@ -174,7 +174,7 @@ class VariantsPage(QWidget):
         self.table.show_plans(compared, titles, [str(e.path) if e.path else say.HERE for e in compared])
         self.view.refit()
         self.hint.setText(say.HOW if self.comparison.paths else say.ALONE)
-        wrong = [say.problem(e.path.name if e.path else say.HERE, e.problem) for e in compared if e.problem]
+        wrong = [_problem(entry) for entry in compared if entry.problem]
         self.problems.setText("\n".join(wrong))
         self.problems.setVisible(bool(wrong))
         self._show_progress()
@@ -228,6 +228,12 @@ class VariantsPage(QWidget):
             self._later()
         elif event.type() in (QEvent.Type.PaletteChange, QEvent.Type.FontChange):
             self.view.refit()
+
+
+def _problem(entry: Compared) -> str:
+    """Which plan, and why it is not compared; what cannot be read is named by its sentence already."""
+    name = entry.path.name if entry.path else say.HERE
+    return entry.problem if entry.problem.startswith(name) else say.problem(name, entry.problem)
 
 
 def _button(text: str, tip: str) -> QPushButton:

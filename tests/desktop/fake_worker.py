@@ -114,6 +114,9 @@ def serve(request):
     if request["ask"] == "solve":
         reply(number, "answer", answer(plan))
         return
+    if request["ask"] == "tightest":
+        reply(number, "answer", {"line": plan["works"][0]["name"] if plan["works"] else ""})
+        return
     reply(number, "progress", {"says": "half way", "done": 0.5})
     if request["options"].get("wait"):
         time.sleep(request["options"]["wait"])
