@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QEvent, QSize, Qt, QTimer, Signal
-from PySide6.QtGui import QFontMetrics, QResizeEvent
+from PySide6.QtCore import QEvent, QObject, QSize, Qt, QTimer, Signal
+from PySide6.QtGui import QFontMetrics
 from PySide6.QtWidgets import (
     QFrame,
     QHBoxLayout,
@@ -58,6 +58,7 @@ class HeadlineBar(QFrame):
         self.further_button = _button(messages.LOOK_FURTHER, messages.LOOK_FURTHER_TIP, FURTHER_KEYS)
         self.further_button.clicked.connect(answers.look_further)
         self._height_of_buttons = QSpacerItem(0, 0)
+        self.crew.installEventFilter(self)
         self._soon = QTimer(self, singleShot=True, interval=PATIENCE)
         self._soon.timeout.connect(self._show)
         self._lay_out()
@@ -152,10 +153,11 @@ class HeadlineBar(QFrame):
         elif self._said.action is Action.ASK_AGAIN:
             self._answers.again()
 
-    def resizeEvent(self, event: QResizeEvent) -> None:
-        """Fit the crew into the new width."""
-        super().resizeEvent(event)
-        self._fit_crew()
+    def eventFilter(self, watched: QObject, event: QEvent) -> bool:
+        """Fit the crew into its new width, whether the window or what stands beside it changed."""
+        if watched is self.crew and event.type() == QEvent.Type.Resize:
+            self._fit_crew()
+        return super().eventFilter(watched, event)
 
     def changeEvent(self, event: QEvent) -> None:
         """Follow the theme and the zoom."""

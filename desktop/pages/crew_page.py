@@ -3,19 +3,30 @@
 from __future__ import annotations
 
 from PySide6.QtCore import QModelIndex, Qt, Signal
-from PySide6.QtWidgets import QAbstractItemView, QHBoxLayout, QLabel, QPushButton, QVBoxLayout, QWidget
+from PySide6.QtWidgets import (
+    QAbstractItemView,
+    QBoxLayout,
+    QHBoxLayout,
+    QLabel,
+    QPushButton,
+    QVBoxLayout,
+    QWidget,
+)
 
 from desktop import crew_words as say
 from desktop.answers import Answers, Status
 from desktop.document import Document
 from desktop.pages.crew_notes import binding_lines, run_lines
 from desktop.pages.page_parts import AnswerPage, heading, label
+from desktop.pictures.sideways import Sideways
 from desktop.pictures.tally import TallyPicture
 from desktop.pictures.tally_layout import tally_of
 from desktop.tables.crews import CrewTable
 from desktop.tables.quiet_view import QuietView
 from desktop.theme import Size, current
 from solver.answer import State
+
+_PHASES_BESIDE_NOTES = 6  # more of them take the whole width, and the notes stand below
 
 
 class CrewPage(AnswerPage):
@@ -30,6 +41,7 @@ class CrewPage(AnswerPage):
         super().__init__(answers, parent)
         self._document = document
         self.tally = TallyPicture()
+        self.tally_view = Sideways(self.tally)
         self.binding = label()
         self.run = label()
         self.impossible = label()
@@ -53,11 +65,11 @@ class CrewPage(AnswerPage):
 
     def _fill(self) -> None:
         self.body.addWidget(self.impossible)
-        top = QHBoxLayout()
-        top.setSpacing(current().px(4))
-        top.addWidget(self.tally, 3, Qt.AlignmentFlag.AlignTop)
-        top.addLayout(self._notes(), 1)
-        self.body.addLayout(top)
+        self._top = QHBoxLayout()
+        self._top.setSpacing(current().px(4))
+        self._top.addWidget(self.tally_view, 3, Qt.AlignmentFlag.AlignTop)
+        self._top.addLayout(self._notes(), 1)
+        self.body.addLayout(self._top)
         self.body.addLayout(self._table_bar())
         self.body.addWidget(self.view)
         self.body.addWidget(self.refusal)
@@ -102,10 +114,14 @@ class CrewPage(AnswerPage):
         self.impossible.setVisible(answer.conflict is not None)
         if answer.conflict is not None:
             self.impossible.setText(say.conflict([c.says for c in answer.conflict.lines]))
-        self.tally.setVisible(possible or answer.fractional is not None)
+        self.tally_view.setVisible(possible or answer.fractional is not None)
         exact = answer.exact.crew if answer.exact else None
         proved = answer.state is not State.BEST_FOUND
         self.tally.show_tally(tally_of(plan, answer.fractional, exact, proved=proved))
+        self.tally_view.fit()
+        many = len(plan.phases) > _PHASES_BESIDE_NOTES
+        self._top.setDirection(QBoxLayout.Direction.TopToBottom if many else QBoxLayout.Direction.LeftToRight)
+        self._top.setSpacing(current().px(1 if many else 4))
         self._show_notes()
         self._show_table()
 
@@ -148,3 +164,4 @@ class CrewPage(AnswerPage):
         super().retouch()
         self.view.refit()
         self.tally.updateGeometry()
+        self.tally_view.fit()

@@ -85,10 +85,7 @@ def paint_phases(painter: QPainter, rect: QRectF, tally: Tally, theme: Theme) ->
     for row in tally.rows:
         rule(painter, rect.left(), top - 4 * unit, rect.right(), top - 4 * unit, theme)
         frame = _Frame(row, top, edges, theme, _step(tally) * unit)
-        box = QRectF(rect.left(), top + 3 * unit, name_width, 20 * unit)
-        write(painter, box, row.name, theme.picture_font(), theme.ink)
-        note = _name_note(row)
-        write(painter, box.translated(0, 18 * unit), note, theme.picture_font(Size.SMALL), theme.faint)
+        _paint_name(painter, QRectF(rect.left(), top + 3 * unit, name_width, 20 * unit), row, theme)
         _paint_steps(painter, frame)
         for at in range(len(tally.phases)):
             _paint_cell(painter, frame, at)
@@ -96,6 +93,26 @@ def paint_phases(painter: QPainter, rect: QRectF, tally: Tally, theme: Theme) ->
     if tally.rows:
         whole = say.LEGEND_EXACT if tally.proved else say.LEGEND_BEST_FOUND
         _paint_key(painter, QRectF(edges[0], top, rect.right() - edges[0], 20 * unit), whole, theme)
+
+
+def paint_names(painter: QPainter, rect: QRectF, tally: Tally, theme: Theme) -> None:
+    """The names again, on paper of their own at the left of `rect`: for when the picture is scrolled."""
+    unit = theme.zoom
+    name_width = _name_width(tally, rect.width() * _NAME_SHARE, theme)
+    margin = 12 * unit
+    ground = QRectF(rect.left() - margin, rect.top(), name_width + 2 * margin, rect.height())
+    painter.fillRect(ground, theme.paper)
+    top = rect.top() + _HEADER * unit
+    for row in tally.rows:
+        rule(painter, rect.left(), top - 4 * unit, rect.left() + name_width, top - 4 * unit, theme)
+        _paint_name(painter, QRectF(rect.left(), top + 3 * unit, name_width, 20 * unit), row, theme)
+        top += (_NUMBERS + _GAP + _step(tally)) * unit
+
+
+def _paint_name(painter: QPainter, box: QRectF, row: TallyRow, theme: Theme) -> None:
+    write(painter, box, row.name, theme.picture_font(), theme.ink)
+    below = box.translated(0, 18 * theme.zoom)
+    write(painter, below, _name_note(row), theme.picture_font(Size.SMALL), theme.faint)
 
 
 def _name_width(tally: Tally, most: float, theme: Theme) -> float:

@@ -7,7 +7,7 @@ strokes. Plans of several phases are drawn as stepped head counts (`phase_tally`
 from __future__ import annotations
 
 from PySide6.QtCore import QPointF, QRectF
-from PySide6.QtGui import QPainter
+from PySide6.QtGui import QPainter, QPaintEvent
 from PySide6.QtWidgets import QWidget
 
 from desktop import crew_words as say
@@ -15,7 +15,7 @@ from desktop import figures
 from desktop.pictures.brush import RIGHT, rule, text_width, write
 from desktop.pictures.figure import Mark, paint_figure
 from desktop.pictures.key import key_width, paint_key
-from desktop.pictures.phase_tally import paint_phases, phases_height
+from desktop.pictures.phase_tally import paint_names, paint_phases, phases_height
 from desktop.pictures.picture import Picture
 from desktop.pictures.tally_layout import RowLayout, Tally, TallyMetrics, TallyRow, tally_layout
 from desktop.theme import Size, Theme, current
@@ -23,6 +23,7 @@ from desktop.theme import Size, Theme, current
 _LEGEND_HEIGHT = 28.0
 _NAME_SHARE = 0.24
 _FEW = 5
+_NAMES, _PHASE = 17, 8.5  # least width of the names and of each of several phases, in steps of the grid
 
 
 class Columns:
@@ -167,6 +168,7 @@ class TallyPicture(Picture):
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(say.TALLY, parent)
         self._tally = Tally((), ())
+        self.least = TallyPicture.least
 
     def content_height(self, theme: Theme) -> float:
         """Height of the tally."""
@@ -178,8 +180,11 @@ class TallyPicture(Picture):
         return self._tally
 
     def show_tally(self, tally: Tally) -> None:
-        """Show `tally`."""
+        """Show `tally`; many phases need their width."""
+        if tally == self._tally:
+            return
         self._tally = tally
+        self.least = max(TallyPicture.least, _NAMES + len(tally.phases) * _PHASE)
         self.setAccessibleDescription(". ".join(self._sentences()))
         self.updateGeometry()
         self.update()
@@ -201,6 +206,19 @@ class TallyPicture(Picture):
     def draw(self, painter: QPainter, rect: QRectF, theme: Theme) -> None:
         """Paint the tally."""
         paint_tally(painter, rect, self._tally, theme)
+
+    def paintEvent(self, event: QPaintEvent) -> None:
+        """The picture; where it is scrolled sideways the names stay."""
+        super().paintEvent(event)
+        left, inner = self.visibleRegion().boundingRect().left(), self.inner()
+        if left <= 0 or len(self._tally.phases) < 2:
+            return
+        painter = QPainter(self)
+        try:
+            painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+            paint_names(painter, inner.translated(left, 0), self._tally, current())
+        finally:
+            painter.end()
 
     def rows(self) -> list[list[str]]:
         """Category, phase, fractional, exact, joiners, leavers."""

@@ -62,30 +62,27 @@ def crew_columns(plan: Plan, answer: Answer | None) -> tuple[CrewColumn, ...]:
     for policy in Policy:
         report = answer.report(policy) if answer else None
         crew = plan.own or None if policy is Policy.OWN else report.crew if report else None
-        title, tip = _heading(policy, answer)
+        title, tip = crew_heading(policy, answer)
         made.append(CrewColumn(title, tip, policy, crew, report, floor))
     return tuple(made)
 
 
-def _heading(policy: Policy, answer: Answer | None) -> tuple[str, str]:
+def crew_heading(policy: Policy, answer: Answer | None) -> tuple[str, str]:
     """Title and meaning of a column; a crew is called exact only where it is proved."""
     if policy is Policy.EXACT and answer is not None and answer.state is State.BEST_FOUND:
         return say.BEST_FOUND, say.TIP_BEST_FOUND
     return say.policy_title(policy), say.POLICY_TIPS[policy]
 
 
-def crew_rows(plan: Plan, exact_cost: float | None) -> tuple[CrewRow, ...]:
-    """A row per category and phase, then the totals."""
-    return (*_count_rows(plan), *_total_rows(plan, exact_cost))
-
-
-def _count_rows(plan: Plan) -> list[CrewRow]:
+def count_rows(plan: Plan) -> list[CrewRow]:
+    """A row per category and phase."""
     several = len(plan.phases) > 1
     made = []
     for category in plan.categories:
+        lot = figures.people(category.lot)
         for at, phase in enumerate(plan.phases):
             title = say.in_phase(category.name, phase.name) if several else category.name
-            tip = say.count_tip(category.name, figures.people(category.lot), phase.name if several else "")
+            tip = say.count_tip(category.name, lot, phase.name if several else "")
             made.append(CrewRow(RowKind.COUNT, title, tip, _count(category.name, at), category, at))
     return made
 
@@ -102,7 +99,9 @@ def _of_report(get: Callable[[CrewReport], str]) -> Callable[[CrewColumn], str]:
     return lambda column: get(column.report) if column.report and column.report.crew is not None else ""
 
 
-def _total_rows(plan: Plan, exact_cost: float | None) -> list[CrewRow]:
+def total_rows(plan: Plan, exact_cost: float | None) -> list[CrewRow]:
+    """What crews come to, told against the exact one."""
+
     def total(title: str, tip: str, text: Callable[[CrewColumn], str]) -> CrewRow:
         return CrewRow(RowKind.TOTAL, title, tip, text)
 

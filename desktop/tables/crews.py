@@ -15,11 +15,12 @@ from PySide6.QtCore import QAbstractTableModel, QModelIndex, QObject, QPersisten
 from desktop import crew_words as say
 from desktop.document import Document
 from desktop.pictures.copyable import plain_tip
-from desktop.tables.crew_rows import CrewColumn, CrewRow, RowKind, crew_columns, crew_rows
+from desktop.tables.crew_rows import CrewColumn, CrewRow, RowKind, count_rows, crew_columns, total_rows
 from desktop.tables.numbers import Refused
 from desktop.tables.own_crew import own_count, own_started, with_own
 from desktop.theme import Size, current
 from solver.answer import Answer, Policy
+from solver.plan import Plan
 
 Index = QModelIndex | QPersistentModelIndex
 _NOWHERE = QModelIndex()
@@ -39,6 +40,7 @@ class CrewTable(QAbstractTableModel):
         self._answer: Answer | None = None
         self._columns: tuple[CrewColumn, ...] = ()
         self._rows: tuple[CrewRow, ...] = ()
+        self._counted: tuple[Plan, list[CrewRow]] | None = None
         self._refused: dict[tuple[str, int], tuple[str, str]] = {}
 
     @property
@@ -55,7 +57,8 @@ class CrewTable(QAbstractTableModel):
         """Show the crews of `answer` and the own crew of the document."""
         plan = self._document.plan
         columns = crew_columns(plan, answer)
-        rows = crew_rows(plan, answer.exact.cost if answer and answer.exact else None)
+        cost = answer.exact.cost if answer and answer.exact else None
+        rows = (*self._counts_of(plan), *total_rows(plan, cost))
         same = [r.title for r in rows] == [r.title for r in self._rows] and len(columns) == len(self._columns)
         if not same:
             self.beginResetModel()
@@ -70,6 +73,12 @@ class CrewTable(QAbstractTableModel):
                 self.headerDataChanged.emit(Qt.Orientation.Horizontal, 0, len(columns) - 1)
         else:
             self.endResetModel()
+
+    def _counts_of(self, plan: Plan) -> list[CrewRow]:
+        """The rows of head counts, made once for a plan: of a large one there are a thousand."""
+        if self._counted is None or self._counted[0] is not plan:
+            self._counted = (plan, count_rows(plan))
+        return self._counted[1]
 
     def own_column(self) -> int:
         """Number of the column to type in, -1 before anything is shown."""

@@ -14,6 +14,7 @@ from desktop import figures
 from desktop.pictures.brush import RIGHT, rule, write
 from desktop.pictures.copyable import plain_tip
 from desktop.pictures.margin_bars import is_broken, paint_absent, paint_margin
+from desktop.tables.crew_rows import crew_heading
 from desktop.tables.margin_rows import MarginRow, margin_columns, margin_rows
 from desktop.theme import Size, current
 from solver.answer import Answer, CrewReport
@@ -30,6 +31,7 @@ class MarginTable(QAbstractTableModel):
         super().__init__(parent)
         self._columns: tuple[CrewReport, ...] = ()
         self._rows: tuple[MarginRow, ...] = ()
+        self._headings: tuple[tuple[str, str], ...] = ()
 
     @property
     def columns(self) -> tuple[CrewReport, ...]:
@@ -48,11 +50,15 @@ class MarginTable(QAbstractTableModel):
         same = same and [c.policy for c in columns] == [c.policy for c in self._columns]
         if not same:
             self.beginResetModel()
-        self._columns, self._rows = columns, rows
+        headings = tuple(crew_heading(report.policy, answer) for report in columns)
+        titled = headings == self._headings
+        self._columns, self._rows, self._headings = columns, rows, headings
         if not same:
             self.endResetModel()
         elif rows and columns:
             self.dataChanged.emit(self.index(0, 0), self.index(len(rows) - 1, len(columns) - 1))
+            if not titled:
+                self.headerDataChanged.emit(Qt.Orientation.Horizontal, 0, len(columns) - 1)
 
     def margin(self, index: Index) -> float | None:
         """The margin in a cell; None in totals and where there is no crew."""
@@ -112,11 +118,10 @@ class MarginTable(QAbstractTableModel):
             side = Qt.AlignmentFlag.AlignRight if across else Qt.AlignmentFlag.AlignLeft
             return side | Qt.AlignmentFlag.AlignVCenter
         if across:
-            report = self._columns[section]
-            policy = report.policy
-            tip = "\n".join(part for part in (say.POLICY_TIPS[policy], report.why_none) if part)
+            title, means = self._headings[section]
+            tip = "\n".join(part for part in (means, self._columns[section].why_none) if part)
             texts = {
-                Qt.ItemDataRole.DisplayRole: say.policy_title(policy),
+                Qt.ItemDataRole.DisplayRole: title,
                 Qt.ItemDataRole.ToolTipRole: plain_tip(tip),
             }
         else:

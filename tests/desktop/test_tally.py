@@ -8,7 +8,8 @@ from PySide6.QtGui import QImage, QPainter, QPdfWriter
 from desktop import theme as themes
 from desktop.pictures.figure import Mark
 from desktop.pictures.phase_tally import phase_edges, step_points
-from desktop.pictures.tally import paint_tally, tally_height
+from desktop.pictures.sideways import Sideways
+from desktop.pictures.tally import TallyPicture, _legend, paint_tally, tally_height
 from desktop.pictures.tally_layout import (
     Tally,
     TallyMetrics,
@@ -19,6 +20,7 @@ from desktop.pictures.tally_layout import (
     tally_of,
 )
 from tests.desktop import samples
+from tests.family import family_plan
 
 METRICS = TallyMetrics(figures_width=600)
 
@@ -147,3 +149,34 @@ def test_long_phases_are_wider_and_short_ones_stay_readable():
 def test_steps_stand_at_their_counts():
     points = step_points((1, 3), (0, 10, 20), base=100, unit=5)
     assert [(p.x(), p.y()) for p in points] == [(0, 95), (10, 95), (10, 85), (20, 85)]
+
+
+def test_many_phases_scroll_in_their_own_frame_and_the_names_stay(qtbot, qapp):
+    plan = family_plan(3, 1, 52, 0)
+    crew = {c.name: tuple(float(n % 4) for n in range(52)) for c in plan.categories}
+    picture = TallyPicture()
+    frame = Sideways(picture)
+    qtbot.addWidget(frame)
+    frame.resize(700, 400)
+    frame.show()
+    picture.show_tally(tally_of(plan, None, crew))
+    frame.fit()
+    bar = frame.horizontalScrollBar()
+    qtbot.waitUntil(lambda: bar.maximum() > 2000)
+    assert frame.minimumSizeHint().width() < 700  # the page can stay as narrow as it is
+    assert frame.height() >= picture.sizeHint().height() + bar.sizeHint().height()
+    names = QRect(0, 60, 80, 150)
+    before = frame.viewport().grab(names).toImage()
+    bar.setValue(1500)
+    assert frame.viewport().grab(names).toImage() == before
+    picture.show_tally(tally_of(samples.museum_plan(), None, samples.museum_answer().exact.crew))
+    frame.fit()
+    qtbot.waitUntil(lambda: bar.maximum() == 0)
+    assert frame.height() == picture.sizeHint().height()
+
+
+def test_a_crew_that_is_not_proved_is_not_called_exact(qapp):
+    legend = [
+        text for _, text in _legend(Tally((), (TallyRow("A", None, (2.0,), 1.0, 1.0),), proved=False), 1)
+    ]
+    assert "best crew found, on the books" in legend
