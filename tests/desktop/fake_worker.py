@@ -106,10 +106,11 @@ def solve_long(number, plan, options):
 
 def serve(request):
     number, plan = request["id"], request["plan"]
-    if request["ask"] == "solve" and told(plan) == "long":
+    word = told(plan)  # asked once: "once" is over then
+    if request["ask"] == "solve" and word == "long":
         solve_long(number, plan, request["options"])
         return
-    if misbehave(told(plan), number, plan):
+    if misbehave(word, number, plan):
         return
     if request["ask"] == "solve":
         reply(number, "answer", answer(plan))
