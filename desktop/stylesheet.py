@@ -4,6 +4,8 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
+import resources
+
 if TYPE_CHECKING:
     from desktop.theme import Theme
 
@@ -45,6 +47,14 @@ QLineEdit, QPlainTextEdit {{
 QLineEdit:focus, QPlainTextEdit:focus {{ border: 2px solid {focus}; }}
 QAbstractSpinBox QLineEdit, QAbstractSpinBox QLineEdit:focus, QComboBox QLineEdit {{
   border: 0; background: transparent; }}
+QCheckBox::indicator, QListView::indicator, QTableView::indicator {{
+  width: {box}px; height: {box}px; border: 1px solid {faint}; border-radius: 2px; background: {cell};
+}}
+QCheckBox:focus::indicator {{ border: 2px solid {focus}; }}
+QCheckBox::indicator:disabled {{ border-color: {rule}; background: {paper}; }}
+QCheckBox::indicator:checked, QListView::indicator:checked, QTableView::indicator:checked {{
+  image: url("{tick}");
+}}
 QFrame[frameShape="4"], QFrame[frameShape="5"] {{ color: {rule}; }}
 QMenuBar {{ background: {paper}; color: {ink}; }}
 QMenuBar::item:selected, QMenu::item:selected {{ background: {selected}; color: {ink}; }}
@@ -61,7 +71,9 @@ def stylesheet(theme: Theme) -> str:
     sizes |= {"half_less": sizes["half"] - 1, "button_less": sizes["button"] - 1}
     roles = ("ink", "faint", "paper", "cell", "rule", "selected", "focus")
     colours = {role: getattr(theme, role).name() for role in roles}
-    return _RULES.format(**colours, **sizes) + _tones(theme) + _sizes(theme)
+    sizes["box"] = theme.px(1.5)
+    tick = resources.tick_path(theme.dark).as_posix()
+    return _RULES.format(**colours, **sizes, tick=tick) + _tones(theme) + _sizes(theme)
 
 
 def _tones(theme: Theme) -> str:

@@ -22,6 +22,11 @@ def icon_path(suffix: str = "png") -> Path:
     return _HERE / "icons" / f"full-complement.{suffix}"
 
 
+def tick_path(dark: bool = False) -> Path:
+    """The tick of a box, in the ink of the light or the dark palette."""
+    return _HERE / "icons" / f"tick-{'dark' if dark else 'light'}.png"
+
+
 def licence_texts() -> dict[str, str]:
     """The licence of the program and of everything shipped with it, by name."""
     paths = sorted((_HERE / "licences").glob("*.txt"))

@@ -1,6 +1,6 @@
 import pytest
 from PySide6.QtGui import QColor
-from PySide6.QtWidgets import QLabel
+from PySide6.QtWidgets import QCheckBox, QLabel
 
 from desktop import theme as themes
 
@@ -42,6 +42,24 @@ def test_sizes_follow_zoom(qtbot, qapp):
     themes.apply(qapp, themes.light())
     assert label.font().pointSizeF() == pytest.approx(20)
     assert label.palette().windowText().color() == themes.light().exact
+
+
+@pytest.mark.parametrize("theme", [themes.light(), themes.dark()], ids=lambda t: t.name)
+def test_boxes_to_tick_are_seen_ticked_or_not(theme, qtbot, qapp):
+    themes.apply(qapp, theme)
+    box = QCheckBox("x")
+    qtbot.addWidget(box)
+    seen = {}
+    for ticked in (False, True):
+        box.setChecked(ticked)
+        image = box.grab().toImage()
+        middle = image.height() // 2
+        line = [image.pixelColor(x, middle) for x in range(theme.px(2))]
+        seen[ticked] = line
+        # WCAG 2.1, 1.4.11 non-text contrast: at least 3 to 1
+        assert max(themes.contrast(colour, theme.paper) for colour in line) >= 3
+    assert seen[False] != seen[True]
+    themes.apply(qapp, themes.light())
 
 
 def test_an_unknown_system_scheme_is_light(qapp):
