@@ -70,6 +70,7 @@ class ImportDialog(QDialog):
         self._lay_out()
         self._connect()
         self._show_table()
+        (self.sheet_box if len(self.intake.sheets) > 1 else self.what_box).setFocus()
 
     # parts
 
@@ -124,7 +125,8 @@ class ImportDialog(QDialog):
         buttons.addButton(self.next_button, QDialogButtonBox.ButtonRole.ActionRole)
         buttons.rejected.connect(self.reject)
         foot = QHBoxLayout()
-        foot.addWidget(self.leave_out, 1)
+        foot.addWidget(self.leave_out)
+        foot.addStretch(1)
         foot.addWidget(buttons)
         layout = QVBoxLayout(self)
         layout.setSpacing(current().px(1))
