@@ -75,8 +75,11 @@ class _Frame:
         return QRectF(left, self.top, width, _NUMBERS * self.theme.zoom)
 
 
-def paint_phases(painter: QPainter, rect: QRectF, tally: Tally, theme: Theme) -> None:
-    """Draw the stepped head counts of `tally` into `rect`."""
+def paint_phases(
+    painter: QPainter, rect: QRectF, tally: Tally, theme: Theme, seen: QRectF | None = None
+) -> None:
+    """Draw the stepped head counts of `tally` into `rect`; only what touches `seen` where that is given."""
+    seen = rect if seen is None else seen
     unit = theme.zoom
     name_width = _name_width(tally, rect.width() * _NAME_SHARE, theme)
     edges = phase_edges(tally.phases, rect.left() + name_width + 16 * unit, rect.right())
@@ -85,11 +88,14 @@ def paint_phases(painter: QPainter, rect: QRectF, tally: Tally, theme: Theme) ->
     for row in tally.rows:
         rule(painter, rect.left(), top - 4 * unit, rect.right(), top - 4 * unit, theme)
         frame = _Frame(row, top, edges, theme, _step(tally) * unit)
-        _paint_name(painter, QRectF(rect.left(), top + 3 * unit, name_width, 20 * unit), row, theme)
-        _paint_steps(painter, frame)
-        for at in range(len(tally.phases)):
-            _paint_cell(painter, frame, at)
-        top += (_NUMBERS + _GAP) * unit + frame.step
+        high = (_NUMBERS + _GAP) * unit + frame.step
+        if top - _GAP * unit <= seen.bottom() and top + high >= seen.top():
+            _paint_name(painter, QRectF(rect.left(), top + 3 * unit, name_width, 20 * unit), row, theme)
+            _paint_steps(painter, frame)
+            for at in range(len(tally.phases)):
+                if edges[at] <= seen.right() and edges[at + 1] >= seen.left():
+                    _paint_cell(painter, frame, at)
+        top += high
     if tally.rows:
         whole = say.LEGEND_EXACT if tally.proved else say.LEGEND_BEST_FOUND
         _paint_key(painter, QRectF(edges[0], top, rect.right() - edges[0], 20 * unit), whole, theme)

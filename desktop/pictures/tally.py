@@ -87,15 +87,25 @@ def tally_height(tally: Tally, theme: Theme, *, legend: bool = True) -> float:
 
 
 def paint_tally(
-    painter: QPainter, rect: QRectF, tally: Tally, theme: Theme, *, legend: bool = True, shrink: float = 1.0
+    painter: QPainter,
+    rect: QRectF,
+    tally: Tally,
+    theme: Theme,
+    *,
+    legend: bool = True,
+    shrink: float = 1.0,
+    seen: QRectF | None = None,
 ) -> None:
-    """Draw `tally` into `rect`; `shrink` < 1 draws everything smaller (for a crowded printed page)."""
+    """Draw `tally` into `rect`; `shrink` < 1 draws everything smaller (for a crowded printed page).
+
+    `seen`: the part that will be looked at, where that is not all of it.
+    """
     painter.save()
     painter.translate(rect.topLeft())
     painter.scale(shrink, shrink)
     inner = QRectF(0, 0, rect.width() / shrink, rect.height() / shrink)
     if len(tally.phases) > 1:
-        paint_phases(painter, inner, tally, theme)
+        paint_phases(painter, inner, tally, theme, seen and seen.translated(-rect.topLeft()))
     else:
         _paint_one_phase(painter, inner, tally, theme, legend)
     painter.restore()
@@ -168,6 +178,7 @@ class TallyPicture(Picture):
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(say.TALLY, parent)
         self._tally = Tally((), ())
+        self._seen: QRectF | None = None
         self.least = TallyPicture.least
 
     def content_height(self, theme: Theme) -> float:
@@ -205,11 +216,13 @@ class TallyPicture(Picture):
 
     def draw(self, painter: QPainter, rect: QRectF, theme: Theme) -> None:
         """Paint the tally."""
-        paint_tally(painter, rect, self._tally, theme)
+        paint_tally(painter, rect, self._tally, theme, seen=self._seen)
 
     def paintEvent(self, event: QPaintEvent) -> None:
         """The picture; where it is scrolled sideways the names stay."""
+        self._seen = QRectF(event.rect())
         super().paintEvent(event)
+        self._seen = None
         left, inner = self.visibleRegion().boundingRect().left(), self.inner()
         if left <= 0 or len(self._tally.phases) < 2:
             return

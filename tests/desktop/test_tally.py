@@ -180,3 +180,21 @@ def test_a_crew_that_is_not_proved_is_not_called_exact(qapp):
         text for _, text in _legend(Tally((), (TallyRow("A", None, (2.0,), 1.0, 1.0),), proved=False), 1)
     ]
     assert "best crew found, on the books" in legend
+
+
+def test_what_is_seen_is_painted_as_in_the_whole(qapp):
+    plan = family_plan(6, 1, 12, 0)
+    crew = {c.name: tuple(float((n + j) % 4) for n in range(12)) for j, c in enumerate(plan.categories)}
+    tally, whole = tally_of(plan, crew, crew), QRect(0, 0, 1200, 500)
+    part = QRect(400, 120, 300, 150)
+
+    def painted(seen):
+        image = QImage(whole.size(), QImage.Format.Format_RGB32)
+        image.fill(themes.light().paper)
+        painter = QPainter(image)
+        paint_tally(painter, QRectF(whole), tally, themes.light(), seen=seen)
+        painter.end()
+        return image
+
+    assert painted(QRectF(part)).copy(part) == painted(None).copy(part)
+    assert painted(QRectF(part)) != painted(None)
