@@ -50,7 +50,7 @@ QAbstractSpinBox QLineEdit, QAbstractSpinBox QLineEdit:focus, QComboBox QLineEdi
 QCheckBox::indicator, QListView::indicator, QTableView::indicator {{
   width: {box}px; height: {box}px; border: 1px solid {faint}; border-radius: 2px; background: {cell};
 }}
-QCheckBox:focus::indicator {{ border: 2px solid {focus}; }}
+QCheckBox::indicator:focus {{ border: 2px solid {focus}; }}
 QCheckBox::indicator:disabled {{ border-color: {rule}; background: {paper}; }}
 QCheckBox::indicator:checked, QListView::indicator:checked, QTableView::indicator:checked {{
   image: url("{tick}");

@@ -59,6 +59,9 @@ def test_boxes_to_tick_are_seen_ticked_or_not(theme, qtbot, qapp):
         # WCAG 2.1, 1.4.11 non-text contrast: at least 3 to 1
         assert max(themes.contrast(colour, theme.paper) for colour in line) >= 3
     assert seen[False] != seen[True]
+    image = box.grab().toImage()  # nobody has the focus: nothing is framed but the box
+    assert image.pixelColor(image.width() - 1, 0) == image.pixelColor(image.width() - 1, image.height() // 2)
+    assert image.pixelColor(image.width() // 2, 0) == theme.paper
     themes.apply(qapp, themes.light())
 
 
