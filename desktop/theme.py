@@ -230,12 +230,22 @@ def palette(theme: Theme) -> QPalette:
     return made
 
 
+def _focus_palette(theme: Theme) -> QPalette:
+    """For kinds of widgets that Fusion frames in the colour of selected text while they have the focus."""
+    made = palette(theme)
+    made.setColor(QPalette.ColorRole.Highlight, theme.focus)
+    made.setColor(QPalette.ColorRole.HighlightedText, theme.paper)
+    return made
+
+
 def apply(app: QApplication, theme: Theme) -> None:
     """Give the whole application `theme`; `current()` answers it from now on."""
     app.setProperty(_PROPERTY, theme)
     if app.style().objectName() != "fusion":
         app.setStyle("Fusion")
     app.setPalette(palette(theme))
+    for kind in ("QComboBox", "QAbstractSpinBox"):
+        app.setPalette(_focus_palette(theme), kind)
     app.setFont(theme.font())
     app.setStyleSheet(stylesheet(theme))
 

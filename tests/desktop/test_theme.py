@@ -1,6 +1,8 @@
 import pytest
+from PySide6.QtCore import Qt
 from PySide6.QtGui import QColor
-from PySide6.QtWidgets import QCheckBox, QLabel
+from PySide6.QtTest import QTest
+from PySide6.QtWidgets import QCheckBox, QComboBox, QLabel, QSpinBox, QVBoxLayout, QWidget
 
 from desktop import theme as themes
 
@@ -62,6 +64,31 @@ def test_boxes_to_tick_are_seen_ticked_or_not(theme, qtbot, qapp):
     image = box.grab().toImage()  # nobody has the focus: nothing is framed but the box
     assert image.pixelColor(image.width() - 1, 0) == image.pixelColor(image.width() - 1, image.height() // 2)
     assert image.pixelColor(image.width() // 2, 0) == theme.paper
+    themes.apply(qapp, themes.light())
+
+
+@pytest.mark.parametrize("theme", [themes.light(), themes.dark()], ids=lambda t: t.name)
+@pytest.mark.parametrize("kind", [QComboBox, QSpinBox])
+def test_the_focus_is_seen_on_choices_and_numbers(theme, kind, qtbot, qapp):
+    themes.apply(qapp, theme)
+    window = QWidget()
+    qtbot.addWidget(window)
+    layout = QVBoxLayout(window)
+    parts = [kind(), kind()]
+    for part in parts:
+        layout.addWidget(part)
+    with qtbot.waitActive(window):
+        window.show()
+        window.activateWindow()
+    parts[0].setFocus(Qt.FocusReason.TabFocusReason)
+    QTest.keyClick(parts[0], Qt.Key.Key_Tab)
+    edges = []
+    for part in parts:
+        image = part.grab().toImage()
+        edges.append([image.pixelColor(x, image.height() // 2) for x in range(2)])
+    assert parts[1].hasFocus()
+    assert max(themes.contrast(colour, theme.paper) for colour in edges[1]) >= 3
+    assert edges[0] != edges[1]
     themes.apply(qapp, themes.light())
 
 
