@@ -6,13 +6,14 @@ import contextlib
 import datetime
 import os
 import secrets
+import threading
 from collections.abc import Mapping
 from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
 
 import simplejson
-from PySide6.QtCore import QLockFile, QObject, QThreadPool, QTimer, Signal
+from PySide6.QtCore import QLockFile, QObject, QThreadPool, Signal
 
 from desktop.document import Content, Document, Place, Refusal
 from desktop.state_folder import state_folder
@@ -35,7 +36,8 @@ FORMAT = "full-complement/recovery"
 class Recovery(QObject):
     """Writes the copy of one window. `failed(sentence)` when it could not be written.
 
-    Writing waits for the disk, so it is done in a thread; one at a time keeps the order.
+    Waiting, for the next copy and for the disk, is done in a thread: a window that is busy does not put a
+    copy off. Contents are frozen, so the thread may read them; one thread keeps the order.
     """
 
     failed = Signal(str)
@@ -47,8 +49,9 @@ class Recovery(QObject):
         self._lock = _locked(self._file)
         self._pool = QThreadPool(self)
         self._pool.setMaxThreadCount(1)
-        self._due = QTimer(self, singleShot=True, interval=DELAY)
-        self._due.timeout.connect(self.write)
+        self._unsaved: tuple[Content, Path | None] | None = None
+        self._due = False
+        self._hurry = threading.Event()
         document.changed.connect(self._on_changed)
         document.renamed.connect(self._on_changed)
 
@@ -59,18 +62,19 @@ class Recovery(QObject):
 
     def write(self) -> None:
         """Write the copy now, without waiting for the disk."""
-        self._due.stop()
-        content, path = self._document.content, self._document.path
-        self._pool.start(lambda: self._write(content, path))
+        self._unsaved = self._document.content, self._document.path
+        self._hurry.set()
+        self._pool.start(self._write)
 
     def wait(self) -> None:
         """Wait until everything asked for is on the disk."""
+        self._hurry.set()
         self._pool.waitForDone()
 
     def close(self) -> None:
         """Nothing is unsaved any more: the copy goes."""
-        self._due.stop()
-        self._pool.waitForDone()
+        self._unsaved = None
+        self.wait()
         self._remove()
         if self._lock is not None:
             self._lock.unlock()
@@ -78,12 +82,24 @@ class Recovery(QObject):
     def _on_changed(self) -> None:
         """Keep the copy of what is not saved; the clock starts with the first change after a copy."""
         if not self._document.modified:
-            self._due.stop()
+            self._unsaved = None
             self._pool.start(self._remove)
-        elif not self._due.isActive():
-            self._due.start()
+            return
+        self._unsaved = self._document.content, self._document.path
+        if not self._due:
+            self._due = True
+            self._hurry.clear()
+            self._pool.start(self._write_soon)
 
-    def _write(self, content: Content, path: Path | None) -> None:
+    def _write_soon(self) -> None:
+        self._hurry.wait(DELAY / 1000)
+        self._due = False  # before the content is read: what changes from now on gets a copy of its own
+        self._write()
+
+    def _write(self) -> None:
+        if self._unsaved is None:
+            return
+        content, path = self._unsaved
         with contextlib.suppress(OSError):  # somebody may have cleared it away; writing tells what is wrong
             self._file.parent.mkdir(parents=True, exist_ok=True)
         try:
@@ -92,6 +108,9 @@ class Recovery(QObject):
             self.failed.emit(str(why))
 
     def _remove(self) -> None:
+        """Unless something was typed in the meantime."""
+        if self._unsaved is not None:
+            return
         with contextlib.suppress(OSError):
             self._file.unlink(missing_ok=True)
 

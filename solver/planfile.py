@@ -8,6 +8,7 @@ import os
 import re
 import secrets
 import stat
+import time
 from collections.abc import Iterator
 from contextlib import contextmanager, suppress
 from pathlib import Path
@@ -39,6 +40,8 @@ __all__ = [
 ]
 
 SUFFIX = ".crew.json"
+PART = ".part"  # what is being written, beside the file whose place it will take
+STALE = 600  # seconds after which nobody is writing it any more
 LARGEST_FILE = 4_000_000  # bytes; twenty times a plan of a thousand categories, and read within 2 s
 LINE_WIDTH = 110
 
@@ -216,7 +219,7 @@ def write_whole(path: Path, content: bytes) -> None:
     with _told_as_sentence(path):
         target = Path(os.path.realpath(path))
         mode = _mode_of(target)
-        beside = target.with_name(f".{target.name[:100]}.{secrets.token_hex(6)}.part")
+        beside = target.with_name(f"{_stem(target)}{secrets.token_hex(6)}{PART}")
         try:
             _write_and_sync(beside, content, mode)
             os.replace(beside, target)
@@ -225,6 +228,20 @@ def write_whole(path: Path, content: bytes) -> None:
                 beside.unlink()
             raise
         _sync_folder(target.parent)
+        _sweep(target)
+
+
+def _stem(target: Path) -> str:
+    return f".{target.name[:100]}."
+
+
+def _sweep(target: Path) -> None:
+    """Remove what killed programs left beside `target`; what is young may be in the making."""
+    left = re.compile(re.escape(_stem(target)) + "[0-9a-f]{12}" + re.escape(PART))
+    with suppress(OSError), os.scandir(target.parent) as entries:
+        for entry in entries:
+            if left.fullmatch(entry.name) and entry.stat().st_mtime < time.time() - STALE:
+                os.unlink(entry.path)
 
 
 def _mode_of(target: Path) -> int | None:

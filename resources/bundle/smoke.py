@@ -10,7 +10,16 @@ import subprocess
 import tempfile
 import time
 from pathlib import Path
+from typing import Any
 
+# minimise x, 2 x >= 3, x whole
+SMALLEST = {
+    "cost": [1.0],
+    "lower": [0.0],
+    "upper": [9.0],
+    "integer": [True],
+    "rows": [[[0], [2.0], "G", 3.0]],
+}
 LONGEST = 60.0  # seconds one step may take on a busy machine
 
 
@@ -62,28 +71,32 @@ class Trial:
         assert "Proved cheapest" in answer, answer
 
     def engines(self) -> None:
-        """Both engines, each in a process of its own: the smallest program with a whole number in it."""
-        matrix = {
-            "cost": [1.0],
-            "lower": [0.0],
-            "upper": [9.0],
-            "integer": [True],
-            "rows": [[[0], [2.0], "G", 3.0]],
-        }
+        """Both engines, each in a process of its own."""
         for engine in ("CBC", "HIGHS"):
-            request = {"number": 1, "engine": engine, "matrix": matrix, "seconds": 9.0, "start": None}
-            asked = {"env": self._environment, "cwd": self._home, "encoding": "utf-8"}
-            process = subprocess.Popen(
-                [*self._start, "--engine"], stdin=subprocess.PIPE, stdout=subprocess.PIPE, **asked
-            )
+            request: dict[str, Any] = {
+                "number": 1,
+                "engine": engine,
+                "matrix": SMALLEST,
+                "seconds": 9.0,
+                "start": None,
+            }
+            assert self._engine_says(request)["objective"] == 2.0, f"{engine} is wrong"
+
+    def _engine_says(self, request: dict[str, Any]) -> dict[str, Any]:
+        """What it says in the end; its input stays open until then, for closing it ends the process."""
+        command = [*self._start, "--engine"]
+        pipe = subprocess.PIPE
+        with subprocess.Popen(
+            command, stdin=pipe, stdout=pipe, env=self._environment, cwd=self._home, encoding="utf-8"
+        ) as process:
+            assert process.stdin is not None
+            assert process.stdout is not None
             process.stdin.write(json.dumps(request) + "\n")
             process.stdin.flush()
-            said = [json.loads(line) for line in iter(process.stdout.readline, "") if '"news"' not in line][
-                :1
-            ]
-            process.stdin.close()
-            process.wait(LONGEST)
-            assert said[0]["objective"] == 2.0, f"{engine}: {said}"
+            said: dict[str, Any] = {"kind": "news"}
+            while said["kind"] == "news":
+                said = json.loads(process.stdout.readline())
+        return said
 
     def window(self, example: Path) -> None:
         """The window, drawn into memory, until it has an answer; a second start finds files read before."""

@@ -5,12 +5,14 @@ import os
 import shutil
 import subprocess
 import sys
+import time
 from dataclasses import replace
 from decimal import Decimal
 from pathlib import Path
 
 import pytest
 
+from desktop import recovery as recovery_module
 from desktop import workers as workers_module
 from desktop.answers import Answers, Status
 from desktop.claim import Claim
@@ -113,6 +115,40 @@ def test_a_failed_recovery_copy_is_told_and_typing_goes_on(window, broken_disk, 
     qtbot.waitUntil(lambda: "No recovery copy could be written" in window.statusBar().currentMessage())
     window.document.edit("Rename", replace(CHANGED, title="Three"))
     assert window.document.plan.title == "Three"
+
+
+def test_what_a_killed_save_left_goes_with_a_later_one(document, tmp_path):
+    old = tmp_path / ".one.crew.json.0123456789ab.part"
+    young, foreign = tmp_path / ".one.crew.json.ba9876543210.part", tmp_path / ".one.crew.json.mine.part"
+    for left in (old, young, foreign):
+        left.touch()
+    for left in (old, foreign):
+        os.utime(left, (1, 1))
+    document.edit("Rename", CHANGED)
+    document.save()
+    assert files_in(tmp_path) == [young.name, foreign.name, "one.crew.json"]
+
+
+def test_a_window_that_is_busy_does_not_put_the_copy_off(document, monkeypatch):
+    monkeypatch.setattr(recovery_module, "DELAY", 20)
+    copy = Recovery(document)
+    document.edit("Rename", CHANGED)
+    end = time.monotonic() + 10
+    while not copy.file.exists() and time.monotonic() < end:
+        time.sleep(0.01)  # as a window that draws: no event is looked at
+    assert copy.file.exists()
+    copy.close()
+    assert not copy.file.exists()
+
+
+def test_a_change_while_saving_keeps_its_copy(document):
+    copy = Recovery(document)
+    document.edit("Rename", CHANGED)
+    document.save()
+    document.edit("Rename", replace(CHANGED, title="Three"))
+    copy.wait()
+    assert '"Three"' in copy.file.read_text("utf-8")
+    copy.close()
 
 
 def test_the_folder_of_the_plan_is_removed(document, tmp_path):
