@@ -13,7 +13,7 @@ from tests.solver import agreement, checker, solved
 
 MIXED = [range(start, start + 30) for start in range(0, 300, 30)]
 FULL = [range(start, start + 30) for start in range(0, 90, 30)]
-BOXED = [range(start, start + 40) for start in range(0, 240, 40)]
+BOXED = [range(start, start + 40) for start in range(0, 160, 40)]
 
 
 class TestMargins:
@@ -27,14 +27,14 @@ class TestMargins:
         for seed in seeds:
             agreement.assert_margins_of_hours_equal_highs(*solved.mixed(seed))
 
-    @pytest.mark.parametrize("seeds", FULL[:1], ids=str)
+    @pytest.mark.parametrize("seeds", [range(15)], ids=str)
     def test_also_within_a_budget_and_over_two_phases(self, seeds: range) -> None:
         for seed in seeds:
             agreement.assert_margins_of_hours_equal_highs(*solved.full(seed))
 
     def test_money_left_of_a_budget(self) -> None:
         checked = 0
-        for seed in range(90):
+        for seed in range(60):
             plan, answer = solved.full(seed)
             for report in answer.crews:
                 budget = checker.budget_of(plan)
@@ -78,7 +78,7 @@ class TestTheInequality:
 
     def test_is_missed_by_exactly_the_short(self) -> None:
         missed = 0
-        for seed in range(240):
+        for seed in range(160):
             plan, answer, _ = solved.boxed(seed)
             for report in answer.crews:
                 for one in report.breaks:
@@ -88,7 +88,7 @@ class TestTheInequality:
                             agreement.value(plan, report.crew, one) + given_up, one.need - one.short
                         )
                         missed += 1
-        assert missed > 200
+        assert missed > 150
 
 
 class TestByHand:

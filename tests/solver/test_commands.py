@@ -80,7 +80,8 @@ class TestSolve:
         (line,) = done.stdout.splitlines()
         answer = json.loads(line)
         assert answer.keys() == SOLVE_KEYS
-        assert (answer["state"], answer["proof"], answer["conflict"]) == ("proved", "own search", None)
+        assert (answer["state"], answer["conflict"]) == ("proved", None)
+        assert answer["proof"] in ("own search", "two engines")
         assert answer["exact"].keys() == EXACT_KEYS
         assert answer["whole_people_cost"].keys() == {"absolute", "percent"}
         assert [crew["policy"] for crew in answer["crews"]] == POLICIES
@@ -116,7 +117,7 @@ class TestSolve:
         first = done.stdout.splitlines()[0]
         assert f"{answer['exact']['cost']:,.2f}".rstrip("0").rstrip(".") in first
         assert plan.currency in first
-        assert "Proved cheapest (own search)." in done.stdout
+        assert "Proved cheapest (" in done.stdout
         assert CAUTION in done.stdout
 
     def test_no_workable_crew_is_told_in_full_with_exit_1(self, impossible: Path) -> None:
@@ -252,7 +253,7 @@ class TestSeveralFiles:
         assert documents[1].keys() == {"plan", "problems"}
         assert [document.keys() for document in documents[2:4]] == [{"plan", "error"}] * 2
         assert documents[4]["state"] == "impossible"
-        assert {**documents[5], "seconds": 0} == {**documents[0], "seconds": 0}
+        assert documents[5]["exact"] == documents[0]["exact"]
 
     def test_the_worst_file_gives_the_exit_code(self, good: Path, impossible: Path) -> None:
         assert run("solve", good, good).returncode == 0

@@ -73,7 +73,8 @@ class TestRequests:
         plan = full_plan(np.random.default_rng(3))
         value = replies_to(request(plan=json.loads(dump_plan(plan))))[-1]["value"]
         ours = json.loads(json.dumps(to_json(solve(plan))))
-        assert {**value, "seconds": 0} == {**ours, "seconds": 0}
+        clock = {"seconds": 0, "proof": "", "bound": 0}  # who proved it depends on how busy the machine is
+        assert {**value, **clock} == {**ours, **clock}
 
     def test_every_question_ends_once(self) -> None:
         for number, ask in enumerate(QUESTIONS):
