@@ -16,8 +16,9 @@ import numpy as np
 from solver import heads
 from solver.answer import Break, LineKind
 from solver.ledger import Counts
+from solver.lines import HeadLine, Line
 from solver.matrix import Floats, RowSense
-from solver.program import HeadLine, Line, Program
+from solver.program import Program
 from solver.shortfall import SHORT, Prices
 
 _NOTHING: dict[str, float] = {}

@@ -13,9 +13,9 @@ from functools import partial
 from solver.answer import Conflict, Conflicting, LineKind
 from solver.deletion import deletion_filter
 from solver.inquiry import Inquiry
+from solver.lines import Line
 from solver.moves import Moves
 from solver.plan import Plan
-from solver.program import Line
 from solver.removable import People, Removable
 
 SECONDS = 10.0

@@ -26,9 +26,10 @@ import numpy as np
 
 from solver import heads
 from solver.answer import LineKind
+from solver.lines import HeadLine, Line
 from solver.matrix import Floats, Ints, RowSense
 from solver.plan import Ratio, Share
-from solver.program import HeadLine, Line, Program
+from solver.program import Program
 from solver.shortfall import Shortfall
 
 HEAVY = 10.0

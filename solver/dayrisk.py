@@ -11,8 +11,8 @@ from solver.answer import Critical, LineKind, PhaseAttendance
 from solver.chances import Chances, chance_of, mean_error
 from solver.coverage import Bools
 from solver.day import Day
+from solver.lines import Line
 from solver.matrix import Floats, Ints
-from solver.program import Line
 from solver.shortfall import SHORT
 from solver.turnout import Turnout
 

@@ -20,9 +20,10 @@ from math import floor, gcd, inf, lcm
 
 from solver.answer import LineKind
 from solver.inquiry import Inquiry
+from solver.lines import HeadLine, Line
 from solver.matrix import Matrix, Row, RowSense
 from solver.plan import Category, Plan
-from solver.program import HeadLine, Line, Program
+from solver.program import Program
 from solver.search import Found, Lots, Search, tie_width, whole_grain
 
 # hours lines are continuous: an objective of a thousand per hour tells a millionth of an hour

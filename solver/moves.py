@@ -8,9 +8,10 @@ from fractions import Fraction
 
 from solver.answer import Conflicting, LineKind
 from solver.inquiry import Inquiry
+from solver.lines import Line
 from solver.loosened import Negotiable
 from solver.plan import Budget, Plan, Presence, Ratio, Sense, Share
-from solver.program import Line, Program
+from solver.program import Program
 from solver.repair import NOT_ENOUGH, PERCENT, bound_of, typed_bound
 from solver.report import figure
 from solver.rulenumber import RuleNumber

@@ -20,73 +20,21 @@ Columns p, q, u, o are there only where something depends on them.
 from __future__ import annotations
 
 from collections.abc import Iterable, Iterator, Sequence
-from dataclasses import dataclass
 from decimal import Decimal
 from fractions import Fraction
 from functools import cached_property
 from math import ceil, floor, lcm
-from typing import NamedTuple
 
 from solver.answer import LineKind
 from solver.ledger import Ledger
+from solver.lines import Column, HeadLine, Line
 from solver.matrix import Floats, Matrix, RowSense
-from solver.plan import Budget, Category, Plan, Presence, Ratio, Rule, Sense, Share
+from solver.plan import Budget, Category, Plan, Presence, Ratio, Rule, Share
+from solver.ruleterms import rule_says, rule_terms
 
 # head counts nobody limited get at least this many lots, and AMPLE times what any one line asks for
 UNLIMITED_LOTS = 10**6
 AMPLE = 1000
-
-SENSES = {Sense.AT_LEAST: RowSense.AT_LEAST, Sense.AT_MOST: RowSense.AT_MOST, Sense.EXACTLY: RowSense.EQUAL}
-
-
-class Column(NamedTuple):
-    """What a column means: its letter in the formulation and the names it belongs to."""
-
-    letter: str
-    category: str | None
-    other: str | None
-    phase: str | None
-
-
-@dataclass(frozen=True)
-class Line:
-    """One condition the planner knows, in one phase (None: over all).
-
-    `row` is its matrix row, or None where it is a column's bound; row x `scale` is in `unit`.
-    """
-
-    name: str
-    kind: LineKind
-    phase: str | None
-    unit: str
-    row: int | None
-    scale: float
-    says: str
-
-
-@dataclass(frozen=True)
-class HeadLine:
-    """A line in head counts alone, in integers: (sum terms . lots {>=, <=, =} rhs) / divisor units.
-
-    `only_if_any` marks least-if-any: it binds only where the one head count is not zero.
-    """
-
-    line: Line
-    terms: tuple[tuple[int, int], ...]
-    sense: RowSense
-    rhs: int
-    divisor: int
-    only_if_any: bool = False
-
-    def margin(self, lots: Sequence[Fraction | int]) -> Fraction:
-        """Exact room (>= 0) or miss (< 0) of a crew in lots, in the line's unit."""
-        total = sum(coef * lots[i] for i, coef in self.terms)
-        if self.only_if_any and total == 0:
-            return Fraction(0)
-        room = Fraction(total - self.rhs) / self.divisor
-        if self.sense is RowSense.AT_MOST:
-            return -room
-        return room if self.sense is RowSense.AT_LEAST else -abs(room)
 
 
 class Program:
@@ -424,7 +372,7 @@ class Program:
             if isinstance(rule, Budget):
                 self._add_budget(rule)
                 continue
-            terms, sense, bound = _rule_terms(rule)
+            terms, sense, bound = rule_terms(rule)
             for t, phase in enumerate(self.phases):
                 if rule.phases is None or phase.name in rule.phases:
                     self._add_head_rule(rule, t, terms, sense, bound)
@@ -497,35 +445,3 @@ class Program:
 def group_name(group: Sequence[str]) -> str:
     """How a supervision group is called: its categories' names."""
     return " or ".join(group)
-
-
-def _rule_terms(rule: Presence | Ratio | Share) -> tuple[dict[str, Fraction], RowSense, Fraction]:
-    """A rule as coefficients per head, sense and right-hand side."""
-    if isinstance(rule, Presence):
-        weights = {name: Fraction(weight) for name, weight in rule.weights.items()}
-        return weights, SENSES[rule.sense], Fraction(rule.bound)
-    terms: dict[str, Fraction] = {}
-    for name in rule.of:
-        terms[name] = terms.get(name, Fraction(0)) + 1
-    if isinstance(rule, Ratio):
-        others, factor, sense = rule.per, Fraction(rule.at_most), RowSense.AT_MOST
-    else:
-        others, factor, sense = rule.within, Fraction(rule.fraction), SENSES[rule.sense]
-    for name in others:
-        terms[name] = terms.get(name, Fraction(0)) - factor
-    return terms, sense, Fraction(0)
-
-
-def rule_says(rule: Rule) -> str:
-    """A rule as a short sentence without its full stop."""
-    if isinstance(rule, Presence):
-        parts = [name if w == 1 else f"{w.normalize():f} x {name}" for name, w in rule.weights.items()]
-        return f"{rule.name}: {' + '.join(parts)} {rule.sense} {rule.bound.normalize():f}"
-    if isinstance(rule, Ratio):
-        per = " + ".join(rule.per)
-        return f"{rule.name}: at most {rule.at_most.normalize():f} {' + '.join(rule.of)} per {per}"
-    if isinstance(rule, Share):
-        share = (rule.fraction * 100).normalize()
-        within = " + ".join(rule.within)
-        return f"{rule.name}: {' + '.join(rule.of)} {rule.sense} {share:f} % of {within}"
-    return f"{rule.name}: the whole cost at most {rule.at_most:,}"

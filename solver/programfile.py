@@ -10,9 +10,10 @@ from __future__ import annotations
 import math
 from collections.abc import Iterator, Sequence
 
+from solver.lines import Column
 from solver.matrix import Matrix, Row, RowSense
 from solver.plan import Plan
-from solver.program import Column, Program
+from solver.program import Program
 from solver.programnames import Named, column_names, one_line, row_names
 
 _SIGNS = {RowSense.AT_LEAST: ">=", RowSense.AT_MOST: "<=", RowSense.EQUAL: "="}

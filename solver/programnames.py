@@ -11,8 +11,9 @@ import unicodedata
 from collections.abc import Iterable
 from dataclasses import dataclass
 
+from solver.lines import Column, Line
 from solver.matrix import Row
-from solver.program import Column, Line, Program
+from solver.program import Program
 
 _WORDS = {
     "n": "people",  # not "n": a name that starts with a letter e or n alone is a number or a keyword to some

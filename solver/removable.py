@@ -9,10 +9,11 @@ from enum import Enum
 
 from solver.engine import LpStatus, Relaxation
 from solver.inquiry import Inquiry
+from solver.lines import HeadLine, Line
 from solver.loosened import is_bound, is_settling
 from solver.matrix import Matrix, Row, RowSense
 from solver.plan import Plan
-from solver.program import HeadLine, Line, Program
+from solver.program import Program
 from solver.search import Limits, Search
 
 WHOLE = Limits(nodes=5_000, seconds=1.0)

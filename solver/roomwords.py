@@ -7,10 +7,10 @@ from fractions import Fraction
 from math import ceil, floor, log10
 
 from solver.answer import Crew, LineKind
+from solver.lines import Line
 from solver.loosened import is_settling
 from solver.loosening import Loosening
 from solver.plan import Plan, Presence, Ratio, Rule, Sense, Share
-from solver.program import Line
 from solver.report import crew_words, figure, number
 
 NO_CHEAPER = "No cheaper crew"

@@ -18,8 +18,9 @@ from typing import Any
 import numpy as np
 
 from solver.engine import LpStatus, Relaxation
+from solver.lines import HeadLine
 from solver.matrix import DualBound, Floats, Ints, Matrix, forgiving, loosened_rhs, roundoff
-from solver.program import HeadLine, Program
+from solver.program import Program
 
 INTEGRAL = 1e-6
 # a switch of a head count without limit is on by no more than a millionth per lot

@@ -8,10 +8,11 @@ from solver.answer import CrewReport, Policy
 from solver.appraisal import Appraiser
 from solver.heads import lots_of
 from solver.ledger import Counts
+from solver.lines import HeadLine, Line
 from solver.loosened import is_settling
 from solver.matrix import RowSense
 from solver.plan import Plan
-from solver.program import HeadLine, Line, Program
+from solver.program import Program
 from solver.tightestline import TightestLine
 
 

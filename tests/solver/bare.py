@@ -7,8 +7,8 @@ from fractions import Fraction
 from math import lcm
 
 from solver.answer import LineKind
+from solver.lines import HeadLine, Line
 from solver.matrix import Matrix, Row, RowSense
-from solver.program import HeadLine, Line
 
 
 class BareProgram:
