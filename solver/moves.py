@@ -7,6 +7,7 @@ from decimal import ROUND_CEILING, ROUND_FLOOR, Decimal
 from fractions import Fraction
 
 from solver.answer import Conflicting, LineKind
+from solver.grain import whole_grain
 from solver.inquiry import Inquiry
 from solver.lines import Line
 from solver.loosened import Negotiable
@@ -15,7 +16,7 @@ from solver.program import Program
 from solver.repair import NOT_ENOUGH, PERCENT, bound_of, typed_bound
 from solver.report import figure
 from solver.rulenumber import RuleNumber
-from solver.search import Search, whole_grain
+from solver.search import Search
 
 CENT = Decimal("0.01")
 RULE_STEP = Decimal("0.0001")

@@ -12,13 +12,14 @@ from solver import heads, roomwords
 from solver.answer import CrewReport, LineKind, LineMargin, LineRoom, Room
 from solver.exactcrew import exact_crew
 from solver.fractionalprice import FractionalPrices
+from solver.grain import whole_grain
 from solver.inquiry import Heard, Inquiry, unheard
 from solver.lines import Line
 from solver.loosened import GivingWay, Loosened, Negotiable, is_settling
 from solver.loosening import NOTHING, OUT_OF_TIME, Grown, Loosening
 from solver.payrange import PayRanges
 from solver.plan import Plan
-from solver.search import Found, Lots, tie_width, whole_grain
+from solver.search import Found, Lots, tie_width
 from solver.solve import Case
 
 CENT = 0.01

@@ -19,11 +19,12 @@ import numpy as np
 
 from solver import heads
 from solver.chances import SAME, Chances
+from solver.grain import whole_grain
 from solver.matrix import Floats, Matrix, RowSense
 from solver.plan import Budget, Plan
 from solver.program import UNLIMITED_LOTS, Program
 from solver.saferows import SafeRows
-from solver.search import Found, Limits, Lots, Search, tie_width, whole_grain
+from solver.search import Found, Limits, Lots, Search, tie_width
 
 NODES = 400_000
 CLIMBS = 400

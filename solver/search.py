@@ -11,7 +11,7 @@ import heapq
 from collections.abc import Callable, Iterable, Iterator, Sequence
 from dataclasses import dataclass, replace
 from fractions import Fraction
-from math import ceil, gcd, inf
+from math import ceil, inf
 from time import monotonic
 from typing import Any
 
@@ -440,26 +440,3 @@ class _Run:
 def tie_width(objective: float) -> float:
     """Objectives closer than this are equal: a tenth of a cent, or what doubles can tell apart."""
     return max(TIE, 1e-10 * abs(objective))
-
-
-def whole_grain(program: Program) -> float:
-    """The largest amount of money every whole crew's cost is a multiple of; 0 if hours cost money too."""
-    if program.costs_hours:
-        return 0.0
-    steps: list[Fraction] = []
-    for j, category in enumerate(program.categories):
-        lot = program.lots[j]
-        move = _gcd([lot, Fraction(category.on_books)])
-        steps += [Fraction(phase.periods) * Fraction(category.pay) * lot for phase in program.phases]
-        steps += [Fraction(category.join_cost) * move, Fraction(category.leave_cost) * move]
-        steps.append(Fraction(category.open_cost))
-    grain = float(_gcd(steps))
-    return grain if grain > 4 * TIE else 0.0
-
-
-def _gcd(values: Iterable[Fraction]) -> Fraction:
-    result = Fraction(0)
-    for value in values:
-        numerator = gcd(result.numerator * value.denominator, value.numerator * result.denominator)
-        result = Fraction(numerator, result.denominator * value.denominator)
-    return result

@@ -25,13 +25,14 @@ from solver.answer import (
 from solver.appraisal import Appraiser
 from solver.conflict import find_conflict
 from solver.engine import EngineName, LpStatus, WholeStatus, whole
+from solver.grain import whole_grain
 from solver.ledger import Counts
 from solver.lines import Line
 from solver.plan import Plan
 from solver.program import Program
 from solver.proof import SECONDS, Effort, Proved, Prover
 from solver.rounding import largest_remainder, rounded, snapped
-from solver.search import Found, Search, whole_grain
+from solver.search import Found, Search
 from solver.tiebreak import cheapest_preferred
 
 Heard = Callable[[str, Any], None]

@@ -14,10 +14,11 @@ from decimal import Decimal
 from time import monotonic
 
 from solver.engine import EngineName, whole
+from solver.grain import whole_grain
 from solver.matrix import Matrix, RowSense
 from solver.plan import Budget, Category, Plan
 from solver.program import UNLIMITED_LOTS, Program
-from solver.search import Limits, Lots, Search, tie_width, whole_grain
+from solver.search import Limits, Lots, Search, tie_width
 
 NONE = Decimal(0)
 # one phase alone is a small program; what is not proved by then gives its bound all the same

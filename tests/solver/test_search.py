@@ -11,10 +11,11 @@ from scipy.optimize import Bounds, LinearConstraint, milp
 
 from solver import heads
 from solver.engine import LpStatus
+from solver.grain import whole_grain
 from solver.matrix import Matrix, RowSense
 from solver.plan import Plan
 from solver.program import Program
-from solver.search import Found, Limits, Search, tie_width, whole_grain
+from solver.search import Found, Limits, Search, tie_width
 from tests.solver import checker, solved
 from tests.solver.bare import BareProgram
 from tests.solver.full_plans import full_plan
