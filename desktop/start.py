@@ -71,7 +71,7 @@ def open_window(app: QApplication, workers: Workers, plan: Path | None) -> Windo
 
 
 def note_first_answer(answers: Answers) -> None:
-    """One line of the log when the first answer is there: how long starting takes on a machine we never see."""
+    """One line of the log when the first answer is there: how long a start takes on machines we never see."""
     from desktop.answers import Status
 
     def note() -> None:
