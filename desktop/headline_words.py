@@ -160,7 +160,8 @@ def _state(plan: Plan, answer: Answer, status: Status) -> tuple[str, str, str]:
     if answer.state is State.IMPOSSIBLE:
         return messages.IMPOSSIBLE_STATE, "✗", "short"
     if answer.state is State.PROVED:
-        return messages.PROVED, "✓", "exact"
+        once = answer.proof is Proof.ONE_ENGINE
+        return messages.PROVED_ONCE if once else messages.PROVED, "✓", "exact"
     if status is Status.RESTARTING:
         return messages.SOLVER_RESTARTING, "↻", "ink"
     return _distance(plan, answer, status is Status.READY), "△", "ink"

@@ -31,6 +31,7 @@ FIRST_ANSWER = "Looking for the cheapest whole crew"
 IN_WORK = "working on it"
 OUT_OF_DATE = "out of date, working on the change"
 PROVED = "proved cheapest"
+PROVED_ONCE = "proved cheapest, by one solver"
 PROOF_OWN = "Proved by a complete search; every line was checked again in exact arithmetic."
 PROOF_TWO = "Two solvers agree to the cent; every line was checked again in exact arithmetic."
 PROOF_ONE = (
