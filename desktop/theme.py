@@ -244,7 +244,7 @@ def apply(app: QApplication, theme: Theme) -> None:
     if app.style().objectName() != "fusion":
         app.setStyle("Fusion")
     app.setPalette(palette(theme))
-    for kind in (b"QComboBox", b"QAbstractSpinBox"):
+    for kind in ("QComboBox", "QAbstractSpinBox"):
         app.setPalette(_focus_palette(theme), kind)  # type: ignore[arg-type] # the stub says bytes, Qt takes text
     app.setFont(theme.font())
     app.setStyleSheet(stylesheet(theme))
