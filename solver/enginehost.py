@@ -38,6 +38,8 @@ def matrix_from_json(raw: dict[str, Any]) -> Matrix:
 
 def main() -> int:
     """Serve requests until standard input closes."""
+    if hasattr(os, "nice"):
+        os.nice(5)  # the window comes first
     replies = fdopen(quiet_native_output(), "w", encoding="utf-8", newline="\n")
     requests: SimpleQueue[str] = SimpleQueue()
     threading.Thread(target=_read, args=(requests,), daemon=True).start()

@@ -37,6 +37,8 @@ from solver.tiebreak import cheapest_preferred
 
 Heard = Callable[[str, Any], None]
 BOXED_SECONDS = 2.0
+BOXED_SECONDS_IN_PHASES = 1.0
+QUICK_HEADS = 150  # so many head counts are appraised in a blink
 SOON = 0.5  # after so many seconds people want to see the crew before its company is worked out
 ROUNDINGS = (Policy.DOWN, Policy.NEAREST, Policy.UP, Policy.LARGEST_REMAINDER)
 
@@ -116,7 +118,8 @@ class Case:
         high[:count] = np.minimum(high[:count], upper)
         if (low > high).any():
             return None, True
-        outcome = cheapest_preferred(self.search, BOXED_SECONDS, box=(low, high))
+        seconds = BOXED_SECONDS if len(self.plan.phases) == 1 else BOXED_SECONDS_IN_PHASES
+        outcome = cheapest_preferred(self.search, seconds, box=(low, high))
         return outcome.best, outcome.complete
 
     def best_corner(self) -> CrewReport:
@@ -206,10 +209,12 @@ class Case:
         return replace(self._outline(self.proved, self.exact_report, crews, seconds), conflict=self.conflict)
 
     def so_far(self, proved: Proved, seconds: float) -> Answer:
-        """What is known while the proof is still being sought: the crew so far and the plain roundings."""
+        """What is known while the proof is still being sought: the crew so far and, where that is quick,
+        the plain roundings."""
         best = proved.best
         report = None if best is None else self._report(Policy.EXACT, best.lots)
-        crews = [*self.roundings, *([] if report is None else [report])]
+        crews = list(self.roundings) if self.program.head_count <= QUICK_HEADS else []
+        crews += [] if report is None else [report]
         return self._outline(proved, report, crews, seconds)
 
     def _outline(

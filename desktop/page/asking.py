@@ -3,11 +3,14 @@
 from __future__ import annotations
 
 import subprocess
+import threading
 from collections.abc import Mapping, Sequence
+from contextlib import suppress
 from typing import Any
 
 import simplejson
 
+from desktop.errand import ENDINGS
 from desktop.inquiries import KINDS
 from desktop.messages import SOLVER_FAILED
 from desktop.page.compose import Details
@@ -57,10 +60,10 @@ def _exchange(
         for at, (name, options) in enumerate(asked.items())
     ]
     lines = "".join(simplejson.dumps(request, use_decimal=True) + "\n" for request in requests)
-    written = _run(command, lines, limit)
+    replies = _run(command, lines, len(requests), limit)
     names = list(asked)
     found: dict[str, Any] = {}
-    for reply in _replies(written):
+    for reply in replies:
         if reply.part in ("answer", "refused") and 0 <= reply.id < len(names):
             found.update(_taken(names[reply.id], reply))
     return found
@@ -75,25 +78,40 @@ def _taken(name: str, reply: Reply) -> dict[str, Any]:
     return {name: value} if reply.part == "answer" or name == "solve" else {}
 
 
-def _run(command: Sequence[str], requests: str, limit: float) -> bytes:
+def _run(command: Sequence[str], requests: str, endings: int, limit: float) -> list[Reply]:
+    """Every reply until each request has had its ending; the solver's input stays open until then, for a
+    solver whose input closes gives up long answers."""
     try:
-        ended = subprocess.run(
+        process = subprocess.Popen(
             list(command),
-            input=requests.encode("utf-8"),
-            capture_output=True,
-            timeout=limit,
-            check=False,
+            stdin=subprocess.PIPE,
+            stdout=subprocess.PIPE,
+            stderr=subprocess.DEVNULL,
             cwd=solver_folder(),
         )
-    except subprocess.TimeoutExpired as late:
-        return bytes(late.stdout or b"")
     except OSError as error:
         raise NoAnswer(f"The solver could not be started: {error.strerror or error}.") from error
-    return ended.stdout
-
-
-def _replies(written: bytes) -> list[Reply]:
+    late = threading.Timer(limit, process.kill)
+    late.start()
     try:
-        return ReplyReader().feed(written)
+        with process, suppress(BrokenPipeError):
+            assert process.stdin is not None
+            process.stdin.write(requests.encode("utf-8"))
+            process.stdin.flush()
+            return _replies(process, endings)
+    finally:
+        late.cancel()
+    return []
+
+
+def _replies(process: subprocess.Popen[bytes], endings: int) -> list[Reply]:
+    assert process.stdout is not None
+    reader, replies = ReplyReader(), list[Reply]()
+    try:
+        for line in process.stdout:
+            replies += reader.feed(line)
+            if sum(reply.part in ENDINGS for reply in replies) >= endings:
+                break
     except Flooded:
-        return []
+        process.kill()
+    return replies
