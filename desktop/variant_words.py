@@ -101,7 +101,7 @@ def with_percent(money: str, percent: str) -> str:
 
 def column(name: str, note: str) -> str:
     """Title of a column."""
-    return f"{name}\n{note}" if note else name
+    return f"{name}\n{note}"
 
 
 def problem(name: str, says: str) -> str:

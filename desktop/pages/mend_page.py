@@ -115,6 +115,7 @@ class MendPage(QWidget):
 
     def _add_entries(self, rows: QVBoxLayout, title: str, entries: Sequence[Entry]) -> None:
         if entries:
+            rows.addSpacing(current().px(1) if rows.count() else 0)
             rows.addWidget(heading(title))
         for entry in entries[:_MOST]:
             rows.addWidget(thin_rule())

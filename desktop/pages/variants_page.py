@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from pathlib import Path
 
-from PySide6.QtCore import QEvent, QTimer, Signal
+from PySide6.QtCore import QEvent, Qt, QTimer, Signal
 from PySide6.QtGui import QHideEvent, QShowEvent
 from PySide6.QtWidgets import (
     QAbstractItemView,
@@ -25,13 +25,15 @@ from desktop.comparison import Compared, Comparison
 from desktop.document import Document
 from desktop.messages import CAUTION
 from desktop.pages.page_parts import label, thin_rule
+from desktop.tables.column import in_two_lines
 from desktop.tables.quiet_view import QuietView
 from desktop.tables.variant_table import VariantTable
 from desktop.theme import Size, current
 from desktop.traffic import start_folder
 from solver.answer import Answer
 
-_NARROWEST = 18  # width of a column, in steps of the grid
+_ONE_LINE = 20  # letters of a title that stay in one line
+_NARROWEST = 22  # width of a column, in steps of the grid
 
 
 class VariantsPage(QWidget):
@@ -93,7 +95,7 @@ class VariantsPage(QWidget):
         self.view.setSelectionMode(QAbstractItemView.SelectionMode.SingleSelection)
         across = self.view.horizontalHeader()
         across.setSectionResizeMode(QHeaderView.ResizeMode.Stretch)
-        across.setMinimumSectionSize(current().px(_NARROWEST))
+        across.setTextElideMode(Qt.TextElideMode.ElideRight)
         self.bar.setTextVisible(False)
         self.bar.setAccessibleName(say.PROGRESS)
         self.bar.setFixedSize(current().px(20), current().px(1))
@@ -172,7 +174,7 @@ class VariantsPage(QWidget):
         compared = self.comparison.entries()
         titles = [self._title(entry) for entry in compared]
         self.table.show_plans(compared, titles, [str(e.path) if e.path else say.HERE for e in compared])
-        self.view.refit()
+        self._fit()
         self.hint.setText(say.HOW if self.comparison.paths else say.ALONE)
         wrong = [_problem(entry) for entry in compared if entry.problem]
         self.problems.setText("\n".join(wrong))
@@ -180,13 +182,18 @@ class VariantsPage(QWidget):
         self._show_progress()
         self._show_buttons()
 
+    def _fit(self) -> None:
+        """Columns wide enough for money and its share; where there are many the table scrolls."""
+        self.view.refit()
+        self.view.horizontalHeader().setMinimumSectionSize(current().px(_NARROWEST))
+
     def _title(self, entry: Compared) -> str:
         here = self._document.path
         path = entry.path or here
         base = family.base_of(here) if here is not None else None
         name = family.short_name(path, base) if path is not None else say.UNSAVED
         if entry.path is not None:
-            return say.column(name, "")
+            return in_two_lines(name) if len(name) > _ONE_LINE else name
         changed = self._document.modified and here is not None
         return say.column(name, f"{say.HERE}, {say.CHANGED}" if changed else say.HERE)
 
@@ -227,7 +234,7 @@ class VariantsPage(QWidget):
         if event.type() == QEvent.Type.ActivationChange:
             self._later()
         elif event.type() in (QEvent.Type.PaletteChange, QEvent.Type.FontChange):
-            self.view.refit()
+            self._fit()
 
 
 def _problem(entry: Compared) -> str:
