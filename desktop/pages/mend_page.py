@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable, Sequence
 from functools import partial
 
-from PySide6.QtCore import Qt, QTimer, Signal
+from PySide6.QtCore import QSize, Qt, QTimer, Signal
 from PySide6.QtGui import QShowEvent
 from PySide6.QtWidgets import QFrame, QHBoxLayout, QPushButton, QScrollArea, QVBoxLayout, QWidget
 
@@ -146,6 +146,10 @@ class MendPage(QWidget):
         """Catch up."""
         super().showEvent(event)
         self._show()
+
+    def minimumSizeHint(self) -> QSize:
+        """Wrapped texts would ask for the height they need at their narrowest."""
+        return QSize(current().px(60), current().px(32))
 
 
 def _row(said: str, below: str, button: QPushButton | None) -> QWidget:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from pathlib import Path
 
-from PySide6.QtCore import QEvent, Qt, QTimer, Signal
+from PySide6.QtCore import QEvent, QSize, QTimer, Signal
 from PySide6.QtGui import QHideEvent, QShowEvent
 from PySide6.QtWidgets import (
     QAbstractItemView,
@@ -95,7 +95,6 @@ class VariantsPage(QWidget):
         self.view.setSelectionMode(QAbstractItemView.SelectionMode.SingleSelection)
         across = self.view.horizontalHeader()
         across.setSectionResizeMode(QHeaderView.ResizeMode.Stretch)
-        across.setTextElideMode(Qt.TextElideMode.ElideRight)
         self.bar.setTextVisible(False)
         self.bar.setAccessibleName(say.PROGRESS)
         self.bar.setFixedSize(current().px(20), current().px(1))
@@ -235,6 +234,10 @@ class VariantsPage(QWidget):
             self._later()
         elif event.type() in (QEvent.Type.PaletteChange, QEvent.Type.FontChange):
             self._fit()
+
+    def minimumSizeHint(self) -> QSize:
+        """Wrapped texts would ask for the height they need at their narrowest."""
+        return QSize(current().px(60), current().px(32))
 
 
 def _problem(entry: Compared) -> str:
