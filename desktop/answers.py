@@ -86,6 +86,7 @@ class Answers(QObject):
         self._failure = ""
         self._fractional: Fractional | None = None
         self._asked: Plan | None = None
+        self._asked_about = document.plan  # what the errand under way was sent with
         self._errand: Errand | None = None
         self._since = QElapsedTimer()
         self._slow = False
@@ -315,14 +316,15 @@ class Answers(QObject):
     def _start(self, seconds: float, start: Crew | None = None) -> None:
         """Ask about the plan as it stands, beginning from the crew `start`."""
         assert self._workers is not None
-        plan = self._document.plan
+        self._asked_about = self._document.plan
         self._seconds = seconds
         crew = None if start is None else {name: list(counts) for name, counts in start.items()}
         options = {"seconds": seconds, "tolerance": self._effort.tolerance, "start": crew}
         silence = int((seconds + GRACE) * 1000)
         errand = Errand(self._workers, "solve", self._request(options), Answer, silence, self)
-        errand.heard.connect(lambda reply: self._on_heard(plan, reply))
-        errand.ended.connect(lambda reply: self._on_ended(plan, reply))
+        # no lambdas: the last reference to us must not go while an errand is being destroyed
+        errand.heard.connect(self._on_heard)
+        errand.ended.connect(self._on_ended)
         errand.restarting.connect(self._on_restarting)
         errand.given_up.connect(self._on_given_up)
         self._errand = errand
@@ -345,19 +347,19 @@ class Answers(QObject):
         """True while a newer plan waits to be asked about: what is heard now is late."""
         return self._soon.isActive()
 
-    def _on_heard(self, plan: Plan, reply: Reply) -> None:
+    def _on_heard(self, reply: Reply) -> None:
         if self._overtaken():
             return
         if reply.part == "better":
             if not self._has_best_found():
                 self._spare()
-            self._hold(plan, self._with_what_is_known(reply.value))
+            self._hold(self._asked_about, self._with_what_is_known(reply.value))
             self._set(Status.SOLVING)
         elif reply.part == "fractional" and reply.value is not None:
             self._fractional = reply.value
             self._floor_due.start(max(0, WORTH_SHOWING - int(self._since.elapsed())))
 
-    def _on_ended(self, plan: Plan, reply: Reply) -> None:
+    def _on_ended(self, reply: Reply) -> None:
         self._errand = None
         self._long_due.stop()
         self._slow = self._since.elapsed() > PATIENCE
@@ -365,7 +367,7 @@ class Answers(QObject):
         if self._overtaken():
             self._soon.start(0)
         elif reply.part == "answer":
-            self.receive(plan, self._with_what_is_known(reply.value))
+            self.receive(self._asked_about, self._with_what_is_known(reply.value))
         elif reply.part == "problems":
             self._set(Status.PROBLEMS, reply.value)
         else:

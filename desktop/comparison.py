@@ -185,7 +185,7 @@ class Comparison(QObject):
         silence = int(options["seconds"] + GRACE) * 1000 if question == "solve" else _SOON
         errand = Errand(self._workers, question, request, kind, silence, self)
         errand.ended.connect(self._on_ended)
-        errand.given_up.connect(lambda how: self._lose(messages.SOLVER_LOST.format(how=how)))
+        errand.given_up.connect(self._on_given_up)
         self._errand, self._asked = errand, entry.content
         errand.start()
 
@@ -199,6 +199,9 @@ class Comparison(QObject):
         if self._errand is not None:
             errand, self._errand = self._errand, None
             errand.cancel()
+
+    def _on_given_up(self, how: str) -> None:
+        self._lose(messages.SOLVER_LOST.format(how=how))
 
     def _on_ended(self, reply: Reply) -> None:
         if reply.part != "answer":

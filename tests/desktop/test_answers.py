@@ -237,3 +237,14 @@ def test_a_long_question_does_not_delay_the_answer(made, workers, qtbot):
     assert answers.progress("anything") is not None
     answers.again()
     qtbot.waitUntil(lambda: ready(answers))
+
+
+def test_answers_may_go_right_after_one_arrived(made, workers, qtbot, qapp):
+    """An errand that is done must not keep its parent alive until it is itself destroyed: that is a crash."""
+    only, gone = [Answers(Document(plan()), workers)], []
+    only[0].destroyed.connect(lambda: gone.append(True))
+    qtbot.waitUntil(lambda: ready(only[0]))
+    only[0].close()
+    only.clear()
+    assert gone
+    qapp.processEvents()
