@@ -8,6 +8,7 @@ from PySide6.QtWidgets import QDialog, QDialogButtonBox, QHBoxLayout, QPushButto
 
 from desktop import figures
 from desktop import hours_words as say
+from desktop.dialogs.fitting import fit
 from desktop.dialogs.hours_form import HoursForm
 from desktop.edits.reckoned import with_reckoning
 from desktop.pages.page_parts import heading, label
@@ -68,7 +69,7 @@ class HoursDialog(QDialog):
         whole.addLayout(across, 1)
         for part in (self.outcome, self.wrong, buttons):
             whole.addWidget(part)
-        self.resize(current().px(136), current().px(70))
+        fit(self, 136, 70)
 
     def _show(self) -> None:
         """The steps of what is typed now, or what is wrong with it."""

@@ -24,6 +24,7 @@ from PySide6.QtWidgets import (
 
 from desktop import import_words as say
 from desktop import messages
+from desktop.dialogs.fitting import fit
 from desktop.document import Document
 from desktop.intake import Intake
 from desktop.pages.page_parts import heading, label
@@ -134,7 +135,7 @@ class ImportDialog(QDialog):
         layout.addWidget(self.remarks)
         layout.addWidget(parts, 1)
         layout.addLayout(foot)
-        self.resize(current().px(132), current().px(84))
+        fit(self, 132, 84)
 
     def _connect(self) -> None:
         self.sheet_box.currentIndexChanged.connect(self._on_sheet)

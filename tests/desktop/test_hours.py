@@ -6,9 +6,10 @@ from decimal import Decimal
 import pytest
 from PySide6.QtCore import Qt
 from PySide6.QtTest import QTest
-from PySide6.QtWidgets import QApplication, QDialog
+from PySide6.QtWidgets import QApplication, QDialog, QWidget
 
 from desktop import hours_words as say
+from desktop import theme
 from desktop.dialogs.hours_dialog import HoursDialog
 from desktop.document import Document, Refusal
 from desktop.edits.reckoned import by_hand
@@ -158,6 +159,21 @@ def test_the_steps_keep_to_the_rules_of_models(qtmodeltester, make):
     qtmodeltester.check(table, force_py=True)
     table.show(dialog.steps.rows)
     assert table.rowCount() == 7
+
+
+@pytest.mark.parametrize("zoom", [1.0, 1.5])
+def test_the_dialog_fits_a_small_laptop(qtbot, qapp, zoom):
+    theme.apply(qapp, replace(theme.light(), zoom=zoom))
+    window = QWidget()
+    qtbot.addWidget(window)
+    window.resize(1366, 768)
+    dialog = HoursDialog(PLAN, PLAN.categories[0], window)
+    dialog.form.pay.setChecked(True)
+    dialog.show()
+    assert dialog.width() <= 1366
+    assert dialog.height() <= 768
+    dialog.close()
+    theme.apply(qapp, theme.light())
 
 
 # in the plan

@@ -254,6 +254,20 @@ def test_a_big_table_is_refused_whole(make):
     assert document.plan == PLAN
 
 
+@pytest.mark.parametrize("zoom", [1.0, 1.5])
+def test_the_dialog_fits_a_small_laptop(qtbot, qapp, zoom):
+    theme.apply(qapp, replace(theme.light(), zoom=zoom))
+    window = QWidget()
+    qtbot.addWidget(window)
+    window.resize(1366, 768)
+    dialog = ImportDialog(Document(PLAN), [pasted_table(WITH_REFUSED)], "crew.csv", parent=window)
+    dialog.show()
+    assert dialog.width() <= 1366
+    assert dialog.height() <= 768
+    dialog.close()
+    theme.apply(qapp, theme.light())
+
+
 # several sheets
 
 
