@@ -1,5 +1,6 @@
 """A table on its way into the plan: what was understood, what not, and nothing in by halves."""
 
+from dataclasses import replace
 from decimal import Decimal
 
 import openpyxl
@@ -7,9 +8,9 @@ import pytest
 from PySide6.QtCore import QPoint, QPointF, Qt
 from PySide6.QtGui import QWheelEvent
 from PySide6.QtTest import QTest
-from PySide6.QtWidgets import QApplication, QFileDialog, QPushButton
+from PySide6.QtWidgets import QApplication, QFileDialog, QPushButton, QWidget
 
-from desktop import traffic
+from desktop import theme, traffic
 from desktop.dialogs.import_dialog import ImportDialog
 from desktop.document import Document, Refusal
 from desktop.tables.fate_table import FateTable
