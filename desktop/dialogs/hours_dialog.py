@@ -12,7 +12,7 @@ from desktop.dialogs.fitting import fit
 from desktop.dialogs.hours_form import HoursForm
 from desktop.edits.reckoned import with_reckoning
 from desktop.pages.page_parts import heading, label
-from desktop.reckoning import Reckoning, reckon
+from desktop.reckoning import Reckoning, Step, reckon
 from desktop.tables import numbers
 from desktop.tables.column import percent_of
 from desktop.tables.numbers import Refused
@@ -85,13 +85,20 @@ class HoursDialog(QDialog):
         self.wrong.setVisible(bool(wrong))
         self.outcome.setVisible(made is not None)
         self.take_button.setEnabled(made is not None)
-        self.steps.show(made.steps if made else ())
+        self.steps.show(made.steps if made else self._hours_alone())
         if made is not None:
             self.category = with_reckoning(self._before, made.hours, made.pay)
             self.outcome.setText(self._outcome(made))
 
-    def _reckoned(self) -> Reckoning:
-        return reckon(self.form.entries(), self._plan.period, self._plan.currency)
+    def _reckoned(self, *, with_pay: bool = True) -> Reckoning:
+        return reckon(self.form.entries(with_pay=with_pay), self._plan.period, self._plan.currency)
+
+    def _hours_alone(self) -> tuple[Step, ...]:
+        """What is right already while the pay is still being typed."""
+        try:
+            return self._reckoned(with_pay=False).steps
+        except (Refused, CannotReckon):
+            return ()
 
     def _outcome(self, made: Reckoning) -> str:
         """What goes into the plan, and what it replaces."""

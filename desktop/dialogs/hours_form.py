@@ -54,7 +54,7 @@ class HoursForm(QWidget):
         """What an absence is counted in."""
         return self._measures[name]
 
-    def entries(self) -> Entries:
+    def entries(self, *, with_pay: bool = True) -> Entries:
         """What was typed. Raises Refused where a number is none."""
         year = WorkingYear(
             self._number(say.HOURS_A_WEEK),
@@ -63,7 +63,7 @@ class HoursForm(QWidget):
             tuple(self._away(name) for name in _AWAY),
         )
         length = self._number(self._period) if self._period in self._fields else None
-        return Entries(year, self._number(say.FULL_TIME), length, self._pay())
+        return Entries(year, self._number(say.FULL_TIME), length, self._pay() if with_pay else None)
 
     def texts(self) -> dict[str, str]:
         """Everything typed and chosen, to be filled in again."""

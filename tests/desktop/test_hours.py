@@ -92,6 +92,7 @@ def test_pay_comes_from_salary_and_on_costs(make):
     assert not dialog.form.field(say.SALARY).isEnabled()
     dialog.form.pay.setChecked(True)
     assert dialog.wrong.text() == "Salary a year: a number is needed"
+    assert "Paid hours per week" in steps(dialog)  # the hours stand already
     assert not dialog.take_button.isEnabled()
     type_in(dialog, {say.SALARY: "44200", say.ON_COST_SHARE: "21.3", say.ON_COSTS: "650"})
     assert steps(dialog)["Cost a year"] == ("44,200 × (1 + 21.3 %) + 650", "EUR 54,264.60")
