@@ -1,4 +1,4 @@
-"""What is handed over besides the packages: the documents, the desktop entry, the ingredients of the bundle."""
+"""What is handed over besides the packages: documents, desktop entry, ingredients of the bundle."""
 
 from __future__ import annotations
 
