@@ -89,7 +89,6 @@ EFFORT_NOTE = (
 
 # grids
 
-NOT_A_NUMBER = "{text} is not a number; allowed are digits with one decimal sign"
 NOT_A_SHARE = "{text} % is not possible here; allowed is 0 or more and less than 100 %"
 NO_SUCH_CATEGORY = "no category is called {name}"
 NO_LIMIT = "no limit"

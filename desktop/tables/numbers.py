@@ -1,7 +1,6 @@
 """Numbers as they are typed into a grid and shown there.
 
-Typed: a lone comma or point is the decimal sign, whichever it is; where both stand, the last one is, and
-the other one groups thousands; spaces and apostrophes group too. Shown: every digit as typed, the locale's
+Typed: as `solver.numeral` reads them, in the digits of any script. Shown: every digit as typed, the locale's
 decimal sign, and thousands apart by a narrow space, never by a sign, so that what is shown can be typed back.
 """
 
@@ -13,16 +12,13 @@ from decimal import Decimal
 
 from PySide6.QtCore import QLocale
 
-from desktop import messages
 from desktop.figures import NIL
-from solver.exact import TypedNumber, typed_number
-from solver.review import quoted
+from solver.exact import TypedNumber
+from solver.numeral import NotANumber, parse_number
 
 NARROW_SPACE = "\u202f"
-_WRONG = "?"  # what no number can be made of
 _GROUPED_FROM = 5  # 3100 reads well as it is, 52 000 does not
-_SPACES = re.compile(r"(?<=\d)[\s'\u2019](?=\d{3}(?!\d))")
-_MINUS = str.maketrans({"\u2212": "-", "\u2013": "-"})
+_ZEROS = ("-", "\u2212", NIL)  # the dash that zero is shown as, typed back
 
 
 class Refused(Exception):
@@ -36,13 +32,12 @@ class Refused(Exception):
 
 def parse(text: str) -> TypedNumber:
     """The number typed as `text`, with the digits as typed. Raises Refused."""
-    typed = _with_plain_digits(text.strip()).translate(_MINUS)
-    if typed == "-":
-        return TypedNumber("0")  # the dash that zero is shown as
-    number = _made(_with_point(_SPACES.sub("", typed).removeprefix("+")))
-    if number is None:
-        raise Refused(messages.NOT_A_NUMBER.format(text=quoted(text.strip())))
-    return number
+    if text.strip() in _ZEROS:
+        return TypedNumber("0")
+    try:
+        return parse_number(_with_plain_digits(text)).number
+    except NotANumber as wrong:
+        raise Refused(str(wrong)) from None
 
 
 def _with_plain_digits(text: str) -> str:
@@ -50,41 +45,12 @@ def _with_plain_digits(text: str) -> str:
     return "".join(str(unicodedata.decimal(c)) if c.isdecimal() else c for c in text)
 
 
-def _with_point(text: str) -> str:
-    """`text` with a point as decimal sign and without grouping; as it is where the grouping is wrong."""
-    signs = [c for c in text if c in ".,"]
-    if not signs:
-        return text
-    last = signs[-1]
-    if len(signs) == 1:
-        return text.replace(last, ".")
-    if signs.count(last) > 1:  # 1.234.567: a sign that comes twice groups
-        return _ungrouped(text, last) if len(set(signs)) == 1 else _WRONG
-    whole, _, part = text.rpartition(last)
-    other = "," if last == "." else "."
-    return f"{_ungrouped(whole, other)}.{part}"
-
-
-def _ungrouped(text: str, sign: str) -> str:
-    first, *others = text.removeprefix("-").split(sign)
-    grouped = 1 <= len(first) <= 3 and others and all(len(group) == 3 for group in others)
-    return text.replace(sign, "") if grouped else _WRONG
-
-
-def _made(text: str) -> TypedNumber | None:
-    if text.startswith((".", "-.")):
-        text = text.replace(".", "0.", 1)
-    negative, digits = ("-", text[1:]) if text.startswith("-") else ("", text)
-    digits = re.sub(r"^0+(?=\d)", "", digits).removesuffix(".")
-    try:
-        return typed_number(negative + digits)
-    except ValueError:
-        return None
-
-
 def reads_two_ways(text: str) -> bool:
     """True for 52,000 or 1.234: read as a decimal, though somebody may have meant thousands."""
-    return re.fullmatch(r"[-\u2212+]?[1-9]\d{0,2}[.,]\d{3}", text.strip()) is not None
+    try:
+        return bool(parse_number(_with_plain_digits(text)).remark)
+    except NotANumber:
+        return False
 
 
 def plain(number: Decimal, locale: QLocale | None = None) -> str:
