@@ -10,7 +10,7 @@ import sys
 from collections.abc import Sequence
 from pathlib import Path
 
-OK, NO, UNUSABLE = 0, 1, 2
+OK, UNUSABLE = 0, 2
 
 
 def main(arguments: Sequence[str] | None = None) -> int:

@@ -39,7 +39,6 @@ MEANING_OF = "What column {column} means"
 UNDERSTOOD_SIGN, NOT_UNDERSTOOD_SIGN, LEFT_OUT_SIGN = "\u2713", "\u2717", "\u2013"
 
 ROWS = "Rows"
-ROW = "Row"
 NAME = "Name"
 FATE = "What becomes of it"
 WHY = "Why, or what to look at"

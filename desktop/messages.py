@@ -149,7 +149,6 @@ def phase_loss(works: tuple[str, ...], rules: tuple[str, ...]) -> str:
 CHANGE = "Change {what}"
 CLEAR_CELLS = "Clear cells"
 PASTE_CELLS = "Paste"
-CUT_CELLS = "Cut"
 FILL_DOWN = "Fill down"
 INSERT_ROW = "Insert {noun}"
 DUPLICATE_ROWS = "Duplicate {noun}"

@@ -56,7 +56,6 @@ def shared(category: str, saving: str) -> str:
 
 ROOM_LINES = "Lines"
 ROOM_PAY = "Pay"
-LINE = "Line"
 TIGHTEN = "Can tighten\nby"
 TIP_TIGHTEN = "How far the line can tighten before the exact crew is no longer workable"
 LOOSEN = "Loosen\nby"

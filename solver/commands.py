@@ -36,10 +36,6 @@ class Verb:
     text: Callable[[Plan, Any], str]
 
 
-def _no_arguments(parser: argparse.ArgumentParser) -> None:
-    """For verbs with nothing to set."""
-
-
 def _solve_arguments(parser: argparse.ArgumentParser) -> None:
     parser.add_argument("--seconds", type=float, default=None, help="time limit of the exact solve")
     parser.add_argument("--tolerance", type=float, default=0.0, help="gap in %% that is good enough")

@@ -44,10 +44,6 @@ class Speech:
         shown = figures.money(x, "", self.locale)
         return f"{name(self.plan.currency, 12)}{figures.NBSP}{'0' if shown == figures.NIL else shown}"
 
-    def bare_money(self, x: Number) -> str:
-        """Money for a column whose header names the currency; a dash for none."""
-        return figures.money(x, "", self.locale)
-
     def number(self, x: Number) -> str:
         """A number of the plan with all the digits it was typed with."""
         exact = x if isinstance(x, Decimal) else Decimal(repr(float(x)))

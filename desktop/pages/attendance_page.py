@@ -37,7 +37,6 @@ if TYPE_CHECKING:
     from desktop.pictures.attendance_curve import AttendanceCurve
 
 _ASK_AFTER = 600  # ms without another change of the wanted chance
-_FEW_CENTS = 0.005
 _OWN = "own"
 
 
