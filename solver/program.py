@@ -35,6 +35,8 @@ from solver.ruleterms import rule_says, rule_terms
 # head counts nobody limited get at least this many lots, and AMPLE times what any one line asks for
 UNLIMITED_LOTS = 10**6
 AMPLE = 1000
+# beyond this HiGHS may forget its time limit, and there are no such crews
+MOST_LOTS = 10**9
 
 
 class Program:
@@ -101,9 +103,8 @@ class Program:
         for j, category in enumerate(self.categories):
             lot = self.lots[j]
             lower = ceil(Fraction(category.at_least) / lot)
-            limit = (
-                self._unlimited(j) if category.at_most is None else floor(Fraction(category.at_most) / lot)
-            )
+            most = self._unlimited(j) if category.at_most is None else floor(Fraction(category.at_most) / lot)
+            limit = min(most, max(MOST_LOTS, lower))
             for t, phase in enumerate(self.phases):
                 cap = limit if self._caps is None else min(limit, self._caps[self.head(j, t)])
                 self._column(

@@ -12,6 +12,7 @@ from solver.answer import Policy, State
 from solver.engine import LpStatus, Relaxation
 from solver.matrix import Matrix, RowSense, forgiving
 from solver.plan import Category, Phase, Plan, Presence, Ratio, Sense, Share, Supervision, Work
+from solver.program import Program
 from solver.solve import solve
 
 SEEDS = [range(start, start + 25) for start in range(0, 100, 25)]
@@ -118,13 +119,27 @@ class TestHours:
 
 
 class TestVeryMany:
-    @pytest.mark.parametrize("amount", ["1e6", "1e9", "1e12"])
-    def test_amounts_up_to_a_billion_and_beyond(self, amount: str) -> None:
+    @pytest.mark.parametrize("amount", ["1e6", "1e9", "5e9"])
+    def test_amounts_of_a_billion_and_more(self, amount: str) -> None:
         hand = Category("A", Decimal(5), Decimal(40), output={"W": Decimal("0.25")})
         answer = solve(Plan(categories=(hand,), works=(Work("W", "u", (Decimal(amount),)),)))
         assert answer.state is State.PROVED
         assert answer.exact is not None
         assert answer.exact.crew == {"A": (float(amount) / 10,)}
+
+    def test_limits_nobody_can_mean_keep_the_engines_safe(self) -> None:
+        """A weight of a millionth asks for millions; HiGHS forgets its time limit at 1e10 and more."""
+        plan = Plan(
+            categories=(
+                Category("A", Decimal(5), ONE_DAY, at_most=Decimal("1e12")),
+                Category("B", Decimal(7), ONE_DAY),
+            ),
+            rules=(
+                Presence("P", {"A": Decimal("1e-12"), "B": Decimal(1)}, Sense.AT_LEAST, Decimal("1000.5")),
+            ),
+        )
+        assert max(Program(plan).matrix.upper) <= 1e9
+        assert counts(plan) == [0, 1001]
 
     def test_supervisors_asked_for_by_millions_of_others(self) -> None:
         """Nothing asks for leads but those they supervise: 1.2 million learners, a lead to every two."""
