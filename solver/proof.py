@@ -17,7 +17,7 @@ from solver.race import Standing, engines
 from solver.rounding import half_up, snapped
 from solver.search import Found, Lots, Search, tie_width
 from solver.tiebreak import cheapest_preferred, preferred
-from solver.tightening import mended, phases_alone, tightened
+from solver.tightening import PhasesAlone, tightened
 from solver.windows import Windows
 
 SECONDS = 60.0
@@ -25,6 +25,7 @@ SECONDS = 60.0
 OWN_SECONDS = 2.0
 OWN_SECONDS_IN_PHASES = 0.25
 CENT = 0.01
+FEW_HEADS = 24  # our own search meets a crew sooner than one could be mended
 
 
 @dataclass(frozen=True)
@@ -63,11 +64,13 @@ class Prover:
             engines().warm()
         start = self._first_crew(fractional, effort.start)
         if several:
-            start = self._first_of_phases(fractional, start, effort)
+            parts = PhasesAlone(self.program)
+            if self.program.head_count > FEW_HEADS:
+                start = self._first_of_phases(parts, fractional, start, effort)
         program, search = self._tightened(self._caps(start))
         matrix = program.matrix
         if several:
-            matrix = tightened(program, phases_alone(program))
+            matrix = tightened(program, parts.cheapest())
             search = Search(program, matrix, grain=search.grain)
         own = self._own_search(program, search, start, until)
         if own.state is not State.BEST_FOUND:
@@ -85,22 +88,24 @@ class Prover:
         return found
 
     def _first_of_phases(
-        self, fractional: Sequence[float], start: Found | None, effort: Effort
+        self, parts: PhasesAlone, fractional: Sequence[float], start: Found | None, effort: Effort
     ) -> Found | None:
         """A crew for a start: nearest costs least after mending (20x8x52: 3.52 million, up 4.17), down now
         and then less (10x4x12)."""
         for rounding in (half_up, floor, ceil):
             if rounding is ceil and start is not None:
                 break
-            better = _cheaper(start, self._mended(fractional, rounding))
+            better = _cheaper(start, self._mended(parts, fractional, rounding))
             if better is not start and better is not None and effort.heard is not None:
                 effort.heard(Proved(State.BEST_FOUND, None, better, self.search.root_bound()))
             start = better
         return start
 
-    def _mended(self, fractional: Sequence[float], rounding: Callable[[float], int]) -> Found | None:
+    def _mended(
+        self, parts: PhasesAlone, fractional: Sequence[float], rounding: Callable[[float], int]
+    ) -> Found | None:
         """The fractional crew rounded, each phase then mended on its own by additions."""
-        lots = mended(self.program, [rounding(snapped(v)) for v in fractional])
+        lots = parts.mended([rounding(snapped(v)) for v in fractional])
         objective = None if lots is None else self.search.evaluate(lots)
         return None if lots is None or objective is None else Found(lots, objective)
 

@@ -63,44 +63,56 @@ def _untied(category: Category) -> Category:
     )
 
 
-def phases_alone(program: Program) -> list[PhaseAlone]:
-    """Every phase's cheapest crew on its own, for as many phases as time allows."""
-    until = monotonic() + SECONDS_IN_ALL
-    found = []
-    for t in range(len(program.phases)):
-        if monotonic() > until:
-            break
-        found.append(_alone(Program(phase_alone(program.plan, t))))
-    return found
+class PhasesAlone:
+    """Each phase of a program as a program of its own, built once and asked several times."""
+
+    def __init__(self, program: Program) -> None:
+        self.program = program
+        self._searches: dict[int, Search] = {}
+
+    def _search(self, t: int) -> Search:
+        if t not in self._searches:
+            part = Program(phase_alone(self.program.plan, t))
+            self._searches[t] = Search(part, grain=whole_grain(part))
+        return self._searches[t]
+
+    def cheapest(self) -> list[PhaseAlone]:
+        """Every phase's cheapest crew on its own, for as many phases as time allows."""
+        until = monotonic() + SECONDS_IN_ALL
+        found = []
+        for t in range(len(self.program.phases)):
+            if monotonic() > until:
+                break
+            found.append(_alone(self._search(t)))
+        return found
+
+    def mended(self, lower: Sequence[int]) -> Lots | None:
+        """A crew of at least `lower` lots, each phase mended on its own; None where one cannot be."""
+        program = self.program
+        fewest, most = FIRST_NODES
+        limits = Limits(nodes=min(max(fewest, FIRST_NODES_IN_ALL // len(program.phases)), most))
+        parts: list[Lots] = []
+        for t in range(len(program.phases)):
+            search = self._search(t)
+            box = search.box()
+            for j in range(len(program.categories)):
+                box[0][j] = max(box[0][j], lower[program.head(j, t)])
+            best = search.cheapest(limits, box=box).best or search.cheapest(STUBBORN, box=box).best
+            if best is None:
+                return None
+            parts.append(best.lots)
+        return tuple(lots[j] for j in range(len(program.categories)) for lots in parts)
 
 
-def _alone(part: Program) -> PhaseAlone:
-    search = Search(part, grain=whole_grain(part))
+def _alone(search: Search) -> PhaseAlone:
     outcome = search.cheapest(Limits(nodes=5_000, seconds=OWN_SHARE))
     if outcome.complete or outcome.best is None:
         return PhaseAlone(outcome.bound, None if outcome.best is None else outcome.best.lots)
+    part = search.program
     most = [int(outcome.best.objective / cost) if cost > 0 else UNLIMITED_LOTS for cost in part.matrix.cost]
     matrix = Program(part.plan, most[: part.head_count]).matrix
     bound = whole(matrix, EngineName.HIGHS, seconds=ENGINE_SECONDS).bound
     return PhaseAlone(search.rounded(max(bound, outcome.bound)), outcome.best.lots)
-
-
-def mended(program: Program, lower: Sequence[int]) -> Lots | None:
-    """A crew of at least `lower` lots, each phase mended on its own; None where one cannot be."""
-    parts: list[Lots] = []
-    fewest, most = FIRST_NODES
-    limits = Limits(nodes=min(max(fewest, FIRST_NODES_IN_ALL // len(program.phases)), most))
-    for t in range(len(program.phases)):
-        part = Program(phase_alone(program.plan, t))
-        search = Search(part, grain=whole_grain(part))
-        box = search.box()
-        for j in range(len(program.categories)):
-            box[0][j] = max(box[0][j], lower[program.head(j, t)])
-        best = search.cheapest(limits, box=box).best or search.cheapest(STUBBORN, box=box).best
-        if best is None:
-            return None
-        parts.append(best.lots)
-    return tuple(lots[j] for j in range(len(program.categories)) for lots in parts)
 
 
 def tightened(program: Program, alone: Sequence[PhaseAlone]) -> Matrix:
