@@ -51,6 +51,8 @@ class EditMenu(QObject):
         undo, redo = stack.createUndoAction(self, "&Undo"), stack.createRedoAction(self, "&Redo")
         undo.setShortcuts(Keys.Undo)
         redo.setShortcuts(Keys.Redo)
+        undo.setIconText("Undo")  # the text also names the step
+        redo.setIconText("Redo")
         menu.addActions([undo, redo])
         self._actions = [(verb, self._action(verb, menu)) for verb in VERBS]
         app = QApplication.instance()

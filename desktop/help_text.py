@@ -1,4 +1,4 @@
-"""The short help: what the words mean."""
+"""The short help: what the words mean, what each page is for, how an answer is proved, and keys."""
 
 from __future__ import annotations
 
@@ -9,7 +9,7 @@ WORDS: tuple[tuple[str, str], ...] = (
     ("On the books", "People of a category who are there before the first phase."),
     ("Work", "Something to be delivered, in a unit, a known amount per phase."),
     ("Output", "Units of a work that one person of a category delivers per attended hour."),
-    ("Attended hours", "Paid hours x (1 - absence)."),
+    ("Attended hours", "Paid hours \u00d7 (1 \u2212 absence)."),
     (
         "Supervision",
         "Hours per period that one person of a category takes from named supervising categories.",
@@ -30,7 +30,11 @@ WORDS: tuple[tuple[str, str], ...] = (
     ),
     ("Patched crew", "A rounded crew made workable by the cheapest additions of people."),
     ("Own crew", "Head counts you type yourself, on the Crew page; appraised like every other crew."),
-    ("Margin", "Room left on a line, or what it is short by, in the line's own unit."),
+    (
+        "Paper cost",
+        "What the head counts of a crew cost that is not workable; never to be compared with a crew that is.",
+    ),
+    ("Margin", "Room left on a line (0 or more) or what it is short by (below 0), in the line's own unit."),
     ("Broken, workable", "A line with a negative margin is broken; a crew with no broken line is workable."),
     ("Whole-people cost", "Exact cost less floor: the integrality gap, in money and in % of the exact cost."),
     (
@@ -40,12 +44,83 @@ WORDS: tuple[tuple[str, str], ...] = (
     ),
 )
 
+# title of a page: what it is for
+PAGES: tuple[tuple[str, str], ...] = (
+    ("Plan", "What is asked: phases, categories, works and rules. Every edit is answered by itself."),
+    (
+        "To mend",
+        "There only while something keeps the plan from having a crew: entries that make no plan, or "
+        "lines that cannot hold together, each with how far it alone would have to give way. The button "
+        "\u201cDo this\u201d carries a repair out.",
+    ),
+    ("Crew", "Who, and how many: the exact crew beside the fractional and the rounded ones, and your own."),
+    ("Rounding", "Which lines each rounding breaks, by how much, and which categories the miss comes from."),
+    (
+        "Whole people",
+        "What it costs that people are whole, and what one shared or part-time post would save.",
+    ),
+    (
+        "Room",
+        "How far each line can tighten, and the least loosening that makes a cheaper whole crew possible.",
+    ),
+    ("Near best", "All other whole crews within so many per cent of the cheapest, cheapest first."),
+    (
+        "Workload",
+        "The cheapest crew for more or less of one work, or of all: each step is a crew and the workloads "
+        "it is the cheapest for. Type a workload to see what it takes.",
+    ),
+    (
+        "Crew map",
+        "Every whole crew of two categories, all others as in the exact crew: which are workable, what "
+        "they cost, and where the fractional, rounded and exact crews lie.",
+    ),
+    (
+        "Attendance",
+        "On how many days enough people are there when each may be away, who is missed, and the cheapest "
+        "crew for a wanted chance.",
+    ),
+    (
+        "Variants",
+        "Several plans side by side, each a file of its own. What differs from the plan in the window is "
+        "bold.",
+    ),
+    ("The page", "The recommendation to be signed, as it is printed."),
+)
+
+PROOF: tuple[tuple[str, str], ...] = (
+    ("Own search", "Every crew that could be cheaper was ruled out, by branch and bound with safe bounds."),
+    (
+        "Two engines",
+        "Two independent solvers, CBC and HiGHS, each proved its crew, and they agree to the cent.",
+    ),
+    ("One engine", "One of the two solvers proved the crew; the other had no time to confirm it."),
+    (
+        "Best found",
+        "The time was up, or you stopped, and no cheaper crew is known; the headline says how much above "
+        "the floor it costs at most.",
+    ),
+    (
+        "Checked again",
+        "Whatever proved it, every line is checked again in exact arithmetic on the numbers as typed. "
+        "Rules and limits hold exactly; hours lines hold within one second of work.",
+    ),
+    ("Stop here", "Ends the search and keeps the best crew found so far."),
+    ("Look further", "Goes on from the best crew found, for twice as long."),
+    (
+        "Time and tolerance",
+        "How long to look at most, and how close to the cheapest is good enough. With a tolerance of 0 % the "
+        "search goes on until the crew is proved cheapest or the time is up.",
+    ),
+)
+
+# keys of parts of the window; those of the menus are read off the menus
 KEYS: tuple[tuple[str, str], ...] = (
     ("Return, F2", "Edit the cell or the rule; Return again goes to the cell below, Tab to the one beside"),
     ("Escape", "Leave a cell as it was; drop an entry that was refused"),
     ("Typing into the last line", "Adds a category, work or phase"),
-    ("Space", "Tick a name in a list"),
-    ("Ctrl+.", "Stop looking for a cheaper crew and keep the best one found"),
-    ("Ctrl+Shift+L", "Look further, from the best crew found"),
-    ("F6", "From one part of the page to the next"),
+    ("Space", "Tick a name in a list; on the crew map, take the crew under the cursor as own"),
+    ("Arrow keys", "In the crew map, the stairs of the workload and the attendance curve: move the cursor"),
+    ("Ctrl+C", "Copy a table's cells, or a picture as an image"),
+    ("Ctrl+Shift+C", "Copy what is behind a picture, as a table"),
+    ("Return", "On a picture: show the table behind it"),
 )

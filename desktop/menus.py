@@ -114,11 +114,18 @@ def fill_view_menu(menu: QMenu, pages: tuple[PageSpec, ...], go: Callable[[int],
         group.addAction(action)
 
 
-def fill_help_menu(menu: QMenu, window: QWidget) -> None:
-    """Help and About."""
-    add(menu, "&Words and keys", lambda: help_dialog(window).exec(), Keys.HelpContents)
+def fill_help_menu(menu: QMenu, bar: QMenuBar, window: QWidget) -> None:
+    """Help, which tells the keys of all menus of `bar`, and About."""
+    add(menu, "&Words and keys", lambda: help_dialog(window, menu_keys(bar)).exec(), Keys.HelpContents)
     about = add(menu, "&About Full Complement", lambda: about_dialog(window).exec())
     about.setMenuRole(QAction.MenuRole.AboutRole)
+
+
+def menu_keys(bar: QMenuBar) -> tuple[tuple[str, str], ...]:
+    """(keys, entry) of everything in the menus of `bar` that has keys."""
+    entries = (action for menu in bar.findChildren(QMenu) for action in menu.actions())
+    native = QKeySequence.SequenceFormat.NativeText
+    return tuple((e.shortcut().toString(native), e.iconText()) for e in entries if not e.shortcut().isEmpty())
 
 
 def menu_of(bar: QMenuBar, title: str) -> QMenu:

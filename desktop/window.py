@@ -148,7 +148,7 @@ class Window(QMainWindow):
         fill_view_menu(view, self._pages, self.show_page, self._look)
         add(view, "Next &part of the page", self.next_part, "F6")
         self.answer_menu = AnswerMenu(menu_of(bar, "&Answer"), self.answers, self)
-        fill_help_menu(menu_of(bar, "&Help"), self)
+        fill_help_menu(menu_of(bar, "&Help"), bar, self)
 
     def _connect(self) -> None:
         self.rail.currentRowChanged.connect(self.show_page)

@@ -1,4 +1,4 @@
-"""Help: the words of the program and its keys."""
+"""Help: the words of the program, its pages, what is proved, and its keys."""
 
 from __future__ import annotations
 
@@ -7,7 +7,9 @@ from html import escape
 from PySide6.QtWidgets import QDialog, QDialogButtonBox, QTextBrowser, QVBoxLayout, QWidget
 
 from desktop import messages, theme
-from desktop.help_text import KEYS, WORDS
+from desktop.help_text import KEYS, PAGES, PROOF, WORDS
+
+Rows = tuple[tuple[str, str], ...]
 
 
 class TextDialog(QDialog):
@@ -28,17 +30,19 @@ class TextDialog(QDialog):
         self.resize(theme.current().px(80), theme.current().px(68))
 
 
-def help_dialog(parent: QWidget | None) -> TextDialog:
-    """The Help dialog."""
-    words = _table(WORDS)
-    keys = _table(KEYS)
-    html = (
-        f"<h3>{messages.HELP_WORDS}</h3>{words}<h3>{messages.HELP_KEYS}</h3>{keys}<p>{messages.CAUTION}</p>"
+def help_dialog(parent: QWidget | None, menu_keys: Rows) -> TextDialog:
+    """The Help dialog; `menu_keys` are (keys, entry) of the menus."""
+    parts = (
+        (messages.HELP_WORDS, WORDS),
+        (messages.HELP_PAGES, PAGES),
+        (messages.HELP_PROOF, PROOF),
+        (messages.HELP_KEYS, (*KEYS, *menu_keys)),
     )
-    return TextDialog(messages.HELP, html, parent)
+    html = "".join(f"<h3>{escape(title)}</h3>{_table(rows)}" for title, rows in parts)
+    return TextDialog(messages.HELP, f"{html}<p>{escape(messages.CAUTION)}</p>", parent)
 
 
-def _table(rows: tuple[tuple[str, str], ...]) -> str:
+def _table(rows: Rows) -> str:
     cells = "".join(
         f'<tr><td style="padding-right:16px"><b>{escape(word)}</b></td><td>{escape(meaning)}</td></tr>'
         for word, meaning in rows

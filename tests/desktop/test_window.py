@@ -5,12 +5,12 @@ from decimal import Decimal
 
 import pytest
 from PySide6.QtCore import QSettings, Qt, QTimer
-from PySide6.QtGui import QCloseEvent
+from PySide6.QtGui import QCloseEvent, QKeySequence
 from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication, QDialog, QFileDialog
 
 from desktop import files as files_module
-from desktop import start
+from desktop import help_text, start
 from desktop.answers import Status
 from desktop.document import Document
 from desktop.look import Look, Palette
@@ -205,9 +205,29 @@ def test_help_and_about_can_be_read(window, monkeypatch):
     about = next(a for m in window.menuBar().actions() for a in m.menu().actions() if "About" in a.text())
     about.trigger()
     assert "Attended hours" in shown[0]
+    for words in (
+        "One engine",
+        "within one second of work",
+        "Ctrl+.\nStop here",
+        "Ctrl+Shift+L\nLook further",
+    ):
+        assert words in shown[0]
     assert "Not a legal check" in shown[0]
     assert "DejaVu" in shown[1]
     assert "LGPL" in shown[1]
+
+
+def test_help_knows_every_page_and_every_key_of_the_menus(window, monkeypatch):
+    shown = []
+    monkeypatch.setattr(QDialog, "exec", lambda dialog: shown.append(dialog.text.toPlainText()))
+    press("F1")
+    assert [title for title, _ in help_text.PAGES] == [page.title for page in PAGES]
+    menus = [action.menu() for action in window.menuBar().actions()]
+    with_keys = [entry for menu in menus for entry in menu.actions() if entry.shortcuts()]
+    assert len(with_keys) > 30
+    for entry in with_keys:
+        keys = entry.shortcut().toString(QKeySequence.SequenceFormat.NativeText)
+        assert f"\n{keys}\n{entry.iconText()}\n" in shown[0]
 
 
 def test_no_part_scrolls_sideways_on_a_small_laptop(made, workers):
