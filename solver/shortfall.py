@@ -78,7 +78,8 @@ class Shortfall:
         self.work_short, self.work_extra = self._slack_columns(works, Aim.WORK)
         self.group_short, self.group_extra = self._slack_columns(groups, Aim.SUPERVISION)
         self.work_rows = [self._add_work_row(k) for k in range(works)]
-        self.group_rows = [self._add_group_row(g) for g in range(groups)]
+        for g in range(groups):
+            self._add_group_row(g)
         self._cap = self._row(self.group_short, [1.0] * groups, RowSense.AT_MOST, 0.0)
         self._relaxation = Relaxation(self._matrix)
         self._priced: dict[int, float] = {}
@@ -173,7 +174,7 @@ class Shortfall:
             coefs.append(float(1 / best))
         return self._row(columns, coefs, RowSense.EQUAL, float(Fraction(work.amounts[self.t]) / best))
 
-    def _add_group_row(self, g: int) -> int:
+    def _add_group_row(self, g: int) -> None:
         program = self.program
         columns = [self.group_short[g], self.group_extra[g]]
         coefs = [1.0, -1.0]
@@ -185,7 +186,7 @@ class Shortfall:
         drawn = {
             i: float(length * Fraction(program.categories[i].supervision.hours)) for i in program.charges(g)
         }
-        return self._row(columns, coefs, RowSense.EQUAL, 0.0, drawn)
+        self._row(columns, coefs, RowSense.EQUAL, 0.0, drawn)
 
     # ---- asking ------------------------------------------------------------------------------
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QModelIndex, Qt, Signal
+from PySide6.QtCore import Qt, Signal
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QBoxLayout,
@@ -151,13 +151,6 @@ class CrewPage(AnswerPage):
         self.refusal.setVisible(bool(text))
         if text:
             self.remarked.emit(text)
-
-    def choose_own(self) -> None:
-        """Put the cursor on the first cell of the own column."""
-        column = self.table.own_column()
-        index = self.table.index(0, column) if column >= 0 else QModelIndex()
-        self.view.setCurrentIndex(index)
-        self.view.setFocus()
 
     def retouch(self) -> None:
         """Follow a change of theme or zoom."""

@@ -100,11 +100,9 @@ class TallyMetrics:
 
 @dataclass(frozen=True)
 class RowLayout:
-    """The figures of one row, and the height at which each line stands on (None: no such line)."""
+    """The figures of one row, where it begins, and where the rightmost exact figure ends."""
 
     top: float
-    fractional_base: float
-    exact_base: float
     figures: tuple[Figure, ...]
     right: float
 
@@ -135,7 +133,7 @@ def _row(row: TallyRow, top: float, scale: int, squeeze: float, metrics: TallyMe
     exact = _line(_exact_parts(row), lower, scale, row.lot, metrics)
     figures = tuple(replace(f, x=f.x * squeeze, width=f.width * squeeze) for f in fractional + exact)
     right = max((f.x + f.width for f in figures if f.mark is not Mark.FRACTIONAL), default=0.0)
-    return RowLayout(top, upper, lower, figures, right)
+    return RowLayout(top, figures, right)
 
 
 def _fractional_parts(row: TallyRow) -> list[tuple[Mark, float]]:

@@ -141,7 +141,8 @@ def test_only_counts_of_the_own_column_can_be_typed(hillside):
 
 def test_the_own_crew_is_typed_by_keyboard(hillside, qtbot):
     page, document, _ = hillside
-    page.choose_own()
+    page.view.setCurrentIndex(page.table.index(0, page.table.own_column()))
+    page.view.setFocus()
     qtbot.keyClicks(page.view, "4")
     qtbot.keyClick(page.view.findChild(QLineEdit), Qt.Key.Key_Return)
     qtbot.waitUntil(lambda: bool(document.plan.own))
