@@ -31,15 +31,19 @@ def full(seed: int) -> tuple[Plan, Answer]:
     return plan, solve(plan)
 
 
-@cache
-def boxed(seed: int) -> tuple[Plan, Answer, Workable]:
-    """A boxed plan, every second one with tied categories, and all its workable crews."""
+def boxed_plan(seed: int) -> Plan:
+    """A plan whose categories all have a limit, every second one with tied categories."""
     rng = np.random.default_rng(seed)
     shape = (
         {"max_categories": 2, "max_phases": 2} if seed % 3 == 0 else {"max_categories": 3, "max_phases": 1}
     )
     features = FEATURES - HARD if seed % 2 else FEATURES
     plan = random_plan(rng, boxed=True, features=features, **shape)
-    if seed % 2:
-        plan = hostile_plans.clones(rng, plan)
+    return hostile_plans.clones(rng, plan) if seed % 2 else plan
+
+
+@cache
+def boxed(seed: int) -> tuple[Plan, Answer, Workable]:
+    """A boxed plan with its answer and all its workable crews."""
+    plan = boxed_plan(seed)
     return plan, solve(plan), checker.workable_crews(plan)

@@ -11,6 +11,8 @@ from solver.plan import Category, Phase, Plan, Presence, Sense, Supervision, Wor
 from solver.solve import solve
 from tests.solver import agreement, checker, solved
 
+pytestmark = pytest.mark.xdist_group("solved")  # one process, so that every plan is solved once
+
 MIXED = [range(start, start + 30) for start in range(0, 300, 30)]
 FULL = [range(start, start + 30) for start in range(0, 90, 30)]
 BOXED = [range(start, start + 40) for start in range(0, 160, 40)]

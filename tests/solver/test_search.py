@@ -22,6 +22,8 @@ from tests.solver.full_plans import full_plan
 from tests.solver.random_plans import FEATURES, random_plan
 from tests.solver.reference import written_out
 
+pytestmark = pytest.mark.xdist_group("solved")  # one process, so that every plan is solved once
+
 WIDE = Limits(nodes=200_000, seconds=30)
 BOXED = [range(start, start + 40) for start in range(0, 160, 40)]
 

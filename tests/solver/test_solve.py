@@ -18,9 +18,12 @@ from solver.review import review
 from solver.search import Limits, tie_width
 from solver.solve import solve
 from tests.solver import agreement, checker, solved
+from tests.solver.full_plans import full_plan
 from tests.solver.hostile_plans import BENDS, hostile_plan
 from tests.solver.random_plans import random_plan
 from tests.solver.strategies import plans
+
+pytestmark = pytest.mark.xdist_group("solved")  # one process, so that every plan is solved once
 
 MIXED = [range(start, start + 30) for start in range(0, 300, 30)]
 FULL = [range(start, start + 30) for start in range(0, 120, 30)]
@@ -42,8 +45,9 @@ class TestAgainstHighs:
             agreement.assert_floor_and_exact_equal_highs(*solved.full(seed))
 
     def test_plans_of_the_tests_have_no_problems(self) -> None:
-        plans = [solved.mixed(seed)[0] for seed in range(300)] + [solved.full(seed)[0] for seed in range(120)]
-        plans += [solved.boxed(seed)[0] for seed in range(160)]
+        plans = [random_plan(np.random.default_rng(seed)) for seed in range(300)]
+        plans += [full_plan(np.random.default_rng(seed)) for seed in range(120)]
+        plans += [solved.boxed_plan(seed) for seed in range(160)]
         assert [problem for plan in plans for problem in review(plan)] == []
 
     def test_most_plans_of_everything_at_once_have_an_answer(self) -> None:
