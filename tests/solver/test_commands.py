@@ -2,20 +2,23 @@
 
 from __future__ import annotations
 
+import io
 import json
 import os
 import subprocess
 import sys
+from contextlib import redirect_stderr, redirect_stdout
 from dataclasses import replace
 from decimal import Decimal
 from pathlib import Path
-from typing import Any
+from tempfile import TemporaryFile
 
 import numpy as np
 import pytest
 
 import solver
 from solver.caution import CAUTION
+from solver.commands import main
 from solver.plan import Budget, Plan
 from solver.planfile import dump_plan, save_plan
 from tests.solver.full_plans import full_plan
@@ -35,16 +38,25 @@ BREAK_KEYS = {
 POLICIES = ["down", "nearest", "up", "largest remainder", "best corner", "patched", "exact"]
 
 
-def run(*arguments: str | Path, **options: Any) -> subprocess.CompletedProcess[str]:
+def run(*arguments: str | Path) -> subprocess.CompletedProcess[str]:
+    """The command line within this process; it sends standard output elsewhere, which is put back."""
+    errors, kept = io.StringIO(), os.dup(1)
+    with TemporaryFile("w+", encoding="utf-8") as out:
+        os.dup2(out.fileno(), 1)
+        try:
+            with redirect_stderr(errors), redirect_stdout(out):
+                code = main(list(map(str, arguments)))
+        finally:
+            os.dup2(kept, 1)
+            os.close(kept)
+        out.seek(0)
+        return subprocess.CompletedProcess(arguments, code, out.read(), errors.getvalue())
+
+
+def run_alone(*arguments: str | Path) -> subprocess.CompletedProcess[str]:
     """The command line in a process of its own."""
-    return subprocess.run(
-        [sys.executable, "-m", "solver", *map(str, arguments)],
-        cwd=ROOT,
-        capture_output=True,
-        text=True,
-        timeout=120,
-        **options,
-    )
+    command = [sys.executable, "-m", "solver", *map(str, arguments)]
+    return subprocess.run(command, cwd=ROOT, capture_output=True, text=True, timeout=120)
 
 
 @pytest.fixture
@@ -75,7 +87,7 @@ def text_of(plan: Plan, before: str, after: str) -> str:
 
 class TestSolve:
     def test_json_has_the_promised_keys(self, good: Path) -> None:
-        done = run("solve", "--json", good)
+        done = run_alone("solve", "--json", good)
         assert (done.returncode, done.stderr) == (0, "")
         (line,) = done.stdout.splitlines()
         answer = json.loads(line)
@@ -202,40 +214,24 @@ BAD_FILES: dict[str, tuple[bytes, int]] = {
 
 class TestBadFiles:
     @pytest.mark.parametrize("name", BAD_FILES)
-    def test_a_sentence_an_exit_code_and_the_file_untouched(
-        self, name: str, tmp_path: Path, capfd: pytest.CaptureFixture[str]
-    ) -> None:
+    def test_a_sentence_an_exit_code_and_the_file_untouched(self, name: str, tmp_path: Path) -> None:
         content, code = BAD_FILES[name]
         path = tmp_path / f"{name}.crew.json"
         path.write_bytes(content)
-        assert code_of("solve", str(path)) == code
-        out, errors = capfd.readouterr()
-        assert "Traceback" not in out + errors
-        assert (out == "") == (code == 2)
-        assert len(errors.splitlines()) == (1 if code == 2 else 0)
+        done = run("solve", path)
+        assert done.returncode == code
+        assert "Traceback" not in done.stdout + done.stderr
+        assert (done.stdout == "") == (code == 2)
+        assert len(done.stderr.splitlines()) == (1 if code == 2 else 0)
         assert path.read_bytes() == content
-        assert code_of("check", "--json", str(path)) == code
+        assert run("check", "--json", path).returncode == code
 
     @pytest.mark.parametrize("name", ["none.crew.json", "folder", "a\0b", "\udcff.crew.json", "x" * 5000])
-    def test_files_that_are_none(self, name: str, tmp_path: Path, capfd: pytest.CaptureFixture[str]) -> None:
+    def test_files_that_are_none(self, name: str, tmp_path: Path) -> None:
         (tmp_path / "folder").mkdir()
-        assert code_of("solve", f"{tmp_path}/{name}") == 2
-        out, errors = capfd.readouterr()
-        assert out == ""
-        assert len(errors.splitlines()) == 1
-        assert "Traceback" not in errors
-
-
-def code_of(*arguments: str) -> int:
-    """The exit code; the command line sends standard output elsewhere, which is put back."""
-    from solver.commands import main
-
-    kept = os.dup(1)
-    try:
-        return main(list(arguments))
-    finally:
-        os.dup2(kept, 1)
-        os.close(kept)
+        done = run("solve", f"{tmp_path}/{name}")
+        assert (done.returncode, done.stdout) == (2, "")
+        assert len(done.stderr.splitlines()) == 1
 
 
 class TestSeveralFiles:
@@ -244,7 +240,7 @@ class TestSeveralFiles:
         bad.write_bytes(BAD_FILES["negative"][0])
         broken.write_bytes(BAD_FILES["binary"][0])
         files = [good, bad, broken, tmp_path / "none.crew.json", impossible, good]
-        done = run("solve", "--json", *files)
+        done = run_alone("solve", "--json", *files)
         assert done.returncode == 2
         assert done.stderr == ""
         documents = [json.loads(line) for line in done.stdout.splitlines()]
