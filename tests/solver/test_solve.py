@@ -26,10 +26,10 @@ from tests.solver.strategies import plans
 pytestmark = pytest.mark.xdist_group("solved")  # one process, so that every plan is solved once
 
 MIXED = [range(start, start + 30) for start in range(0, 300, 30)]
-FULL = [range(start, start + 30) for start in range(0, 120, 30)]
-BOXED = [range(start, start + 40) for start in range(0, 160, 40)]
+FULL = [range(start, start + 29) for start in range(0, 116, 29)]
+BOXED = [range(start, start + 40) for start in range(0, 120, 40)]
 QUICK = settings(
-    max_examples=25, deadline=None, derandomize=True, suppress_health_check=[HealthCheck.too_slow]
+    max_examples=20, deadline=None, derandomize=True, suppress_health_check=[HealthCheck.too_slow]
 )
 
 
@@ -47,7 +47,7 @@ class TestAgainstHighs:
     def test_plans_of_the_tests_have_no_problems(self) -> None:
         plans = [random_plan(np.random.default_rng(seed)) for seed in range(300)]
         plans += [full_plan(np.random.default_rng(seed)) for seed in range(120)]
-        plans += [solved.boxed_plan(seed) for seed in range(160)]
+        plans += [solved.boxed_plan(seed) for seed in range(120)]
         assert [problem for plan in plans for problem in review(plan)] == []
 
     def test_most_plans_of_everything_at_once_have_an_answer(self) -> None:
@@ -56,12 +56,12 @@ class TestAgainstHighs:
 
     @pytest.mark.parametrize("bend", BENDS, ids=lambda bend: bend.__name__)
     def test_bent_plans_are_equal(self, bend) -> None:
-        for seed in range(12):
+        for seed in range(8):
             rng = np.random.default_rng(seed)
             plan = bend(rng, random_plan(rng, max_phases=1))
             agreement.assert_floor_and_exact_equal_highs(plan, solve(plan))
 
-    @pytest.mark.parametrize("seed", range(40, 80))
+    @pytest.mark.parametrize("seed", range(40, 70))
     def test_plans_bent_several_ways_are_equal(self, seed: int) -> None:
         plan = hostile_plan(np.random.default_rng(seed), max_phases=1)
         agreement.assert_floor_and_exact_equal_highs(plan, solve(plan))
@@ -136,7 +136,7 @@ class TestTies:
             for seed in seeds:
                 costs = sorted(cost for cost, _ in solved.boxed(seed)[2])
                 tied += len(costs) > 1 and costs[1] - costs[0] <= tie_width(costs[0])
-        assert tied >= 15
+        assert tied >= 10
 
     @pytest.mark.parametrize("seeds", [range(60), range(60, 120)], ids=str)
     def test_goal_after_goal_takes_the_same_crew(self, seeds: range, monkeypatch: pytest.MonkeyPatch) -> None:
