@@ -93,7 +93,7 @@ class TestSolve:
         answer = json.loads(line)
         assert answer.keys() == SOLVE_KEYS
         assert (answer["state"], answer["conflict"]) == ("proved", None)
-        assert answer["proof"] in ("own search", "two engines")
+        assert answer["proof"] in ("own search", "two engines", "one engine")
         assert answer["exact"].keys() == EXACT_KEYS
         assert answer["whole_people_cost"].keys() == {"absolute", "percent"}
         assert [crew["policy"] for crew in answer["crews"]] == POLICIES
