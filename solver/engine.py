@@ -139,11 +139,6 @@ class Relaxation:
         """A copy of the rows' dual prices, d objective / d rhs."""
         return _copy(cbclib.Cbc_getRowPrice(self._c), self._height)
 
-    @property
-    def activity(self) -> Floats:
-        """A copy of the rows' left-hand sides."""
-        return _copy(cbclib.Cbc_getRowActivity(self._c), self._height)
-
 
 def _copy(pointer: object, count: int) -> Floats:
     if count == 0:

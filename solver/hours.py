@@ -24,7 +24,6 @@ from solver.plan import ZERO, Category
 from solver.review import Problem
 
 WEEKS = Decimal(52)  # the usual reckoning: 260 working days
-AVERAGE_WEEKS = Fraction(36525, 700)  # 365.25 days: over 28 years exact, gives the 2,087-hour divisor
 
 HOURS_DECIMALS = 4
 ABSENCE_DECIMALS = 6
@@ -170,22 +169,10 @@ def reckon_pay(
     )
 
 
-def hourly_rate(salary: Decimal, hours_a_year: Amount) -> Decimal:
-    """Money per hour, to the cent: the salary over a divisor such as 2,087 hours (5 U.S.C. 5504(b))."""
-    _refuse([*_negatives({"salary": salary}), *_not_positive({"hours_a_year": hours_a_year})])
-    return rounded(Fraction(salary) / Fraction(hours_a_year), MONEY_DECIMALS)
-
-
 def full_time_equivalent(hours_a_week: Decimal, full_time_hours_a_week: Decimal) -> Fraction:
     """What part of a full-time post a contract is: 19 of 38 hours is 1/2."""
     _refuse(_not_positive({"full_time_hours_a_week": full_time_hours_a_week}))
     return Fraction(hours_a_week) / Fraction(full_time_hours_a_week)
-
-
-def people_for(workload: Amount, year: WorkingYear) -> Fraction:
-    """How many people of this contract `workload` attended hours a year are, as a fraction."""
-    _refuse(list(_year_problems(year)))
-    return Fraction(workload) / year.available
 
 
 def with_reckoned(

@@ -65,10 +65,3 @@ def largest_remainder(fractional: Sequence[float], lots: Sequence[Fraction], pha
                 result[i] += 1
                 left -= lots[i]
     return tuple(result)
-
-
-def apportioned(shares: Sequence[float], seats: int) -> tuple[int, ...]:
-    """Hamilton's apportionment of `seats` by `shares`; the arithmetic behind `largest_remainder`."""
-    total = sum(shares)
-    quotas = [share * seats / total for share in shares]
-    return largest_remainder(quotas, [Fraction(1)] * len(quotas), 1)

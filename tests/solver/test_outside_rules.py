@@ -6,15 +6,17 @@ before. computed: by HiGHS or exact arithmetic, not published.
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import replace
 from decimal import Decimal
+from fractions import Fraction
 from typing import ClassVar
 
 import pytest
 
 from solver.answer import State
 from solver.plan import Category, Plan, Ratio, Sense, Share
-from solver.rounding import apportioned
+from solver.rounding import largest_remainder
 from solver.solve import solve
 
 ONE_DAY = Decimal(8)  # paid hours; people are counted here, their hours are not used up
@@ -57,14 +59,19 @@ class TestApportionment:
         "NY": 11,
     }
 
+    def apportioned(self, shares: Sequence[int], seats: int) -> tuple[int, ...]:
+        """Hamilton's apportionment: the quotas are a crew of fractional people, the seats its head count."""
+        quotas = [share * seats / sum(shares) for share in shares]
+        return largest_remainder(quotas, [Fraction(1)] * len(quotas), 1)
+
     def test_hamilton_1790(self) -> None:
-        seats = apportioned(list(self.PEOPLE.values()), 120)
+        seats = self.apportioned(list(self.PEOPLE.values()), 120)
         assert dict(zip(self.PEOPLE, seats, strict=True)) == self.SEATS
 
     # COMAP, For All Practical Purposes, 10th ed., ch. 14, Table 14.5: the smallest Alabama paradox (seen)
     @pytest.mark.parametrize(("seats", "shares"), [(10, (4, 4, 2)), (11, (5, 5, 1))])
     def test_alabama_paradox(self, seats: int, shares: tuple[int, ...]) -> None:
-        assert apportioned((6, 6, 2), seats) == shares
+        assert self.apportioned((6, 6, 2), seats) == shares
 
 
 def fixed(name: str, people: int) -> Category:

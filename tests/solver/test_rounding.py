@@ -10,7 +10,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from solver.answer import Policy
-from solver.rounding import SNAP, apportioned, half_up, largest_remainder, rounded, snapped
+from solver.rounding import SNAP, half_up, largest_remainder, rounded, snapped
 
 ONES = [Fraction(1)] * 9
 
@@ -121,14 +121,3 @@ class TestPolicies:
         for low, near, high, value in zip(down, nearest, up, values, strict=True):
             assert low <= near <= high <= low + 1
             assert abs(near - value) <= 0.5 + 2 * SNAP
-
-    @settings(max_examples=100, deadline=None, derandomize=True)
-    @given(st.lists(st.integers(1, 1000), min_size=1, max_size=8), st.integers(0, 200))
-    def test_apportionment_hands_out_every_seat_and_respects_quotas(
-        self, shares: list[int], seats: int
-    ) -> None:
-        handed = apportioned(shares, seats)
-        assert sum(handed) == seats
-        for got, share in zip(handed, shares, strict=True):
-            quota = Fraction(share * seats, sum(shares))
-            assert quota - 1 < got < quota + 1
