@@ -4,9 +4,9 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from desktop.crew_words import CATEGORY, COST, PHASE, in_unit, listed
+from desktop.crew_words import CATEGORY, COST, CREW, NOT_WORKABLE, PHASE, in_unit, listed
 
-__all__ = ["CATEGORY", "COST", "PHASE", "in_unit", "listed"]
+__all__ = ["CATEGORY", "COST", "CREW", "NOT_WORKABLE", "PHASE", "in_unit", "listed"]
 
 WANTED = "Enough people on"
 OF_DAYS = "of days"
@@ -21,7 +21,6 @@ KEY_CURVE, KEY_NOT_PROVED, KEY_OTHERS = "cheapest crew for a chance", "not prove
 BUDGET, WANTED_MARK = "budget", "wanted"
 
 CREWS = "Crews side by side"
-CREW = "Crew"
 TIP_CREW = "Where the crew comes from, and who is in it"
 COVERS = "Enough\non"
 TIP_COVERS = "Days on which those present cover the day; in the worst phase"
@@ -29,7 +28,6 @@ TIP_COST = "Cost of the crew, where it is workable"
 MORE = "Above exact"
 TIP_MORE = "What it costs above the exact crew"
 WHO = "Who"
-NOT_WORKABLE = "not workable"
 
 LINES = "What is short, and how often"
 LINE = "Line"

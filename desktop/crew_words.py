@@ -8,6 +8,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from solver.answer import LineKind, Policy
+from solver.phrases import listed as listed
 
 COPY_IMAGE = "Copy image"
 COPY_DATA = "Copy data"
@@ -25,6 +26,7 @@ LEGEND_BEST_FOUND_STAYS = "best crew found, on the books"
 LEGEND_JOINS = "joins"
 LEGEND_LEAVES = "leaves"
 NO_CREW = "no crew"
+CREW = "Crew"
 CATEGORY = "Category"
 PHASE = "Phase"
 JOIN = "join"
@@ -71,13 +73,6 @@ def on_the_books(people: str) -> str:
 WATERFALL = "How the line came to be short"
 FRACTIONAL_MARGIN = "Room of the fractional crew"
 ROUNDING = "Rounding"
-
-
-def listed(parts: Sequence[str]) -> str:
-    """`a, b and c`."""
-    if len(parts) < 2:
-        return "".join(parts)
-    return f"{', '.join(parts[:-1])} and {parts[-1]}"
 
 
 def _effect(gives: bool, amount: str) -> str:
@@ -181,8 +176,10 @@ COST = "Cost"
 MORE = "More than exact"
 OVERTIME = "Overtime (hours)"
 BOUGHT_IN = "Bought in"
+TIGHTEST = "Tightest line"
 VERDICT = "Verdict"
 WORKABLE = "workable"
+NOT_WORKABLE = "not workable"
 A_BOUND = "a bound, not a plan"
 TIP_PEOPLE = "Head count; over several phases, of the fullest one"
 TIP_JOINERS = "People taken on, over all phases"

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from desktop import messages
+
 EXPORT = "Export"
 FORMS = {  # what the dialog offers, and the suffix each stands for
     "Workbook: plan, crews, lines, near-best crews (*.xlsx)": ".xlsx",
@@ -12,7 +14,7 @@ FORMS = {  # what the dialog offers, and the suffix each stands for
 STEM = "plan"
 EXPORTED = "Exported as {name}."
 WAITING = "Working out the near-best crews for {name}; it is written when they are there."
-NOT_WRITTEN = "{name} was not written."
+NOT_WRITTEN = messages.NOT_WRITTEN
 NO_PLAN = "The plan has nothing to be answered yet, or entries that must be mended first."
 NO_ANSWER = (
     "There is no answer yet to the plan as it stands. "

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from desktop import messages
+from solver.phrases import counted
 from solver.tablecolumns import What
 
 IMPORT = "Import a table"
@@ -13,7 +15,7 @@ TEMPLATE = "Save a template workbook"
 TEMPLATE_FILES = "Workbooks (*.xlsx)"
 TEMPLATE_NAME = "template.xlsx"
 TEMPLATE_SAVED = "The template is saved as {name}. Its example rows are meant to be written over."
-NOT_WRITTEN = "{name} was not written."
+NOT_WRITTEN = messages.NOT_WRITTEN
 
 SHEET = "Sheet"
 ROWS_ARE = "Its rows are"
@@ -56,11 +58,6 @@ MATCH = "Match the columns..."
 PASTE_AS_IT_IS = "Paste as it stands"
 
 
-def counted(count: int, one: str, several: str) -> str:
-    """`1 row`, `12 rows`."""
-    return f"{count:,} {one if count == 1 else several}"
-
-
 def rows_summary(new: int, changed: int, refused: int) -> str:
     """What becomes of the rows."""
     parts = []
@@ -90,7 +87,7 @@ def leave_out(count: int) -> str:
 
 def imported(what: What, count: int, left_out: int, source: str) -> str:
     """What came in."""
-    said = f"{count:,} {WHAT[what] if count != 1 else _ONE[what]} imported from {source}."
+    said = f"{counted(count, _ONE[what], WHAT[what])} imported from {source}."
     return f"{said} {counted(left_out, 'row was', 'rows were')} left out." if left_out else said
 
 

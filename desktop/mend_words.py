@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from desktop import messages
 from solver.review import quoted
 
 TITLE = "To mend"
@@ -29,9 +30,9 @@ UNDO_STEP = "Repair: {line}"
 
 PROBLEMS = "Entries that make no plan"
 REFUSED = "Entries that were refused and do not count"
-GO_THERE = "Go there"
+GO_THERE = messages.GO_THERE
 GO_TO = "Go to {where}"
-MORE = "and {count} more"
+MORE = messages.AND_MORE
 
 
 def line_in(line: str, phase: str) -> str:

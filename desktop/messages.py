@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from solver.caution import CAUTION as CAUTION
+from solver.phrases import counted
 from solver.review import Problem
 
 # the solver process
@@ -234,6 +235,7 @@ SAVE = "Save"
 DONT_SAVE = "Don't save"
 NOT_OPENED = "{name} was not opened."
 NOT_SAVED = "The plan was not saved."
+NOT_WRITTEN = "{name} was not written."
 OPEN_ELSEWHERE = "{name} is open in another window of this program already."
 OPEN_ELSEWHERE_MORE = "If both save, the later one replaces what the other has saved. A copy has no file yet."
 OPEN_COPY = "Open a copy"
@@ -261,7 +263,7 @@ def saved(name: str, refused: int) -> str:
     """That a plan was saved, and what of it was not."""
     if not refused:
         return SAVED.format(name=name)
-    entries = "1 refused entry is" if refused == 1 else f"{refused} refused entries are"
+    entries = counted(refused, "refused entry is", "refused entries are")
     return f"{SAVED.format(name=name)} {entries} not in the file."
 
 

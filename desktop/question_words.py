@@ -7,24 +7,53 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from desktop.crew_words import CATEGORY, COST, FRACTIONAL, NO_CREW, in_unit, listed
+from desktop import messages
+from desktop.crew_words import (
+    CATEGORY,
+    COST,
+    CREW,
+    FRACTIONAL,
+    JOINERS,
+    LEAVERS,
+    NO_CREW,
+    NOT_WORKABLE,
+    PEOPLE,
+    PHASE,
+    TIGHTEST,
+    TIP_PEOPLE,
+    in_unit,
+    listed,
+)
 
-__all__ = ["CATEGORY", "COST", "FRACTIONAL", "NO_CREW", "in_unit", "listed"]
+__all__ = [
+    "CATEGORY",
+    "COST",
+    "CREW",
+    "FRACTIONAL",
+    "JOINERS",
+    "LEAVERS",
+    "NOT_WORKABLE",
+    "NO_CREW",
+    "PEOPLE",
+    "PHASE",
+    "TIGHTEST",
+    "TIP_PEOPLE",
+    "in_unit",
+    "listed",
+]
 
 PROGRESS = "Progress"
-CANCEL = "Cancel"
+CANCEL = messages.CANCEL
 ASK = "Work it out"
 CANCELLED = "Cancelled."
 NEEDS_CREW = "This needs an exact crew first."
 
 # whole-people cost
 
-CREW = "Crew"
 ABOVE_FLOOR = "above the floor"
 LADDER = "What each crew costs above the floor"
 SAVINGS = "Where the cost of whole people comes from"
 SAVING = "Saving"
-NOT_WORKABLE = "not workable"
 IF_FRACTIONAL = "if part of a person could be had"
 NO_SAVING = "neither way"
 IF_HALF_LOT = "if the lot were half as large"
@@ -80,7 +109,7 @@ PAY_FROM = "Stays cheapest\nfrom"
 PAY_TO = "to"
 TIP_PAY_FROM = "Below this pay another whole crew is cheaper"
 TIP_PAY_TO = "Above this pay another whole crew is cheaper"
-NO_LIMIT = "no limit"
+NO_LIMIT = messages.NO_LIMIT
 CHOOSE_LINE = "Choose a line to read what loosening it would do."
 
 
@@ -99,11 +128,6 @@ CREWS_UNIT = " crews"
 OVER = "Above\nexact"
 TIP_OVER = "What the crew costs above the exact crew"
 TIP_NEAR_COST = "Cost of the crew"
-JOINERS = "Joiners"
-LEAVERS = "Leavers"
-PEOPLE = "People"
-TIP_PEOPLE = "Head count; over several phases, of the fullest one"
-TIGHTEST = "Tightest line"
 TIP_TIGHTEST = "The line with the least room under this crew"
 TAKE_THIS = "Take this one as own"
 TIP_TAKE_THIS = "Copy the chosen crew into your own crew, where it is appraised and can be printed"
@@ -184,7 +208,6 @@ def holds_to_the_end(amount: str) -> str:
 CREW_MAP = "Crew map"
 ACROSS = "Across"
 UPWARDS = "Upwards"
-PHASE = "Phase"
 WORKABLE = "Workable"
 BREAKS = "Breaks"
 YES, NO = "yes", "no"

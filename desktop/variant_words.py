@@ -2,6 +2,12 @@
 
 from __future__ import annotations
 
+from desktop import messages, question_words
+from desktop.crew_words import COST, JOINERS, LEAVERS, PEOPLE, TIGHTEST, TIP_PEOPLE
+from desktop.question_words import PROGRESS
+
+__all__ = ["COST", "JOINERS", "LEAVERS", "PEOPLE", "PROGRESS", "TIGHTEST", "TIP_PEOPLE"]
+
 TITLE = "Variants"
 TOOLTIP = "Several variants of the plan side by side"
 ACTION = "Duplicate as a &variant..."
@@ -14,9 +20,8 @@ LEAVE_OUT_TIP = "Compare the chosen plan no longer; its file stays"
 OPEN = "Open this one"
 OPEN_TIP = "Open the chosen plan in this window"
 CHOOSE = "Plans to compare with"
-WORK_OUT = "Work it out"
-CANCEL = "Cancel"
-PROGRESS = "Progress"
+WORK_OUT = question_words.ASK
+CANCEL = messages.CANCEL
 TABLE = "Variants side by side"
 HOW = (
     "The plan in the window stands first, with what was changed since it was saved. Numbers that differ from "
@@ -27,20 +32,14 @@ ALONE = (
     "plan."
 )
 HERE = "in this window"
-UNSAVED = "Unsaved plan"
+UNSAVED = messages.UNTITLED
 CHANGED = "changed, not saved"
 
 STATE = "State"
-PEOPLE = "People"
-COST = "Cost"
 AGAINST = "Against the first"
 FLOOR = "Floor"
 WHOLE_PEOPLE = "Whole-people cost"
-JOINERS = "Joiners"
-LEAVERS = "Leavers"
-TIGHTEST = "Tightest line"
 TIP_STATE = "Whether the crew is proved cheapest"
-TIP_PEOPLE = "Head count; over several phases, of the fullest one"
 TIP_COST = "Cost of the exact crew"
 TIP_AGAINST = "How much dearer or cheaper than the plan in the window"
 TIP_FLOOR = "Cost of the fractional crew; no whole crew costs less"
@@ -49,7 +48,7 @@ TIP_JOINERS = "People who join, over all phases"
 TIP_LEAVERS = "People who leave, over all phases"
 TIP_TIGHTEST = "The line with the least room under the exact crew"
 
-PROVED = "proved cheapest"
+PROVED = messages.PROVED
 BEST_FOUND = "best found"
 IMPOSSIBLE = "no crew can meet it"
 NO_CREW = "no crew found yet"

@@ -12,6 +12,7 @@ from types import MappingProxyType
 from typing import Any, Final
 
 from solver.exact import ALLOWED_SIZE, typed_number
+from solver.phrases import listed
 from solver.plan import ONE, Plan, Sense
 from solver.review import MOST_ENTRIES, Findings, quoted, review_into, step
 
@@ -148,8 +149,7 @@ def sense(raw: Any, place: str, notes: Notes) -> Sense:
 
 def either(texts: list[str]) -> str:
     """`"a", "b" or "c"`."""
-    listed = [quoted(t) for t in texts]
-    return listed[0] if len(listed) == 1 else ", ".join(listed[:-1]) + " or " + listed[-1]
+    return listed([quoted(t) for t in texts], "or")
 
 
 def _is_too_long(raw: Any, place: str, notes: Notes) -> bool:

@@ -6,6 +6,7 @@ from collections.abc import Mapping
 
 from solver.answer import Attendance, PhaseAttendance, SafeCrew
 from solver.caution import CAUTION
+from solver.phrases import listed
 from solver.plan import Plan
 from solver.report import crew_words, number, table
 
@@ -60,7 +61,7 @@ def _survives(phase: PhaseAttendance) -> str:
 
 
 def _people(people: Mapping[str, float]) -> str:
-    return " and ".join(f"{number(n)} {name}" for name, n in people.items())
+    return listed([f"{number(n)} {name}" for name, n in people.items()])
 
 
 def _wanted(plan: Plan, answer: Attendance) -> str:

@@ -8,6 +8,7 @@ from dataclasses import dataclass, field
 from decimal import Decimal
 
 from solver.exact import ALLOWED_SIZE, decimals, has_allowed_size
+from solver.phrases import counted
 from solver.plan import Budget, Category, Plan, Presence, Ratio, Rule, Sense, Share, Work
 
 MOST_LISTED = 500
@@ -377,8 +378,3 @@ def _own(plan: Plan, scope: Scope, found: Findings) -> None:
     for name, counts in plan.own.items():
         if _known(name, scope.categories, "category", "own", found):
             _one_per_phase(counts, step("own", name), len(plan.phases), found)
-
-
-def counted(number: int, noun: str) -> str:
-    """`1 number`, `2 numbers`."""
-    return f"{number:,} {noun}" if number == 1 else f"{number:,} {noun}s"

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 from desktop.page.recommendation import Labelled
-from desktop.page.speech import Speech, listed
+from desktop.page.speech import Speech
 from desktop.page.text import name
+from solver.phrases import listed
 from solver.plan import Category, Work
 
 

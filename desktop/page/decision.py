@@ -6,9 +6,10 @@ from decimal import Decimal
 
 from desktop.page.chosen import ZERO, Chosen, moves, people_per_phase
 from desktop.page.recommendation import Banner, Words
-from desktop.page.speech import Speech, count_of, listed
+from desktop.page.speech import Speech, count_of
 from desktop.page.text import Run, name
 from solver.answer import Answer, State
+from solver.phrases import listed
 
 _LISTS = (6, 4, 3)  # most categories named in the decision, fullest wording first
 _PHASES_NAMED = 4

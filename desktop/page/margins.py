@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 from desktop.page.chosen import Chosen
-from desktop.page.speech import Speech, listed
+from desktop.page.speech import Speech
 from desktop.page.text import name, sentence
 from solver.answer import LineKind, LineMargin, LineRoom, Room
+from solver.phrases import listed
 from solver.plan import Plan
 
 _NO_ROOM = 5e-4  # below what is printed of any margin

@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 from desktop.page.recommendation import Labelled
-from desktop.page.speech import Speech, count_of, listed
+from desktop.page.speech import Speech, count_of
 from desktop.page.text import name, sentence
 from solver.answer import Answer, Break, CrewReport, LineKind, Policy, State
+from solver.phrases import listed
 from solver.plan import Plan
 
 LABELS = {  # the order in which they are told: the last ones go first where there is no room

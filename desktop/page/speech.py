@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
 from dataclasses import dataclass
 from decimal import Decimal
 
@@ -10,6 +9,7 @@ from PySide6.QtCore import QLocale
 
 from desktop import figures
 from desktop.page.text import name
+from solver.phrases import noun
 from solver.plan import Plan
 
 Number = figures.Number
@@ -75,14 +75,7 @@ class Speech:
 
 def count_of(count: int, one: str, many: str = "") -> str:
     """1 line, 3 lines."""
-    return f"{count} {one}" if count == 1 else f"{count} {many or one + 's'}"
-
-
-def listed(parts: Sequence[str], last: str = "and") -> str:
-    """a, b and c."""
-    if len(parts) < 2:
-        return "".join(parts)
-    return f"{', '.join(parts[:-1])} {last} {parts[-1]}"
+    return f"{count} {noun(count, one, many)}"
 
 
 def exact_decimal(x: Number) -> Decimal:
