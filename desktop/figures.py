@@ -14,7 +14,7 @@ Number = float | int | Decimal
 
 NIL = "–"
 NBSP = "\u00a0"
-_MINUS = "\u2212"
+MINUS = "\u2212"
 _DIGITS_THAT_MATTER = 3
 _NOTHING = Decimal("5e-7")  # below the snap of the rounding policies: solver noise, not people
 
@@ -54,7 +54,7 @@ def number(x: Number, places: int | None = None, locale: QLocale | None = None) 
     if rounded == 0:  # too small for these places, but not nothing: its first digit
         shown = -exact.adjusted()
         rounded = _rounded(exact, shown)
-    return (_MINUS if rounded < 0 else "") + _plain(rounded, shown, locale)
+    return (MINUS if rounded < 0 else "") + _plain(rounded, shown, locale)
 
 
 def people(x: Number, locale: QLocale | None = None) -> str:
@@ -65,7 +65,7 @@ def people(x: Number, locale: QLocale | None = None) -> str:
 def change(x: Number, locale: QLocale | None = None) -> str:
     """A change of head count, hours or units with its sign: +2, −0.5; a dash for none."""
     text = number(x, 2 if abs(_decimal(x)) < 100 else 0, locale)
-    return text if text == NIL or text.startswith(_MINUS) else "+" + text
+    return text if text == NIL or text.startswith(MINUS) else "+" + text
 
 
 def quantity(x: Number, unit: str = "", locale: QLocale | None = None) -> str:
@@ -80,7 +80,7 @@ def quantity(x: Number, unit: str = "", locale: QLocale | None = None) -> str:
 def signed(x: Number, unit: str = "", locale: QLocale | None = None) -> str:
     """As `quantity` with + before what is positive: margins and moves."""
     text = quantity(x, unit, locale)
-    return text if text == NIL or text.startswith(_MINUS) else "+" + text
+    return text if text == NIL or text.startswith(MINUS) else "+" + text
 
 
 def money(x: Number, currency: str = "", locale: QLocale | None = None) -> str:
@@ -91,7 +91,7 @@ def money(x: Number, currency: str = "", locale: QLocale | None = None) -> str:
     chosen = locale or QLocale()
     whole = cents == cents.to_integral_value()
     text = _plain(cents, 0, chosen) if whole else _with_cents(cents, chosen)
-    sign = _MINUS if cents < 0 else ""
+    sign = MINUS if cents < 0 else ""
     return f"{currency}{NBSP}{sign}{text}" if currency else sign + text
 
 

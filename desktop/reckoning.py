@@ -100,7 +100,7 @@ def _year_steps(year: WorkingYear) -> Iterator[Step]:
     if len(taken) > 1:
         sums = " + ".join(_number(year.hours_away(away)) for away in taken)
         yield Step(say.AWAY_A_YEAR, f"{sums}{figures.NBSP}h", lost)
-    yield Step(say.ATTENDED_A_YEAR, f"{gross} {_MINUS} {lost}", _hours(year.available))
+    yield Step(say.ATTENDED_A_YEAR, f"{gross} {figures.MINUS} {lost}", _hours(year.available))
     yield Step(say.ABSENCE, f"{lost} ÷ {gross}", _percent(year.absence), taken=True)
 
 
@@ -117,7 +117,9 @@ def _period_steps(entries: Entries, period: str, hours: ReckonedHours) -> Iterat
     paid, attended = _hours(hours.hours), _hours(hours.attended)
     week = _hours(entries.year.hours_a_week)
     yield Step(say.paid_per(period), week if weeks == 1 else f"{week} × {_number(weeks)}", paid, taken=True)
-    yield Step(say.attended_per(period), f"{paid} × (1 {_MINUS} {_percent(entries.year.absence)})", attended)
+    yield Step(
+        say.attended_per(period), f"{paid} × (1 {figures.MINUS} {_percent(entries.year.absence)})", attended
+    )
 
 
 def _post(entries: Entries, part: Fraction) -> Step:
@@ -147,9 +149,6 @@ def _pay_steps(entries: Entries, period: str, currency: str, pay: ReckonedPay) -
 def _weeks(entries: Entries, period: str) -> Fraction:
     known = weeks_in(period, entries.year)
     return known if known is not None else Fraction(entries.period_weeks or 1)
-
-
-_MINUS = "\u2212"
 
 
 def _number(x: Decimal | Fraction) -> str:

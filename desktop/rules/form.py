@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from PySide6.QtCore import Qt, Signal
-from PySide6.QtWidgets import QFormLayout, QLabel, QLineEdit, QWidget
+from PySide6.QtWidgets import QCheckBox, QFormLayout, QLabel, QLineEdit, QWidget
 
 from desktop import messages, theme
 from desktop.rules.form_parts import PhaseList
@@ -42,6 +42,14 @@ class RuleForm(QWidget):
         shown.setTextFormat(Qt.TextFormat.PlainText)
         shown.setBuddy(field)
         self._layout.addRow(shown, field)
+
+    def day_box(self, chosen: bool) -> QCheckBox:
+        """The tick that asks the rule of those present on each working day too."""
+        box = QCheckBox(messages.BY_DAY)
+        box.setChecked(chosen)
+        box.toggled.connect(self.changed)
+        self.add("", box)
+        return box
 
     def phase_list(self, chosen: tuple[str, ...] | None) -> PhaseList:
         """The list of phases, shown where there is more than one."""

@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from PySide6.QtWidgets import QCheckBox
-
 from desktop import messages
 from desktop.edits.rules import new_ratio
 from desktop.rules import words
@@ -21,16 +19,13 @@ class RatioForm(RuleForm):
         self._at_most = NumberField(messages.AT_MOST, rule.at_most)
         self._of = TickList(messages.RATIO_OF, self.category_names, rule.of)
         self._per = TickList(messages.RATIO_PER, self.category_names, rule.per)
-        self._by_day = QCheckBox(messages.BY_DAY)
-        self._by_day.setChecked(rule.by_day)
         self.add(messages.AT_MOST, self._at_most)
         self.add(messages.RATIO_OF, self._of)
         self.add(messages.RATIO_PER, self._per)
-        self.add("", self._by_day)
+        self._by_day = self.day_box(rule.by_day)
         self._phases = self.phase_list(rule.phases)
         for part in (self._at_most, self._of, self._per, self._phases):
             part.changed.connect(self.changed)
-        self._by_day.toggled.connect(self.changed)
 
     def rule(self) -> Ratio:
         """The rule as typed."""

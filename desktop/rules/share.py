@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from PySide6.QtWidgets import QCheckBox
-
 from desktop import messages
 from desktop.edits.rules import new_share
 from desktop.rules import words
@@ -22,17 +20,14 @@ class ShareForm(RuleForm):
         self._fraction = NumberField(messages.SHARE_PERCENT, rule.fraction, per_cent=True)
         self._within = TickList(messages.SHARE_WITHIN, self.category_names, rule.within)
         self._of = TickList(messages.SHARE_OF, self.category_names, rule.of)
-        self._by_day = QCheckBox(messages.BY_DAY)
-        self._by_day.setChecked(rule.by_day)
         self.add(messages.SENSE, self._sense)
         self.add(messages.SHARE_PERCENT, self._fraction)
         self.add(messages.SHARE_WITHIN, self._within)
         self.add(messages.SHARE_OF, self._of)
-        self.add("", self._by_day)
+        self._by_day = self.day_box(rule.by_day)
         self._phases = self.phase_list(rule.phases)
         for part in (self._sense, self._fraction, self._within, self._of, self._phases):
             part.changed.connect(self.changed)
-        self._by_day.toggled.connect(self.changed)
 
     def rule(self) -> Share:
         """The rule as typed."""

@@ -10,7 +10,7 @@ from collections.abc import Callable
 from decimal import Decimal
 from typing import Any
 
-from PySide6.QtCore import QAbstractTableModel, QModelIndex, QObject, QPersistentModelIndex, Qt, Signal
+from PySide6.QtCore import QObject, Qt, Signal
 
 from desktop import crew_words as say
 from desktop.document import Document
@@ -18,15 +18,13 @@ from desktop.pictures.copyable import plain_tip
 from desktop.tables.crew_rows import CrewColumn, CrewRow, RowKind, count_rows, crew_columns, total_rows
 from desktop.tables.numbers import Refused
 from desktop.tables.own_crew import own_count, own_started, with_own
+from desktop.tables.shown_model import Index, ShownModel, side
 from desktop.theme import Size, current
 from solver.answer import Answer, Policy
 from solver.plan import Plan
 
-Index = QModelIndex | QPersistentModelIndex
-_NOWHERE = QModelIndex()
 
-
-class CrewTable(QAbstractTableModel):
+class CrewTable(ShownModel[CrewRow, CrewColumn]):
     """The table of all crews for a view.
 
     `told(text)` says why an entry was refused; it is empty when one was taken.
@@ -35,23 +33,11 @@ class CrewTable(QAbstractTableModel):
     told = Signal(str)
 
     def __init__(self, document: Document, parent: QObject | None = None) -> None:
-        super().__init__(parent)
+        super().__init__((), parent)
         self._document = document
         self._answer: Answer | None = None
-        self._columns: tuple[CrewColumn, ...] = ()
-        self._rows: tuple[CrewRow, ...] = ()
         self._counted: tuple[Plan, list[CrewRow]] | None = None
         self._refused: dict[tuple[str, int], tuple[str, str]] = {}
-
-    @property
-    def columns(self) -> tuple[CrewColumn, ...]:
-        """What the columns show."""
-        return self._columns
-
-    @property
-    def rows(self) -> tuple[CrewRow, ...]:
-        """What the rows show."""
-        return self._rows
 
     def show(self, answer: Answer | None) -> None:
         """Show the crews of `answer` and the own crew of the document."""
@@ -79,10 +65,6 @@ class CrewTable(QAbstractTableModel):
         if self._counted is None or self._counted[0] is not plan:
             self._counted = (plan, count_rows(plan))
         return self._counted[1]
-
-    def own_column(self) -> int:
-        """Number of the column to type in, -1 before anything is shown."""
-        return next((j for j, c in enumerate(self._columns) if c.own), -1)
 
     def start_from_exact(self) -> None:
         """Make the exact crew the own crew."""
@@ -136,14 +118,6 @@ class CrewTable(QAbstractTableModel):
         typed = self._columns[index.column()].own and self._rows[index.row()].kind is RowKind.COUNT
         return theme.cell if typed else theme.paper
 
-    def rowCount(self, parent: Index = _NOWHERE) -> int:
-        """Number of rows."""
-        return 0 if parent.isValid() else len(self._rows)
-
-    def columnCount(self, parent: Index = _NOWHERE) -> int:
-        """Number of columns."""
-        return 0 if parent.isValid() else len(self._columns)
-
     def flags(self, index: Index) -> Qt.ItemFlag:
         """What can be done with a cell."""
         if not index.isValid():
@@ -154,7 +128,7 @@ class CrewTable(QAbstractTableModel):
 
     def data(self, index: Index, role: int = Qt.ItemDataRole.DisplayRole) -> Any:
         """What Qt asks of a cell."""
-        if not index.isValid() or index.row() >= len(self._rows) or index.column() >= len(self._columns):
+        if not self.has(index):
             return None
         answer = _ROLES.get(Qt.ItemDataRole(role)) if role < Qt.ItemDataRole.UserRole else None
         return answer(self, index) if answer else None
@@ -199,9 +173,7 @@ class CrewTable(QAbstractTableModel):
         if role == Qt.ItemDataRole.ToolTipRole:
             return plain_tip(entry.tip)
         if role == Qt.ItemDataRole.TextAlignmentRole:
-            return Qt.AlignmentFlag.AlignVCenter | (
-                Qt.AlignmentFlag.AlignRight if across else Qt.AlignmentFlag.AlignLeft
-            )
+            return side(left=not across)
         return None
 
 
@@ -222,7 +194,5 @@ _ROLES: dict[Qt.ItemDataRole, Callable[[CrewTable, Index], Any]] = {
     Qt.ItemDataRole.ForegroundRole: CrewTable._colour,
     Qt.ItemDataRole.BackgroundRole: CrewTable._ground,
     Qt.ItemDataRole.FontRole: _font,
-    Qt.ItemDataRole.TextAlignmentRole: lambda _m, _i: (
-        Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
-    ),
+    Qt.ItemDataRole.TextAlignmentRole: lambda _m, _i: side(left=False),
 }

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable
 from typing import Any
 
-from PySide6.QtCore import QAbstractTableModel, QModelIndex, QPersistentModelIndex, QRectF, Qt
+from PySide6.QtCore import QModelIndex, QRectF, Qt
 from PySide6.QtGui import QPainter, QPen
 from PySide6.QtWidgets import QStyle, QStyledItemDelegate, QStyleOptionViewItem
 
@@ -16,32 +16,18 @@ from desktop.pictures.copyable import plain_tip
 from desktop.pictures.margin_bars import is_broken, paint_absent, paint_margin
 from desktop.tables.crew_rows import crew_heading
 from desktop.tables.margin_rows import MarginRow, margin_columns, margin_rows
+from desktop.tables.shown_model import Index, ShownModel, side
 from desktop.theme import Size, current
 from solver.answer import Answer, CrewReport
 from solver.plan import Plan
 
-Index = QModelIndex | QPersistentModelIndex
-_NOWHERE = QModelIndex()
 
-
-class MarginTable(QAbstractTableModel):
-    """The grid of margins for a view."""
+class MarginTable(ShownModel[MarginRow, CrewReport]):
+    """The grid of margins for a view: crews across, lines and totals down."""
 
     def __init__(self, parent: Any = None) -> None:
-        super().__init__(parent)
-        self._columns: tuple[CrewReport, ...] = ()
-        self._rows: tuple[MarginRow, ...] = ()
+        super().__init__((), parent)
         self._headings: tuple[tuple[str, str], ...] = ()
-
-    @property
-    def columns(self) -> tuple[CrewReport, ...]:
-        """The crews."""
-        return self._columns
-
-    @property
-    def rows(self) -> tuple[MarginRow, ...]:
-        """The lines and totals."""
-        return self._rows
 
     def show(self, plan: Plan, answer: Answer) -> None:
         """Show the margins of every crew of `answer`."""
@@ -92,17 +78,9 @@ class MarginTable(QAbstractTableModel):
         margin = self.margin(index)
         return figures.signed(margin) if margin is not None else row.texts.get(report.policy, "")
 
-    def rowCount(self, parent: Index = _NOWHERE) -> int:
-        """Number of lines and totals."""
-        return 0 if parent.isValid() else len(self._rows)
-
-    def columnCount(self, parent: Index = _NOWHERE) -> int:
-        """Number of crews."""
-        return 0 if parent.isValid() else len(self._columns)
-
     def data(self, index: Index, role: int = Qt.ItemDataRole.DisplayRole) -> Any:
         """What Qt asks of a cell."""
-        if not index.isValid() or index.row() >= len(self._rows) or index.column() >= len(self._columns):
+        if not self.has(index):
             return None
         answer = _ROLES.get(role)
         return answer(self, index) if answer else None
@@ -115,8 +93,7 @@ class MarginTable(QAbstractTableModel):
         if not 0 <= section < (len(self._columns) if across else len(self._rows)):
             return None
         if role == Qt.ItemDataRole.TextAlignmentRole:
-            side = Qt.AlignmentFlag.AlignRight if across else Qt.AlignmentFlag.AlignLeft
-            return side | Qt.AlignmentFlag.AlignVCenter
+            return side(left=not across)
         if across:
             title, means = self._headings[section]
             tip = "\n".join(part for part in (means, self._columns[section].why_none) if part)
@@ -137,9 +114,7 @@ _ROLES: dict[int, Callable[[MarginTable, Index], Any]] = {
     Qt.ItemDataRole.DisplayRole: MarginTable._text,
     Qt.ItemDataRole.ToolTipRole: lambda m, i: plain_tip(m.words(i)),
     Qt.ItemDataRole.AccessibleTextRole: MarginTable.words,
-    Qt.ItemDataRole.TextAlignmentRole: lambda _m, _i: (
-        Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
-    ),
+    Qt.ItemDataRole.TextAlignmentRole: lambda _m, _i: side(left=False),
 }
 
 

@@ -6,13 +6,13 @@ from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from typing import Any, Generic, TypeVar
 
-from PySide6.QtCore import QAbstractTableModel, QModelIndex, QPersistentModelIndex, Qt
+from PySide6.QtCore import Qt
 
 from desktop.pictures.copyable import plain_tip
+from desktop.tables.shown_model import Index as Index
+from desktop.tables.shown_model import ShownModel, side
 from desktop.theme import current
 
-Index = QModelIndex | QPersistentModelIndex
-_NOWHERE = QModelIndex()
 R = TypeVar("R")
 
 
@@ -28,7 +28,7 @@ class ShownColumn(Generic[R]):
     bold: bool = False
 
 
-class ShownTable(QAbstractTableModel, Generic[R]):
+class ShownTable(ShownModel[R, ShownColumn[R]]):
     """Rows under `columns`; `title(row, at)` names a row at its left."""
 
     def __init__(
@@ -37,20 +37,8 @@ class ShownTable(QAbstractTableModel, Generic[R]):
         title: Callable[[R, int], str] = lambda _row, at: str(at + 1),
         parent: Any = None,
     ) -> None:
-        super().__init__(parent)
-        self._columns = tuple(columns)
+        super().__init__(columns, parent)
         self._title = title
-        self._rows: tuple[R, ...] = ()
-
-    @property
-    def rows(self) -> tuple[R, ...]:
-        """What is shown."""
-        return self._rows
-
-    @property
-    def columns(self) -> tuple[ShownColumn[R], ...]:
-        """How it is shown."""
-        return self._columns
 
     def show(self, rows: Sequence[R], columns: Sequence[ShownColumn[R]] | None = None) -> None:
         """Show other rows, perhaps under other columns."""
@@ -65,17 +53,9 @@ class ShownTable(QAbstractTableModel, Generic[R]):
         row, column = self._rows[index.row()], self._columns[index.column()]
         return f"{self._title(row, index.row())}, {column.title}: {column.text(row)}".replace("\n", " ")
 
-    def rowCount(self, parent: Index = _NOWHERE) -> int:
-        """Number of rows."""
-        return 0 if parent.isValid() else len(self._rows)
-
-    def columnCount(self, parent: Index = _NOWHERE) -> int:
-        """Number of columns."""
-        return 0 if parent.isValid() else len(self._columns)
-
     def data(self, index: Index, role: int = Qt.ItemDataRole.DisplayRole) -> Any:
         """What Qt asks of a cell."""
-        if not index.isValid() or index.row() >= len(self._rows) or index.column() >= len(self._columns):
+        if not self.has(index):
             return None
         row, column = self._rows[index.row()], self._columns[index.column()]
         if role == Qt.ItemDataRole.DisplayRole:
@@ -88,7 +68,7 @@ class ShownTable(QAbstractTableModel, Generic[R]):
             return getattr(current(), column.tone)
         if role == Qt.ItemDataRole.FontRole:
             return current().font(bold=column.bold)
-        return _side(column.left) if role == Qt.ItemDataRole.TextAlignmentRole else None
+        return side(left=column.left) if role == Qt.ItemDataRole.TextAlignmentRole else None
 
     def headerData(
         self, section: int, orientation: Qt.Orientation, role: int = Qt.ItemDataRole.DisplayRole
@@ -98,7 +78,7 @@ class ShownTable(QAbstractTableModel, Generic[R]):
         if not 0 <= section < (len(self._columns) if across else len(self._rows)):
             return None
         if role == Qt.ItemDataRole.TextAlignmentRole:
-            return _side(not across or self._columns[section].left)
+            return side(left=not across or self._columns[section].left)
         if role not in (Qt.ItemDataRole.DisplayRole, Qt.ItemDataRole.ToolTipRole):
             return None
         if not across:
@@ -106,8 +86,3 @@ class ShownTable(QAbstractTableModel, Generic[R]):
             return text if role == Qt.ItemDataRole.DisplayRole else plain_tip(text)
         column = self._columns[section]
         return column.title if role == Qt.ItemDataRole.DisplayRole else plain_tip(column.tip)
-
-
-def _side(left: bool) -> Qt.AlignmentFlag:
-    side = Qt.AlignmentFlag.AlignLeft if left else Qt.AlignmentFlag.AlignRight
-    return side | Qt.AlignmentFlag.AlignVCenter
