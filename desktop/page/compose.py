@@ -172,7 +172,7 @@ def _method(answer: Answer, *, own: bool) -> str:
     if answer.proof is not None:
         crew = f"the exact crew is the integer optimum, proved {_PROOFS[answer.proof]}"
     floor = "The floor is the optimum of the linear relaxation"
-    return f"{floor}; {crew}; every line was checked again in exact arithmetic."
+    return f"{floor}; {crew}; every line was checked again exactly, hours to one second of work."
 
 
 def _proof(answer: Answer) -> str:

@@ -95,6 +95,7 @@ def test_the_origin_of_the_page_is_on_it(qapp, hillside):
     assert "hill.crew.json" in words
     assert content_hash(hillside[0]) in words
     assert "proved (own search)" in words
+    assert "every line was checked again exactly, hours to one second of work" in words
     assert "6 May 2031, 07:08" in words
 
 
