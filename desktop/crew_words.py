@@ -274,11 +274,6 @@ NOTICE_BEST_FOUND = "The best crew found; it is not proved that there is no chea
 NOTICE_STALE = "Out of date: this belongs to the plan before the last change."
 
 
-def no_room(line: str) -> str:
-    """A line that binds."""
-    return line
-
-
 def no_room_saving(line: str, loosen: str, saving: str) -> str:
     """A line that binds, with what loosening it would save."""
     return f"{line}: {loosen} looser would save {saving}"

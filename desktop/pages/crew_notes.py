@@ -33,7 +33,7 @@ def _saving(room: LineRoom | None) -> float:
 def _binding(plan: Plan, line: LineMargin, room: LineRoom | None) -> str:
     name = say.in_phase(line.line, line.phase) if line.phase and len(plan.phases) > 1 else line.line
     if room is None or room.loosen is None or not room.saving:
-        return say.no_room(name)
+        return name
     amount = figures.quantity(room.loosen, room.unit)
     return say.no_room_saving(name, amount, figures.money(room.saving, plan.currency))
 
