@@ -13,7 +13,11 @@ from PySide6.QtWidgets import QApplication
 from shiboken6 import isValid
 
 from desktop import theme
+from desktop.answers import Answers
+from desktop.document import Document
 from desktop.fonts import load_fonts
+from desktop.look import Look
+from desktop.window import Window
 from desktop.workers import Workers
 
 FAKE_WORKER = Path(__file__).with_name("fake_worker.py")
@@ -96,3 +100,42 @@ def workers(qapp, fake_command):
     made = Workers(fake_command())
     yield made
     made.close()
+
+
+@pytest.fixture
+def open_window(qtbot, qapp):
+    """Opens a window over a document; all are closed without questions at the end."""
+    opened = []
+
+    def open_window(document=None, workers=None, look=None):
+        window = Window(document or Document(), workers or Workers(), look or Look(qapp))
+        opened.append(window)
+        window.resize(1366, 768)
+        with qtbot.waitActive(window):
+            window.show()
+            window.activateWindow()
+        return window
+
+    yield open_window
+    for window in opened:
+        window.document.undo_stack.setClean()
+        window.close()
+        window.deleteLater()
+
+
+@pytest.fixture
+def show_page(qtbot):
+    """Shows a page of the window alone, at the size it has there, over a plan and perhaps its answer."""
+
+    def show_page(kind, plan, answer=None, heard=Answers):
+        document = Document(plan)
+        answers = heard(document)
+        page = kind(document, answers)
+        qtbot.addWidget(page)
+        if answer is not None:
+            answers.receive(plan, answer)
+        page.resize(1186, 640)
+        page.show()
+        return page, document, answers
+
+    return show_page

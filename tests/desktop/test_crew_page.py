@@ -1,12 +1,11 @@
 from decimal import Decimal
+from functools import partial
 
 import pytest
 from PySide6.QtCore import Qt
 from PySide6.QtGui import QGuiApplication
 from PySide6.QtWidgets import QLineEdit
 
-from desktop.answers import Answers
-from desktop.document import Document
 from desktop.messages import CAUTION
 from desktop.pages.crew_page import CrewPage
 from solver.answer import LineKind, LineRoom, Policy, Room
@@ -16,19 +15,8 @@ D = Decimal
 
 
 @pytest.fixture
-def make(qtbot):
-    def make(plan, answer=None):
-        document = Document(plan)
-        answers = Answers(document)
-        page = CrewPage(document, answers)
-        qtbot.addWidget(page)
-        if answer is not None:
-            answers.receive(plan, answer)
-        page.resize(1186, 640)
-        page.show()
-        return page, document, answers
-
-    return make
+def make(show_page):
+    return partial(show_page, CrewPage)
 
 
 @pytest.fixture

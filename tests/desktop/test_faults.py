@@ -17,10 +17,8 @@ from desktop import workers as workers_module
 from desktop.answers import Answers, Status
 from desktop.claim import Claim
 from desktop.document import Document
-from desktop.look import Look
 from desktop.rail import OUTPUT
 from desktop.recovery import Recovery
-from desktop.window import Window
 from solver.plan import Category, Plan, Work
 from solver.planfile import CannotSave, read_plan
 
@@ -42,13 +40,8 @@ def document(qapp, tmp_path):
 
 
 @pytest.fixture
-def window(document, qapp, workers, qtbot):
-    made = Window(document, workers, Look(qapp))
-    made.show()
-    yield made
-    document.undo_stack.setClean()
-    made.close()
-    made.deleteLater()
+def window(document, workers, open_window):
+    return open_window(document, workers)
 
 
 def failing(code):

@@ -14,12 +14,9 @@ from desktop.answers import Answers, Status
 from desktop.conflict_watch import ConflictWatch
 from desktop.document import Document, Refusal
 from desktop.headline_words import Action
-from desktop.look import Look
 from desktop.messages import CAUTION
 from desktop.pages.mend_page import MendPage
 from desktop.rail import MEND, PAGES
-from desktop.window import Window
-from desktop.workers import Workers
 from solver.answer import Conflict, Conflicting, LineKind, State
 from solver.plan import Phase, Sense
 from solver.planfile import read_plan
@@ -57,18 +54,9 @@ def impossible(whole_people=True):
 
 
 @pytest.fixture
-def make(qtbot):
+def make(show_page):
     def make(plan=None, answer=None):
-        plan = plan or samples.hillside_plan()
-        document = Document(plan)
-        answers = Answers(document)
-        page = MendPage(document, answers)
-        qtbot.addWidget(page)
-        if answer is not None:
-            answers.receive(plan, answer)
-        page.resize(1186, 640)
-        page.show()
-        return page, document, answers
+        return show_page(MendPage, plan or samples.hillside_plan(), answer)
 
     return make
 
@@ -229,17 +217,9 @@ def test_it_is_told_again_only_after_a_crew_was_possible(watched, qtbot):
 
 
 @pytest.fixture
-def window(qtbot, qapp, monkeypatch):
+def window(open_window, monkeypatch):
     monkeypatch.setattr(conflict_watch, "PAUSE", 60)
-    made = Window(Document(), Workers(), Look(qapp))
-    made.resize(1366, 768)
-    with qtbot.waitActive(made):
-        made.show()
-        made.activateWindow()
-    yield made
-    made.document.undo_stack.setClean()
-    made.close()
-    made.deleteLater()
+    return open_window()
 
 
 def in_rail(window):

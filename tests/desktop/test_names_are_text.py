@@ -20,11 +20,8 @@ import resources
 from desktop.answers import Status
 from desktop.dialogs.question import Choice, tell
 from desktop.document import Document
-from desktop.look import Look
 from desktop.page import write_page
 from desktop.rail import PAGES
-from desktop.window import Window
-from desktop.workers import Workers
 from solver.plan import Plan
 from solver.planfile import dump_plan, parse_plan, read_plan, save_plan
 
@@ -102,14 +99,8 @@ def header(model: QAbstractItemModel, section: int, way: Qt.Orientation) -> str:
 
 
 @pytest.fixture
-def window(qtbot, qapp):
-    window = Window(Document(named_in_html()), Workers(), Look(qapp))
-    window.resize(1366, 768)
-    window.show()
-    yield window
-    window.document.undo_stack.setClean()
-    window.close()
-    window.deleteLater()
+def window(open_window):
+    return open_window(Document(named_in_html()))
 
 
 def test_names_are_text_on_every_page(window, qtbot):

@@ -5,7 +5,6 @@ import pytest
 from PySide6.QtCore import Qt
 
 from desktop.answers import Answers
-from desktop.document import Document
 from desktop.messages import CAUTION
 from desktop.pages.cost_page import CostPage
 from desktop.pages.near_page import NearPage
@@ -50,17 +49,10 @@ class Told(Answers):
 
 
 @pytest.fixture
-def make(qtbot):
+def make(show_page):
     def make(kind, plan=None, answer=None):
         plan = plan or samples.hillside_plan()
-        document = Document(plan)
-        answers = Told(document)
-        page = kind(document, answers)
-        qtbot.addWidget(page)
-        answers.receive(plan, answer or samples.hillside_answer())
-        page.resize(1186, 640)
-        page.show()
-        return page, document, answers
+        return show_page(kind, plan, answer or samples.hillside_answer(), Told)
 
     return make
 

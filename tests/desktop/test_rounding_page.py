@@ -1,10 +1,9 @@
 from decimal import Decimal
+from functools import partial
 
 import pytest
 from PySide6.QtCore import Qt
 
-from desktop.answers import Answers
-from desktop.document import Document
 from desktop.messages import CAUTION
 from desktop.pages.rounding_page import RoundingPage
 from desktop.pictures.waterfall_bars import waterfall_sentence
@@ -14,18 +13,8 @@ from tests.desktop import samples
 
 
 @pytest.fixture
-def make(qtbot):
-    def make(plan, answer):
-        document = Document(plan)
-        answers = Answers(document)
-        page = RoundingPage(document, answers)
-        qtbot.addWidget(page)
-        answers.receive(plan, answer)
-        page.resize(1186, 640)
-        page.show()
-        return page, answers
-
-    return make
+def make(show_page):
+    return partial(show_page, RoundingPage)
 
 
 @pytest.fixture
@@ -84,7 +73,7 @@ def test_why_there_is_no_crew(hillside):
 
 
 def test_the_chosen_cell_stays_chosen_with_the_next_answer(make, qtbot):
-    page, answers = make(samples.hillside_plan(), samples.hillside_answer())
+    page, _, answers = make(samples.hillside_plan(), samples.hillside_answer())
     page.view.setFocus()
     page.view.setCurrentIndex(cell(page, "Fencing (m)", Policy.DOWN))
     answers.receive(samples.hillside_plan(), samples.hillside_answer(samples.crew(3, 9, 6, 8, 1)))
@@ -93,7 +82,7 @@ def test_the_chosen_cell_stays_chosen_with_the_next_answer(make, qtbot):
 
 
 def test_rounding_over_time(make):
-    page, _ = make(samples.museum_plan(), samples.museum_answer())
+    page, _, _ = make(samples.museum_plan(), samples.museum_answer())
     broken = cell(page, "Phases that break", Policy.NEAREST)
     assert broken.data() == "2 of 3"
     page.view.setCurrentIndex(broken)
@@ -126,5 +115,5 @@ def test_the_caution_stands_at_the_foot(hillside):
 
 
 def test_an_impossible_plan_has_no_margins(make):
-    page, _ = make(samples.hillside_plan(), samples.impossible_answer())
+    page, _, _ = make(samples.hillside_plan(), samples.impossible_answer())
     assert page.waterfall.miss is None

@@ -16,11 +16,8 @@ from desktop.answers import Answers, Status
 from desktop.comparison import Comparison, Stage
 from desktop.dialogs.variant_dialog import VariantDialog
 from desktop.document import Document
-from desktop.look import Look
 from desktop.pages.variants_page import VariantsPage
 from desktop.tables.variant_table import VariantTable
-from desktop.window import Window
-from desktop.workers import Workers
 from solver.plan import Category, Plan, Work
 from solver.planfile import read_plan, save_plan
 
@@ -43,26 +40,16 @@ def folder(tmp_path):
 
 
 @pytest.fixture
-def make(qtbot, qapp, workers):
+def make(open_window, workers):
     """A window over a plan file, with the fake solver process."""
-    kept = []
 
     def make(path):
-        window = Window(Document(), workers, Look(qapp))
-        kept.append(window)
-        window.resize(1366, 768)
-        with qtbot.waitActive(window):
-            window.show()
-            window.activateWindow()
+        window = open_window(workers=workers)
         if path is not None:
             assert window.files.open(path)
         return window
 
-    yield make
-    for window in kept:
-        window.document.undo_stack.setClean()
-        window.close()
-        window.deleteLater()
+    return make
 
 
 def done(page):
@@ -397,14 +384,13 @@ def test_the_dialog_tells_why_a_name_will_not_do(folder, qtbot):
 # with the real solver
 
 
-def test_variants_of_the_example_are_worked_out(tmp_path, qtbot, qapp):
+def test_variants_of_the_example_are_worked_out(tmp_path, qtbot, open_window):
     source = next(p for p in resources.example_paths() if p.name.startswith("hillside"))
     hill = read_plan(source)
     fewer = replace(hill.works[0], amounts=(hill.works[0].amounts[0] * 9 / 10,))
     save_plan(hill, tmp_path / "Hill.crew.json")
     save_plan(replace(hill, works=(fewer, *hill.works[1:])), tmp_path / "Hill - fewer.crew.json")
-    window = Window(Document(), Workers(), Look(qapp))
-    window.show()
+    window = open_window()
     window.files.open(tmp_path / "Hill.crew.json")
     page = window.page(say.TITLE)
 
@@ -415,6 +401,3 @@ def test_variants_of_the_example_are_worked_out(tmp_path, qtbot, qapp):
     qtbot.waitUntil(compared, timeout=30000)
     assert cells(page, "State") == ["✓ proved cheapest"] * 2
     assert cells(page, "Against the first")[1].startswith("−")
-    window.document.undo_stack.setClean()
-    window.close()
-    window.deleteLater()

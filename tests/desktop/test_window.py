@@ -15,8 +15,6 @@ from desktop.answers import Status
 from desktop.document import Document
 from desktop.look import Look, Palette
 from desktop.rail import PAGES
-from desktop.window import Window
-from desktop.workers import Workers
 from solver.answer import Policy
 from solver.plan import Category, Plan, Work
 from solver.planfile import read_plan, save_plan
@@ -30,27 +28,21 @@ PLAN = Plan(
 
 
 @pytest.fixture
-def made(qtbot, qapp):
-    """A window over a plan; closed without questions at the end."""
-    kept = []
-
-    def make(plan=PLAN, workers=None, look=None):
-        document = Document(plan)
-        window = Window(document, workers or Workers(), look or Look(qapp))
-        kept.append(window)
-        window.resize(1366, 768)
-        with qtbot.waitActive(window):
-            window.show()
-            window.activateWindow()
-        return window
-
-    yield make
-    for window in kept:
-        window.document.undo_stack.setClean()
-        window.close()
-        window.deleteLater()
+def usual_look(qapp):
+    """The look is the usual one again at the end."""
+    yield
     Look(qapp).choose(Palette.LIGHT)
     Look(qapp).zoom_to(1.0)
+
+
+@pytest.fixture
+def made(usual_look, open_window):
+    """A window over a plan."""
+
+    def make(plan=PLAN, workers=None, look=None):
+        return open_window(Document(plan), workers, look)
+
+    return make
 
 
 @pytest.fixture
