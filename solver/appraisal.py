@@ -13,11 +13,11 @@ from solver import heads
 from solver.answer import Break, CrewReport, LineKind, LineMargin, Policy
 from solver.breaks import budget_break, hours_break, rule_break
 from solver.engine import LpStatus, Relaxation
+from solver.found import tie_width
 from solver.ledger import Counts
 from solver.lines import Line
 from solver.matrix import Floats, Matrix
 from solver.program import Program
-from solver.search import tie_width
 from solver.shortfall import SHORT, Aim, Prices, Shortfall
 
 _UNUSED = dict[str, tuple[float, ...]]()

@@ -22,11 +22,11 @@ from solver.answer import Attendance, CrewChance, Policy, SafeCrew
 from solver.chances import SAME, Chances
 from solver.dayrisk import DayRisk
 from solver.exactcrew import exact_crew
+from solver.found import Found, Limits, Lots
 from solver.inquiry import Heard, unheard
 from solver.plan import Budget, Plan
 from solver.program import Program
 from solver.safecrew import Safe, SafeSearch
-from solver.search import Found, Limits, Lots
 from solver.solve import Case
 
 SECONDS = 30.0

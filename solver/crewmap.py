@@ -10,11 +10,11 @@ from math import ceil, floor
 from solver.answer import Policy
 from solver.engine import LpStatus, Relaxation
 from solver.exactcrew import exact_crew
+from solver.found import Lots
 from solver.levelline import level_line
 from solver.mapanswer import CrewMap, MapName, MapPoint
 from solver.outline import Point, outline
 from solver.plan import Category, Plan
-from solver.search import Lots
 from solver.solve import Case
 
 # lots of the window beyond the named crews, its least and its greatest number of lots along one axis

@@ -3,8 +3,8 @@
 from __future__ import annotations
 
 from solver.answer import CrewReport, State, to_json
+from solver.found import Found
 from solver.report import conflict_words
-from solver.search import Found
 from solver.solve import Case
 from solver.unanswered import NoExactCrew
 

@@ -6,8 +6,8 @@ from collections.abc import Iterable
 from fractions import Fraction
 from math import gcd
 
+from solver.found import TIE
 from solver.program import Program
-from solver.search import TIE
 
 
 def whole_grain(program: Program) -> float:

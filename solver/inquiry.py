@@ -13,7 +13,8 @@ import numpy as np
 
 from solver import heads
 from solver.engine import EngineName, WholeResult, WholeStatus, whole
-from solver.search import Found, Limits, Outcome, Search
+from solver.found import Found, Limits, Outcome
+from solver.search import Search
 from solver.tiebreak import TIES
 
 Heard = Callable[[str, Any], None]

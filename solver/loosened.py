@@ -19,13 +19,14 @@ from functools import cached_property
 from math import floor, gcd, inf, lcm
 
 from solver.answer import LineKind
+from solver.found import Found, Lots, tie_width
 from solver.grain import whole_grain
 from solver.inquiry import Inquiry
 from solver.lines import HeadLine, Line
 from solver.matrix import Matrix, Row, RowSense
 from solver.plan import Category, Plan
 from solver.program import Program
-from solver.search import Found, Lots, Search, tie_width
+from solver.search import Search
 
 # hours lines are continuous: an objective of a thousand per hour tells a millionth of an hour
 PER_HOUR = 1000.0

@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from fractions import Fraction
 
-from solver.search import Lots
+from solver.found import Lots
 
 
 @dataclass(frozen=True)

@@ -125,12 +125,16 @@ class DualBound:
 
     def value(self, prices: Floats, lower: Floats, upper: Floats) -> float:
         """The bound for row prices `prices` (clipped to their signs) and the columns' bounds."""
+        return self.value_and_reduced(prices, lower, upper)[0]
+
+    def value_and_reduced(self, prices: Floats, lower: Floats, upper: Floats) -> tuple[float, Floats]:
+        """The bound, and the columns' reduced costs at these prices."""
         y = np.clip(prices, self._floor, self._ceiling)
         pulled = np.bincount(
             self._column_of, weights=self._values * y[self._row_of], minlength=len(self._cost)
         )
-        reduced = self._cost - pulled
+        reduced: Floats = self._cost - pulled
         ends = np.where(reduced > 0, reduced * lower, reduced * upper)
         parts = float(y @ self._rhs) + float(ends.sum())
         size = float(np.abs(y * self._rhs).sum() + np.abs(ends).sum())
-        return parts - self._ROUNDING * (len(ends) + len(y)) * size
+        return parts - self._ROUNDING * (len(ends) + len(y)) * size, reduced

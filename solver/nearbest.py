@@ -8,12 +8,13 @@ from fractions import Fraction
 from solver import heads
 from solver.answer import NearBest, NearCrew, Policy
 from solver.exactcrew import exact_crew
+from solver.found import Found, Limits, tie_width
 from solver.grain import whole_grain
 from solver.inquiry import Heard, Inquiry, unheard
 from solver.loosened import paid_caps
 from solver.plan import Plan
 from solver.program import Program
-from solver.search import Found, Limits, Search, tie_width
+from solver.search import Search
 from solver.solve import Case
 from solver.tightest import tightest
 

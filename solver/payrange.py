@@ -18,13 +18,14 @@ from math import ceil, floor
 
 from solver.answer import PayRange
 from solver.engine import LpStatus
+from solver.found import Found, Lots, Outcome, tie_width
 from solver.grain import whole_grain
 from solver.inquiry import Inquiry
 from solver.loosened import affordable, common
 from solver.matrix import RowSense
 from solver.program import Program
 from solver.rounding import snapped
-from solver.search import Found, Lots, Outcome, Search, tie_width
+from solver.search import Search
 
 
 @dataclass(frozen=True)

@@ -11,11 +11,12 @@ import numpy as np
 
 from solver.answer import Proof, State
 from solver.engine import EngineName, WholeStatus, whole
+from solver.found import Found, Lots, tie_width
 from solver.matrix import Matrix
 from solver.program import Program
 from solver.race import Standing, engines
 from solver.rounding import half_up, snapped
-from solver.search import Found, Lots, Search, tie_width
+from solver.search import Search
 from solver.tiebreak import cheapest_preferred, preferred
 from solver.tightening import PhasesAlone, tightened
 from solver.windows import Windows

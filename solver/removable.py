@@ -8,13 +8,14 @@ from decimal import Decimal
 from enum import Enum
 
 from solver.engine import LpStatus, Relaxation
+from solver.found import Limits
 from solver.inquiry import Inquiry
 from solver.lines import HeadLine, Line
 from solver.loosened import is_bound, is_settling
 from solver.matrix import Matrix, Row, RowSense
 from solver.plan import Plan
 from solver.program import Program
-from solver.search import Limits, Search
+from solver.search import Search
 
 WHOLE = Limits(nodes=5_000, seconds=1.0)
 

@@ -11,6 +11,7 @@ from __future__ import annotations
 from solver import heads, roomwords
 from solver.answer import CrewReport, LineKind, LineMargin, LineRoom, Room
 from solver.exactcrew import exact_crew
+from solver.found import Found, Lots, tie_width
 from solver.fractionalprice import FractionalPrices
 from solver.grain import whole_grain
 from solver.inquiry import Heard, Inquiry, unheard
@@ -19,7 +20,6 @@ from solver.loosened import GivingWay, Loosened, Negotiable, is_settling
 from solver.loosening import NOTHING, OUT_OF_TIME, Grown, Loosening
 from solver.payrange import PayRanges
 from solver.plan import Plan
-from solver.search import Found, Lots, tie_width
 from solver.solve import Case
 
 CENT = 0.01

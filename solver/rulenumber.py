@@ -17,12 +17,13 @@ from dataclasses import replace
 from fractions import Fraction
 from math import ceil
 
+from solver.found import Lots
 from solver.grain import whole_grain
 from solver.inquiry import Inquiry
 from solver.matrix import RowSense
 from solver.plan import Plan, Ratio, Sense, Share
 from solver.program import Program
-from solver.search import Lots, Search
+from solver.search import Search
 
 # a ratio rule looser than this is no rule
 LOOSEST_RATIO = Fraction(1000)

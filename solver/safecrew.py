@@ -19,12 +19,13 @@ import numpy as np
 
 from solver import heads
 from solver.chances import SAME, Chances
+from solver.found import Found, Limits, Lots, tie_width
 from solver.grain import whole_grain
 from solver.matrix import Floats, Matrix, RowSense
 from solver.plan import Budget, Plan
 from solver.program import UNLIMITED_LOTS, Program
 from solver.saferows import SafeRows
-from solver.search import Found, Limits, Lots, Search, tie_width
+from solver.search import Search
 
 NODES = 400_000
 CLIMBS = 400

@@ -25,6 +25,7 @@ from solver.answer import (
 from solver.appraisal import Appraiser
 from solver.conflict import find_conflict
 from solver.engine import EngineName, LpStatus, WholeStatus, whole
+from solver.found import Found
 from solver.grain import whole_grain
 from solver.ledger import Counts
 from solver.lines import Line
@@ -32,7 +33,7 @@ from solver.plan import Plan
 from solver.program import Program
 from solver.proof import SECONDS, Effort, Proved, Prover
 from solver.rounding import largest_remainder, rounded, snapped
-from solver.search import Found, Search
+from solver.search import Search
 from solver.tiebreak import cheapest_preferred
 
 Heard = Callable[[str, Any], None]

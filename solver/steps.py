@@ -16,11 +16,11 @@ from itertools import pairwise
 
 from solver.answer import FloorPoint, Step, Steps
 from solver.corners import Corner
+from solver.found import Found, Lots, tie_width
 from solver.heads import crew_of
 from solver.inquiry import Heard, Inquiry, unheard
 from solver.plan import Plan
 from solver.roundedup import rounded_up
-from solver.search import Found, Lots, tie_width
 from solver.solve import Case
 from solver.tiebreak import cheapest_preferred
 from solver.unanswered import Unanswered

@@ -15,9 +15,10 @@ import numpy as np
 
 from solver import heads
 from solver.engine import EngineName, whole
+from solver.found import Found, Limits, Outcome, tie_width
 from solver.matrix import Floats, Matrix, RowSense
 from solver.program import Program
-from solver.search import Found, Limits, Outcome, Search, tie_width
+from solver.search import Search
 
 # 4,000 nodes settled no more plans of 1,000 random ones than 1,000 do
 TIES = Limits(nodes=1_000, seconds=1.0)

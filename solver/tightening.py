@@ -14,11 +14,12 @@ from decimal import Decimal
 from time import monotonic
 
 from solver.engine import EngineName, whole
+from solver.found import Limits, Lots, tie_width
 from solver.grain import whole_grain
 from solver.matrix import Matrix, RowSense
 from solver.plan import Budget, Category, Plan
 from solver.program import UNLIMITED_LOTS, Program
-from solver.search import Limits, Lots, Search, tie_width
+from solver.search import Search
 
 NONE = Decimal(0)
 # one phase alone is a small program; what is not proved by then gives its bound all the same

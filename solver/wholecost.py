@@ -10,12 +10,13 @@ from dataclasses import replace
 
 from solver.answer import CategorySaving, CrewReport, Policy, Rung, WholePeopleDetail
 from solver.exactcrew import exact_crew
+from solver.found import Found, tie_width
 from solver.grain import whole_grain
 from solver.inquiry import Heard, Inquiry, unheard
 from solver.loosened import paid_caps
 from solver.plan import Plan
 from solver.program import Program
-from solver.search import Found, Search, tie_width
+from solver.search import Search
 from solver.solve import Case, whole_people_cost
 from solver.unanswered import Unsettled
 

@@ -15,9 +15,10 @@ from fractions import Fraction
 import numpy as np
 
 from solver.engine import EngineName, whole
+from solver.found import Found, Lots, tie_width
 from solver.plan import Budget, Category, Phase, Plan
 from solver.program import Program
-from solver.search import Found, Lots, Search, tie_width
+from solver.search import Search
 
 LENGTH = 4
 FEWEST_PHASES = 8

@@ -14,11 +14,12 @@ from math import floor, inf
 
 from solver.corners import Corner, corners
 from solver.engine import LpStatus, Relaxation
+from solver.found import Lots, tie_width
 from solver.grain import whole_grain
 from solver.matrix import Matrix
 from solver.plan import Plan
 from solver.program import Program
-from solver.search import Lots, Search, tie_width
+from solver.search import Search
 
 
 def scaled(plan: Plan, work: str | None, factor: Decimal) -> Plan:

@@ -18,8 +18,10 @@ import os
 import resource
 import subprocess
 import sys
+import threading
 import time
 from collections.abc import Sequence
+from contextlib import suppress
 from dataclasses import dataclass
 from math import exp, inf, log
 from pathlib import Path
@@ -36,6 +38,8 @@ from solver.proof import Effort, Proved
 from solver.race import engines
 from solver.solve import Case, solve
 from tests.family import SEEDS, SIZES, family_plan
+from tests.solver.random_plans import random_plan
+from tests.solver.reference import written_out
 
 HERE = Path(__file__).parent
 HILLSIDE = HERE.parent / "resources" / "examples" / "hillside.crew.json"
@@ -79,9 +83,6 @@ def main(arguments: Sequence[str]) -> None:
 
 def single(count: int = 100) -> str:
     """Medians in milliseconds over `count` seeded one-phase plans, and for the hillside example."""
-    sys.path.insert(0, str(HERE / "solver"))
-    from random_plans import random_plan  # the tests are no package
-
     plans: list[Plan] = []
     seed = 0
     while len(plans) < count:
@@ -96,8 +97,6 @@ def single(count: int = 100) -> str:
 
 
 def _single_row(name: str, plans: Sequence[Plan]) -> str:
-    from reference import written_out
-
     times = []
     for plan in plans:
         model = written_out(plan, relax=False)
@@ -180,23 +179,44 @@ def _here(plan: Plan) -> Trial:
             proofs.append(when)  # one engine's proof: what the peers' times are as well
 
     case = Case(plan, effort=Effort(SECONDS, heard=heard))
-    proved = case.proved
+    with _EnginePeaks() as peaks:
+        proved = case.proved
     ended = time.perf_counter() - began
     trace.append((ended, inf if proved.best is None else proved.best.objective, proved.bound))
     if proved.proof is not None and not proofs:
         proofs.append(ended)
-    return Trial(trace, proofs[0] if proofs else None, _memory())
+    return Trial(trace, proofs[0] if proofs else None, peaks.total())
 
 
-def _memory() -> float:
-    """Peak of this process and of the two engines' processes, MB."""
-    peaks = [resource.getrusage(resource.RUSAGE_SELF).ru_maxrss / 1024]
-    for host in engines().hosts.values():
-        status = Path(f"/proc/{host.pid}/status")
-        if host.pid and status.exists():
-            line = next(x for x in status.read_text().splitlines() if x.startswith("VmHWM"))
-            peaks.append(int(line.split()[1]) / 1024)
-    return sum(peaks)
+class _EnginePeaks:
+    """Watches the peak memory of the engines' processes: they are killed when a race ends."""
+
+    def __init__(self) -> None:
+        self._peaks: dict[int, float] = {}
+        self._over = threading.Event()
+        self._thread = threading.Thread(target=self._watch, daemon=True)
+
+    def __enter__(self) -> _EnginePeaks:
+        self._thread.start()
+        return self
+
+    def __exit__(self, *_: object) -> None:
+        self._over.set()
+        self._thread.join()
+
+    def total(self) -> float:
+        """Peak of this process and of the largest processes of the two engines, MB."""
+        here = resource.getrusage(resource.RUSAGE_SELF).ru_maxrss / 1024
+        return here + sum(sorted(self._peaks.values())[-len(engines().hosts) :])
+
+    def _watch(self) -> None:
+        while not self._over.wait(0.1):
+            for host in engines().hosts.values():
+                pid = host.pid
+                with suppress(OSError, StopIteration):
+                    lines = Path(f"/proc/{pid}/status").read_text(encoding="utf-8").splitlines()
+                    line = next(x for x in lines if x.startswith("VmHWM"))
+                    self._peaks[pid or 0] = int(line.split()[1]) / 1024
 
 
 def _peer(name: str, raw: dict[str, Any]) -> Trial:
@@ -259,20 +279,7 @@ def write_csv(rows: Sequence[FamilyRow], path: str) -> None:
     """The table as CSV, one line per plan and solver."""
     with open(path, "w", newline="", encoding="utf-8") as file:
         writer = csv.writer(file)
-        writer.writerow(
-            (
-                "size",
-                "seed",
-                "solver",
-                "first_s",
-                "proved_s",
-                "cost_1s",
-                "bound_1s",
-                "cost_10s",
-                "bound_10s",
-                "memory_mb",
-            )
-        )
+        writer.writerow(COLUMNS)
         for row in rows:
             for name, trial in row.trials.items():
                 early, late = trial.at(EARLY), trial.at(SECONDS)

@@ -1,16 +1,19 @@
 """How long `cost`, `room` and `near --within 2 --most 20` take together, and how many searches they run.
 
-python -m tests.benchmark_questions [FIRST_SEEDS]: the hillside example (must stay within 2 s), and plans of
-one phase with 8 categories and about a dozen lines.
+python -m tests.benchmark_questions [SEEDS [RANDOM]]: the hillside example (must stay within 2 s), SEEDS plans
+of one phase with 8 categories and about a dozen lines, and RANDOM plans of 5 to 8 categories with every
+feature (half lots, opening costs, least-if-any, people without pay), of which the slowest are shown.
 """
 
 from __future__ import annotations
 
+import os
 import sys
 from collections import Counter
 from collections.abc import Iterator
 from contextlib import contextmanager
 from decimal import Decimal
+from math import inf
 from pathlib import Path
 from time import perf_counter
 from typing import Any
@@ -18,13 +21,19 @@ from unittest.mock import patch
 
 import numpy as np
 
+from solver.answer import State
+from solver.engine import quiet_native_output
 from solver.plan import Category, Phase, Plan, Presence, Ratio, Sense, Share, Supervision, Work
 from solver.planfile import read_plan
 from solver.questions import QUESTIONS
 from solver.search import Search
+from solver.solve import Case
 from solver.unanswered import Unanswered
+from tests.solver.random_plans import random_plan
 
 HILLSIDE = Path(__file__).parents[1] / "resources" / "examples" / "hillside.crew.json"
+FIRST_RANDOM = 1001
+LIMIT = 2.0
 ASKED: dict[str, dict[str, Any]] = {"cost": {}, "room": {}, "near": {"within": 2, "most": 20}}
 
 
@@ -97,20 +106,44 @@ def measured(plan: Plan) -> tuple[dict[str, float], int]:
     return seconds, count["programs"]
 
 
-def main(seeds: int) -> None:
-    plans = [("hillside", read_plan(HILLSIDE))]
-    plans += [(f"8 categories, seed {seed}", one_phase_plan(seed)) for seed in range(seeds)]
-    QUESTIONS["solve"].ask(plans[0][1], {}, lambda part, value: None)  # loads the libraries
-    print(f"{'plan':24}{'cost':>8}{'room':>8}{'near':>8}{'together':>10}{'programs':>10}", file=sys.stderr)
-    for title, plan in plans:
-        try:
-            seconds, programs = measured(plan)
-        except Unanswered as why:
-            print(f"{title:24}{str(why).splitlines()[0]:>36}", file=sys.stderr)
-            continue
-        each = "".join(f"{seconds[name]:8.2f}" for name in ASKED)
-        print(f"{title:24}{each}{sum(seconds.values()):10.2f}{programs:10}", file=sys.stderr)
+def random_one_phase_plans(count: int) -> Iterator[tuple[str, Plan]]:
+    """Plans of every feature that have an exact crew."""
+    seed = FIRST_RANDOM
+    while count:
+        plan = random_plan(np.random.default_rng(seed), max_categories=8, max_works=3, max_phases=1)
+        if len(plan.categories) >= 5 and Case(plan).proved.state is State.PROVED:
+            count -= 1
+            yield f"random plan, seed {seed}", plan
+        seed += 1
+
+
+def line(title: str, plan: Plan) -> tuple[float, str]:
+    """Seconds together (infinite where a question was not answered) and a line of the table."""
+    try:
+        seconds, programs = measured(plan)
+    except Unanswered as why:
+        return inf, f"{title:28}{str(why).splitlines()[0]:>36}"
+    each = "".join(f"{seconds[name]:8.2f}" for name in ASKED)
+    together = sum(seconds.values())
+    return together, f"{title:28}{each}{together:10.2f}{programs:10}"
+
+
+def main(seeds: int, random: int) -> None:
+    """Print the tables, past what native code prints."""
+    with os.fdopen(quiet_native_output(), "w", encoding="utf-8", buffering=1) as out:
+        hillside = read_plan(HILLSIDE)
+        QUESTIONS["solve"].ask(hillside, {}, lambda part, value: None)  # loads the libraries
+        print(f"{'plan':28}{'cost':>8}{'room':>8}{'near':>8}{'together':>10}{'programs':>10}", file=out)
+        print(line("hillside", hillside)[1], file=out)
+        for seed in range(seeds):
+            print(line(f"8 categories, seed {seed}", one_phase_plan(seed))[1], file=out)
+        found = sorted((line(title, plan) for title, plan in random_one_phase_plans(random)), reverse=True)
+        late = sum(seconds > LIMIT for seconds, _ in found)
+        print(f"{random} random plans: {late} beyond {LIMIT:g} s; the slowest:", file=out)
+        for _, shown in found[:5]:
+            print(shown, file=out)
 
 
 if __name__ == "__main__":
-    main(int(sys.argv[1]) if len(sys.argv) > 1 else 8)
+    asked = [int(number) for number in sys.argv[1:]]
+    main(*(asked + [8, 40][len(asked) :]))

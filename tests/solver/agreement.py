@@ -10,10 +10,10 @@ from fractions import Fraction
 from itertools import pairwise
 
 from solver.answer import Answer, Break, CrewReport, LineKind, State
+from solver.found import tie_width
 from solver.nearbest import near_best
 from solver.plan import Plan
 from solver.room import room
-from solver.search import tie_width
 from tests.solver import bruteforce, checker, reference
 from tests.solver.solved import Workable
 

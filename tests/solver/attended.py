@@ -10,8 +10,8 @@ from math import prod
 import numpy as np
 
 from solver import heads
+from solver.found import Found
 from solver.plan import Plan, Ratio, Share
-from solver.search import Found
 from solver.solve import Case
 from tests.solver import daycheck
 from tests.solver.random_plans import FEATURES, random_plan

@@ -14,11 +14,11 @@ import pytest
 from solver import report_cost, report_near, report_room
 from solver.answer import NearBest, Room, State, WholePeopleDetail, from_json, to_json
 from solver.exactcrew import exact_crew
+from solver.found import Found
 from solver.plan import Budget, Category, Phase, Plan, Presence, Sense, Work
 from solver.planfile import plan_to_document, save_plan
 from solver.questions import QUESTIONS, BadOption
 from solver.room import room
-from solver.search import Found
 from solver.service import RECORD, serve
 from solver.solve import Case
 from solver.unanswered import NoExactCrew, Unsettled

@@ -20,10 +20,11 @@ from scipy.optimize import Bounds, LinearConstraint, linprog, milp
 
 from solver.answer import Answer, Policy, State
 from solver.engine import EngineName, LpStatus, Relaxation, WholeStatus, whole
+from solver.found import Limits
 from solver.matrix import Matrix, RowSense
 from solver.plan import Category, Phase, Plan, Presence, Rule, Sense, Share, Supervision, Work
 from solver.rounding import rounded
-from solver.search import Limits, Search
+from solver.search import Search
 from solver.solve import solve
 from tests.solver import checker
 from tests.solver.bare import BareProgram

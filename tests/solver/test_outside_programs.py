@@ -16,10 +16,11 @@ from scipy.optimize import LinearConstraint, milp
 
 from solver.answer import Policy, State
 from solver.engine import EngineName, LpStatus, Relaxation, WholeStatus, whole
+from solver.found import Limits
 from solver.matrix import Matrix, RowSense
 from solver.plan import Category, Plan, Presence, Sense
 from solver.rounding import rounded
-from solver.search import Limits, Search
+from solver.search import Search
 from solver.solve import solve
 from tests.solver.bare import BareProgram, largest
 

@@ -11,11 +11,12 @@ from scipy.optimize import Bounds, LinearConstraint, milp
 
 from solver import heads
 from solver.engine import LpStatus
+from solver.found import Found, Limits, tie_width
 from solver.grain import whole_grain
 from solver.matrix import Matrix, RowSense
 from solver.plan import Plan
 from solver.program import Program
-from solver.search import Found, Limits, Search, tie_width
+from solver.search import Search
 from tests.solver import checker, solved
 from tests.solver.bare import BareProgram
 from tests.solver.full_plans import full_plan
@@ -211,7 +212,7 @@ class TestAnyIntegerProgram:
                 continue
             reference = _highs(matrix)
             if reference.status == 0:
-                bound = search._bound(search._now)
+                bound = search.bound(search._now)
                 assert bound <= reference.fun + 1e-9 * (1 + abs(reference.fun))
 
 

@@ -12,10 +12,10 @@ from hypothesis import HealthCheck, given, settings
 
 from solver import tiebreak
 from solver.answer import Answer, Policy, Proof, State, from_json, to_json
+from solver.found import Limits, tie_width
 from solver.plan import Budget, Category, Phase, Plan, Presence, Ratio, Sense, Supervision, Work
 from solver.planfile import plan_from_document, plan_to_document
 from solver.review import review
-from solver.search import Limits, tie_width
 from solver.solve import solve
 from tests.solver import agreement, checker, solved
 from tests.solver.full_plans import full_plan
