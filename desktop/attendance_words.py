@@ -112,6 +112,11 @@ def described(count: int, low: str, high: str) -> str:
     return f"{count} crews, from enough people on {low} of days to {high}"
 
 
+def for_days(share: str) -> str:
+    """What the cheapest crew for the wanted chance is called."""
+    return f"for {share} of days"
+
+
 def who(name: str, crew: str) -> str:
     """The people of a crew of the table."""
     return f"{name}: {crew}"

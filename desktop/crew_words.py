@@ -180,7 +180,7 @@ TIGHTEST = "Tightest line"
 VERDICT = "Verdict"
 WORKABLE = "workable"
 NOT_WORKABLE = "not workable"
-A_BOUND = "a bound, not a plan"
+A_BOUND = "only a bound"
 TIP_PEOPLE = "Head count; over several phases, of the fullest one"
 TIP_JOINERS = "People taken on, over all phases"
 TIP_LEAVERS = "People let go, over all phases"
@@ -216,6 +216,14 @@ def policy_title(policy: Policy) -> str:
 def in_phase(name: str, phase: str) -> str:
     """A row of a plan with several phases."""
     return f"{name}, {phase}"
+
+
+def in_the_phase(what: str, phase: str) -> str:
+    """Something that happens in one of several phases."""
+    return f"{what} in {phase}"
+
+
+SAME_PEOPLE = "the same people, at less cost"
 
 
 def count_tip(name: str, lot: str, phase: str) -> str:
@@ -297,6 +305,11 @@ def bought_in_of(work: str) -> str:
 def titled(title: str, text: str) -> str:
     """A title and its figure."""
     return f"{title}: {text}"
+
+
+def bulleted(lines: Sequence[str]) -> str:
+    """Entries below one another; a single one is a sentence."""
+    return "\n".join(lines if len(lines) < 2 else [f"\u2022 {line}" for line in lines])
 
 
 def conflict(lines: Sequence[str]) -> str:

@@ -16,6 +16,7 @@ NIL = "–"
 NBSP = "\u00a0"
 MINUS = "\u2212"
 _DIGITS_THAT_MATTER = 3
+_ONE_OF = {"people": "person", "hours": "hour"}  # units the program names itself
 _NOTHING = Decimal("5e-7")  # below the snap of the rounding policies: solver noise, not people
 
 
@@ -74,7 +75,8 @@ def quantity(x: Number, unit: str = "", locale: QLocale | None = None) -> str:
     if abs(exact) < _NOTHING:
         return NIL
     text = number(exact, 0 if abs(exact) >= 100 else _places_that_matter(exact, 2), locale)
-    return f"{text}{NBSP}{unit}" if unit else text
+    named = _ONE_OF.get(unit, unit) if text.lstrip(MINUS) == "1" else unit
+    return f"{text}{NBSP}{named}" if unit else text
 
 
 def signed(x: Number, unit: str = "", locale: QLocale | None = None) -> str:

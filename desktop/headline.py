@@ -24,6 +24,7 @@ from desktop.pictures.copyable import plain_tip
 from desktop.theme import Size
 
 PATIENCE = 150  # ms: an answer that comes at once never makes the headline flicker
+_SHARES = (1.0, 0.9, 0.8, 0.7, 0.62)  # of the largest size, for crews of many categories
 _BUTTONS = {
     Action.GO_TO: messages.GO_THERE,
     Action.ASK_AGAIN: messages.ASK_AGAIN,
@@ -132,8 +133,8 @@ class HeadlineBar(QFrame):
     def _fit_crew(self) -> None:
         """As many categories as there is room for, and how many are left out."""
         parts = self._said.crew
-        metrics = QFontMetrics(theme.current().font(Size.LARGE))
         room = max(self.crew.width(), theme.current().px(40))
+        metrics = self._size_crew(room)
         fitting = (
             n for n in range(len(parts), 1, -1) if metrics.horizontalAdvance(_joined(parts, n)) <= room
         )
@@ -144,6 +145,22 @@ class HeadlineBar(QFrame):
         self.crew.setText(_joined(parts, count))
         self.crew.setToolTip("" if count == len(parts) > 1 else plain_tip(", ".join(self._said.crew)))
         self.crew.setAccessibleName(", ".join(self._said.crew))
+
+    def _size_crew(self, room: int) -> QFontMetrics:
+        """As large as all categories have room at, if that is not much smaller than the rest; its metrics."""
+        font = theme.current().font(Size.LARGE)
+        self.crew.setMinimumHeight(QFontMetrics(font).height())  # nothing below moves with the size
+        text, points = _joined(self._said.crew, len(self._said.crew)), font.pointSizeF()
+        for share in _SHARES:
+            font.setPointSizeF(points * share)
+            if QFontMetrics(font).horizontalAdvance(text) <= room:
+                break
+        else:
+            font.setPointSizeF(points)
+        style = "" if font.pointSizeF() == points else f"font-size: {font.pointSizeF():.2f}pt;"
+        if self.crew.styleSheet() != style:
+            self.crew.setStyleSheet(style)
+        return QFontMetrics(font)
 
     def _act(self) -> None:
         if self._said.action is Action.GO_TO:

@@ -141,7 +141,7 @@ def _facts(plan: Plan, answer: Answer) -> str:
         money = figures.money(extra.absolute, plan.currency)
         said.append(messages.WHOLE_PEOPLE.format(money=money, percent=figures.percent(extra.percent)))
     said.append(_moves(answer.exact.joiners, answer.exact.leavers))
-    return messages.SEPARATOR.join(part for part in said if part)
+    return messages.SEPARATOR.join(part.replace(" ", figures.NBSP) for part in said if part)
 
 
 def _floor(plan: Plan, answer: Answer) -> str:

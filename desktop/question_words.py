@@ -46,7 +46,8 @@ PROGRESS = "Progress"
 CANCEL = messages.CANCEL
 ASK = "Work it out"
 CANCELLED = "Cancelled."
-NEEDS_CREW = "This needs an exact crew first."
+NEEDS_CREW = "This needs an exact crew, and there is none yet."
+NEEDS_MENDING = "This needs an exact crew, and no crew can meet the plan: the page To mend tells what helps."
 
 # whole-people cost
 
@@ -54,8 +55,9 @@ ABOVE_FLOOR = "above the floor"
 LADDER = "What each crew costs above the floor"
 SAVINGS = "Where the cost of whole people comes from"
 SAVING = "Saving"
-IF_FRACTIONAL = "if part of a person could be had"
+IF_FRACTIONAL = "if any part of a post could be shared"
 NO_SAVING = "neither way"
+IF_HALF_POST = "if half posts could be had"
 IF_HALF_LOT = "if the lot were half as large"
 WHOLE_PEOPLE_FREE = "Whole people cost nothing extra: the exact crew costs as much as the floor."
 NO_ONE_SAVES = "No category alone would save anything by being shared or part time."
@@ -91,14 +93,14 @@ LOOSEN = "Loosen\nby"
 TIP_LOOSEN = "The least loosening that makes a cheaper whole crew possible; none where no loosening does"
 WOULD_SAVE = "Would\nsave"
 TIP_WOULD_SAVE = "What the cheapest whole crew at that loosening costs less than the exact crew"
-NEXT_CREW = "With the crew"
-TIP_NEXT_CREW = "The cheapest whole crew at that loosening"
-DUAL = "Price for\nfractional people"
+NEXT_CREW = "With this change of the crew"
+TIP_NEXT_CREW = "How the cheapest whole crew at that loosening differs from the exact crew"
+DUAL = "Price for\nfractional\npeople"
 TIP_DUAL = (
     "Dual price: what one unit less of the line would save if people could be divided. "
     "It does not hold for whole people."
 )
-DUAL_RANGE = "holds while the\nline asks for"
+DUAL_RANGE = "holds while\nthe line\nasks for"
 TIP_DUAL_RANGE = "The range of the line's own limit in which that price holds, for fractional people"
 NOT_BY_LOOSENING = "none"
 ROOM_INTRO = "How far each line can move: worked out with whole people, one line at a time."
@@ -125,6 +127,7 @@ WITHIN_TIP = "How much more than the exact crew a crew may cost, in per cent"
 MOST = "At most"
 MOST_TIP = "How many crews are listed"
 CREWS_UNIT = " crews"
+OF_EXACT = "above the exact cost"
 OVER = "Above\nexact"
 TIP_OVER = "What the crew costs above the exact crew"
 TIP_NEAR_COST = "Cost of the crew"
@@ -195,7 +198,8 @@ def crew_at(amount: str, crew: str, cost: str) -> str:
 
 def holds_up_to(amount: str, change: str, more: str) -> str:
     """How far a crew holds and what comes then."""
-    return f"Holds up to {amount}; then {change}, for {more} more."
+    cost = f"for {more} more" if more else "at the same cost"
+    return f"Holds up to {amount}; then {change}, {cost}."
 
 
 def holds_to_the_end(amount: str) -> str:
@@ -232,6 +236,9 @@ def people_axis(category: str) -> str:
 def map_described(workable: int, count: int) -> str:
     """The map in words."""
     return f"{workable} of {count} whole crews on the map are workable. The table lists them all."
+
+
+NOBODY_OF = "no"
 
 
 def pair(x: str, across: str, y: str, up: str) -> str:

@@ -10,6 +10,7 @@ import os
 import sys
 import tempfile
 import time
+from collections.abc import Callable
 from pathlib import Path
 
 os.environ.setdefault("QT_QPA_PLATFORM", "offscreen")
@@ -78,7 +79,7 @@ def quiet(window: Window) -> bool:
     return not any(window.answers.progress(question) for question in KINDS)
 
 
-def wait(app: QApplication, until, seconds: float) -> None:
+def wait(app: QApplication, until: Callable[[], bool], seconds: float) -> None:
     """Let the window work until `until()` or for `seconds`."""
     end = time.monotonic() + seconds
     while not until() and time.monotonic() < end:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from typing import TYPE_CHECKING, Any
 
 from PySide6.QtCore import QModelIndex, QTimer
@@ -37,10 +38,12 @@ if TYPE_CHECKING:
     from desktop.pictures.attendance_curve import AttendanceCurve
 
 _ASK_AFTER = 600  # ms without another change of the wanted chance
-_OWN = "own"
+_OWN, _WANTED = "own", "safe"  # what the answer calls the own crew and the one for the wanted chance
 
 
-def crew_columns(plan: Plan, exact: float) -> list[ShownColumn[CrewChance]]:
+def crew_columns(
+    plan: Plan, exact: float, name: Callable[[CrewChance], str]
+) -> list[ShownColumn[CrewChance]]:
     """Crews side by side: how often enough, what they cost, who."""
 
     def more(crew: CrewChance) -> str:
@@ -50,7 +53,7 @@ def crew_columns(plan: Plan, exact: float) -> list[ShownColumn[CrewChance]]:
         return say.NOT_WORKABLE if crew.cost is None else figures.money(crew.cost)
 
     return [
-        ShownColumn(say.CREW, say.TIP_CREW, lambda c: c.name, left=True),
+        ShownColumn(say.CREW, say.TIP_CREW, name, left=True),
         ShownColumn(say.COVERS, say.TIP_COVERS, lambda c: share(c.covered), bold=True, tone="exact"),
         ShownColumn(say.over_unit(say.COST, plan.currency), say.TIP_COST, cost),
         ShownColumn(say.over_unit(say.MORE, plan.currency), say.TIP_MORE, more),
@@ -104,7 +107,7 @@ class AttendancePage(QuestionPage):
         self.own_changed = label(say.OWN_CHANGED, tone="faint")
         self.hint = label(say.CURVE_HINT, tone="faint")
         self.picture: AttendanceCurve | None = None
-        self.crews: ShownTable[CrewChance] = ShownTable(title=lambda crew, _at: crew.name, parent=self)
+        self.crews: ShownTable[CrewChance] = ShownTable(title=lambda crew, _at: self._name(crew), parent=self)
         self.lines: ShownTable[Line] = ShownTable(title=lambda line, _at: line[0], parent=self)
         self.missed: ShownTable[Critical] = ShownTable(title=lambda one, _at: one.category, parent=self)
         self.crews_view = QuietView(say.CREWS)
@@ -116,6 +119,7 @@ class AttendancePage(QuestionPage):
         self._asked_soon = QTimer(self, singleShot=True, interval=_ASK_AFTER)
         self._shown: Attendance | None = None
         self._asked_own: object = None
+        self._wanted = 0.0
         self._set_up()
         self.body.addLayout(self._choices())
         self._parts = self._fill_body()
@@ -230,6 +234,7 @@ class AttendancePage(QuestionPage):
             return
         if own_changed:
             self.ask_button.setVisible(True)
+        self._wanted = detail.chance
         self._show_crews(plan, detail, own_changed)
         if detail is not self._shown:
             self._shown = detail
@@ -242,7 +247,7 @@ class AttendancePage(QuestionPage):
         self.wanted.setText(wanted_sentence(plan, detail))
         self._picture().show_curve(plan, curve_of(plan, detail))
         self._picture().show()
-        self.looked.setText(self._picture().sentence())
+        self._tell_looked()
         self.method.setText(f"{say.MODEL} {_method(detail)}")
         self.phase.blockSignals(True)
         self.phase.clear()
@@ -254,9 +259,13 @@ class AttendancePage(QuestionPage):
     def _show_crews(self, plan: Plan, detail: Attendance, own_changed: bool) -> None:
         shown = tuple(c for c in detail.compared if not (own_changed and c.name == _OWN))
         if self.crews.rows != shown or not self.crews.columns:
-            self.crews.show(shown, crew_columns(plan, detail.compared[0].cost or 0.0))
+            self.crews.show(shown, crew_columns(plan, detail.compared[0].cost or 0.0, self._name))
             self.crews_view.share_width([0])
             self.crews_view.selectRow(0)
+
+    def _name(self, crew: CrewChance) -> str:
+        """What a crew is called: one that is enough on most days is not called safe."""
+        return say.for_days(share(self._wanted)) if crew.name == _WANTED else crew.name
 
     def _show_phase(self) -> None:
         """Lines and people of the phase chosen."""
@@ -276,10 +285,15 @@ class AttendancePage(QuestionPage):
         plan = self.answers.plan
         if plan is not None and index.isValid():
             crew = self.crews.rows[index.row()]
-            self.who.setText(say.who(crew.name, crew_text(plan, crew.crew)))
+            self.who.setText(say.who(self._name(crew), crew_text(plan, crew.crew)))
 
     def _on_looked_at(self, _at: int) -> None:
-        self.looked.setText(self._picture().sentence())
+        self._tell_looked()
+
+    def _tell_looked(self) -> None:
+        """The crew of the chosen dot; nothing where the sentence at the top has told of it."""
+        told = self._picture().sentence()
+        self.looked.setText("" if told == self.wanted.text() else told)
 
     def retouch(self) -> None:
         """Follow a change of theme or zoom."""

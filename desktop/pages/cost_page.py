@@ -12,6 +12,7 @@ from desktop.pages.page_parts import heading, label
 from desktop.pages.question_page import QuestionPage
 from desktop.pictures.named_bars import BarsPicture, NamedBar, NamedBars, Tone
 from solver.answer import CategorySaving, Rung, WholePeopleDetail
+from solver.plan import Plan
 
 _FEW_CENTS = 0.005
 
@@ -34,7 +35,7 @@ def _rung(rung: Rung, detail: WholePeopleDetail) -> NamedBar:
     return NamedBar(rung.name, figures.money(rung.cost), max(above, 0.0), tone, note, rung.name == "exact")
 
 
-def saving_bars(savings: tuple[CategorySaving, ...], currency: str) -> NamedBars:
+def saving_bars(plan: Plan, savings: tuple[CategorySaving, ...]) -> NamedBars:
     """Two bars per category: if it alone could be fractional, and if its lot were halved; none for none."""
     bars: list[NamedBar] = []
     for saving in savings:
@@ -42,11 +43,12 @@ def saving_bars(savings: tuple[CategorySaving, ...], currency: str) -> NamedBars
         if max(first, second) < _FEW_CENTS:
             bars.append(NamedBar(saving.category, figures.NIL, None, Tone.PLAIN, say.NO_SAVING))
             continue
+        half = say.IF_HALF_POST if plan.category(saving.category).lot == 1 else say.IF_HALF_LOT
         bars.append(
             NamedBar(saving.category, figures.money(first), first, Tone.FRACTIONAL, say.IF_FRACTIONAL)
         )
-        bars.append(NamedBar("", figures.money(second), second, Tone.ROOM, say.IF_HALF_LOT))
-    return NamedBars(tuple(bars), (say.CATEGORY, say.in_unit(say.SAVING, currency), ""))
+        bars.append(NamedBar("", figures.money(second), second, Tone.ROOM, half))
+    return NamedBars(tuple(bars), (say.CATEGORY, say.in_unit(say.SAVING, plan.currency), ""))
 
 
 class CostPage(QuestionPage):
@@ -85,7 +87,7 @@ class CostPage(QuestionPage):
             else say.WHOLE_PEOPLE_FREE
         )
         self.ladder.show_bars(ladder_bars(detail, plan.currency))
-        self.savings.show_bars(saving_bars(detail.by_category, plan.currency))
+        self.savings.show_bars(saving_bars(plan, detail.by_category))
         self.best.setText(self._best(detail, plan.currency))
 
     def _best(self, detail: WholePeopleDetail, currency: str) -> str:

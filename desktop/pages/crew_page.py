@@ -130,9 +130,9 @@ class CrewPage(AnswerPage):
         if answer is None or plan is None:
             return
         binding = binding_lines(plan, answer, self.answers.detail("room"))
-        self.binding.setText("\n".join(binding))
+        self.binding.setText(say.bulleted(binding))
         run = run_lines(plan, answer)
-        self.run.setText("\n".join(run))
+        self.run.setText(say.bulleted(run))
         for widget, there in ((self._binding_title, binding), (self._run_title, run)):
             widget.setVisible(bool(there))
 

@@ -149,9 +149,9 @@ class MapPage(QuestionPage):
         _offer(self.phase, [phase.name for phase in plan.phases], 0)
         for widget in (self.phase, self._phase_title):
             widget.setVisible(len(plan.phases) > 1)
+        super().show_answer()
         if len(names) < 2:
             self.sentence.setText(say.NEEDS_TWO)
-        super().show_answer()
 
     def _most_told(self, names: list[str]) -> tuple[int, int]:
         """The two categories with most people in the exact crew: there is most to see between them."""
@@ -196,6 +196,8 @@ class MapPage(QuestionPage):
         for widget in (self.hint, self.picture):
             if widget is not None:
                 widget.setVisible(there)
+        if not there and self.across.currentText() != self.up.currentText():
+            self.sentence.setText("")  # it was about a map that is gone
 
     def _on_looked_at(self, _x: float, _y: float) -> None:
         self.sentence.setText(self._picture().sentence())

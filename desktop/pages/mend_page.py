@@ -14,7 +14,7 @@ from desktop.answers import Answers, Status
 from desktop.document import Document
 from desktop.mending import Entry, conflict_of, problems, refused, said_of
 from desktop.messages import CAUTION
-from desktop.pages.page_parts import heading, label, thin_rule
+from desktop.pages.page_parts import Inside, heading, label, thin_rule
 from desktop.pictures.copyable import plain_tip
 from desktop.theme import Size, current
 from solver.answer import Conflict, Conflicting
@@ -71,7 +71,7 @@ class MendPage(QWidget):
         """Everything anew: there are few entries, and they change rarely."""
         held = self._focused()
         self.buttons = []
-        inside = QWidget()
+        inside = Inside()
         rows = QVBoxLayout(inside)
         rows.setContentsMargins(0, 0, current().px(1), 0)
         rows.setSpacing(current().px(1))

@@ -22,6 +22,7 @@ from desktop.answers import Answers
 from desktop.document import Document
 from desktop.pages.page_parts import label
 from desktop.pages.question_page import QuestionPage
+from desktop.tables.crew_text import counts_text
 from desktop.tables.own_crew import with_own
 from desktop.tables.quiet_view import QuietView
 from desktop.tables.shown_table import ShownColumn, ShownTable
@@ -58,8 +59,7 @@ def _counts(name: str) -> Any:
 
     def text(crew: NearCrew) -> str:
         counts = crew.crew.get(name, ())
-        shown = counts[:1] if len(set(counts)) == 1 else counts
-        return "/".join(figures.people(n) for n in shown)
+        return counts_text(counts) if counts else ""
 
     return text
 
@@ -81,7 +81,7 @@ class NearPage(QuestionPage):
         self.take.setToolTip(say.TIP_TAKE_THIS)
         self.told = label(tone="faint")
         self.table: ShownTable[NearCrew] = ShownTable(parent=self)
-        self.view = QuietView(say.TAKE_THIS)
+        self.view = QuietView(say.TAKE_THIS, wrapped=True)
         self._asked_soon = QTimer(self, singleShot=True, interval=_ASK_AFTER)
         self._set_up()
         self.body.addLayout(self._limits())
@@ -112,9 +112,11 @@ class NearPage(QuestionPage):
     def _limits(self) -> QHBoxLayout:
         line = QHBoxLayout()
         line.setSpacing(current().px(1))
-        for name, box in ((say.WITHIN, self.within), (say.MOST, self.most)):
+        for name, box, after in ((say.WITHIN, self.within, say.OF_EXACT), (say.MOST, self.most, "")):
             line.addWidget(QLabel(name))
             line.addWidget(box)
+            if after:
+                line.addWidget(QLabel(after))
         line.addStretch(1)
         line.addWidget(self.take)
         return line
@@ -128,6 +130,7 @@ class NearPage(QuestionPage):
         plan = self.answers.plan
         there = detail is not None and plan is not None
         self.view.setVisible(there)
+        self.told.setVisible(there)
         self.take.setEnabled(there and detail is not None and bool(detail.crews))
         if detail is None or plan is None:
             return

@@ -60,7 +60,7 @@ def _scrolling(inside: QWidget) -> QScrollArea:
     return made
 
 
-class _Inside(QWidget):
+class Inside(QWidget):
     """As high as its content is at its width; Qt would take what wrapped texts need at their narrowest."""
 
     def event(self, event: QEvent) -> bool:
@@ -84,7 +84,7 @@ class AnswerPage(QWidget):
         super().__init__(parent)
         self.answers = answers
         self.notice = label(size=Size.BODY, tone="faint")
-        self.inside = _Inside()
+        self.inside = Inside()
         self.body = QVBoxLayout(self.inside)
         self.caution = label(CAUTION, Size.SMALL, "faint")
         self._holder = _scrolling(self.inside)

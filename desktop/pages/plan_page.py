@@ -7,8 +7,10 @@ from collections.abc import Mapping, Sequence
 from PySide6.QtCore import QSettings, Qt, QTimer, Signal
 from PySide6.QtGui import QResizeEvent
 from PySide6.QtWidgets import (
+    QBoxLayout,
     QHBoxLayout,
     QLabel,
+    QLayout,
     QScrollArea,
     QSplitter,
     QToolButton,
@@ -116,7 +118,8 @@ class PlanPage(QWidget):
             below.setStretchFactor(at, share)
             below.setCollapsible(at, False)
         whole = self._whole
-        whole.addWidget(_part(CATEGORIES.title, self._category_buttons(), self.categories))
+        self._category_head = QBoxLayout(QBoxLayout.Direction.LeftToRight)
+        whole.addWidget(self._categories_part())
         whole.addWidget(below)
         for at, share in enumerate((5, 4)):
             whole.setStretchFactor(at, share)
@@ -133,11 +136,18 @@ class PlanPage(QWidget):
         layout.addWidget(thin_rule())
         layout.addWidget(label(messages.CAUTION, theme.Size.SMALL, "faint"))
 
-    def _category_buttons(self) -> list[QWidget]:
+    def _categories_part(self) -> QWidget:
+        """Heading and hours; what else can be seen beside them or, in a narrow window, below."""
         hours = _button(hours_words.BUTTON, hours_words.BUTTON_TIP)
         hours.clicked.connect(self.categories.work_out_hours)
+        first, more = _line([heading(CATEGORIES.title)], [hours]), _line([], self._category_buttons())
+        self._category_head.addLayout(first, 1)
+        self._category_head.addLayout(more)
+        return _below_head(self._category_head, self.categories)
+
+    def _category_buttons(self) -> list[QWidget]:
         more = theme.dress(QLabel(messages.MORE_COLUMNS), theme.Size.SMALL, "faint")
-        made: list[QWidget] = [hours, more]
+        made: list[QWidget] = [more]
         for key, title, tooltip in CATEGORIES.groups:
             button = _button(title, tooltip)
             button.setCheckable(True)
@@ -226,6 +236,8 @@ class PlanPage(QWidget):
         super().resizeEvent(event)
         wide = self.width() >= theme.current().px(_WIDE)
         self._below.setOrientation(Qt.Orientation.Horizontal if wide else Qt.Orientation.Vertical)
+        direction = QBoxLayout.Direction
+        self._category_head.setDirection(direction.LeftToRight if wide else direction.TopToBottom)
         self._share_soon.start()
 
 
@@ -239,12 +251,22 @@ def _button(title: str, tooltip: str) -> QToolButton:
 
 def _part(title: str, buttons: Sequence[QWidget], view: QWidget) -> QWidget:
     """A heading with its buttons over a view."""
+    return _below_head(_line([heading(title)], buttons), view)
+
+
+def _line(left: Sequence[QWidget], right: Sequence[QWidget]) -> QHBoxLayout:
+    """Widgets at the left and at the right of a line."""
+    made = QHBoxLayout()
+    for widget in left:
+        made.addWidget(widget)
+    made.addStretch(1)
+    for widget in right:
+        made.addWidget(widget)
+    return made
+
+
+def _below_head(head: QLayout, view: QWidget) -> QWidget:
     made = QWidget()
-    head = QHBoxLayout()
-    head.addWidget(heading(title))
-    head.addStretch(1)
-    for button in buttons:
-        head.addWidget(button)
     layout = QVBoxLayout(made)
     layout.setContentsMargins(0, 0, 0, 0)
     layout.setSpacing(theme.current().px(0.5))

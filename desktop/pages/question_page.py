@@ -12,6 +12,7 @@ from desktop.document import Document
 from desktop.pages.page_parts import AnswerPage, label
 from desktop.tables.own_crew import with_own
 from desktop.theme import current
+from solver.answer import State
 from solver.plan import Plan
 
 
@@ -119,7 +120,11 @@ class QuestionPage(AnswerPage):
     def _idle_text(self, known: object) -> str:
         if known is not None:
             return ""
-        return say.CANCELLED if self._cancelled else "" if self.can_ask() else say.NEEDS_CREW
+        if self._cancelled or self.can_ask():
+            return say.CANCELLED if self._cancelled else ""
+        answer = self.answers.answer
+        impossible = answer is not None and answer.state is State.IMPOSSIBLE
+        return say.NEEDS_MENDING if impossible else say.NEEDS_CREW
 
     def _on_detail(self, question: str) -> None:
         if question == self.question:

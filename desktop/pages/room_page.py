@@ -13,14 +13,14 @@ from desktop.answers import Answers
 from desktop.document import Document
 from desktop.pages.page_parts import heading, label
 from desktop.pages.question_page import QuestionPage
-from desktop.tables.crew_text import crew_text
+from desktop.tables.crew_text import changes_text
 from desktop.tables.quiet_view import QuietView
 from desktop.tables.shown_table import ShownColumn, ShownTable
-from solver.answer import LineRoom, PayRange, Room
+from solver.answer import Crew, LineRoom, PayRange, Room
 from solver.plan import Plan
 
 
-def line_columns(plan: Plan) -> list[ShownColumn[LineRoom]]:
+def line_columns(plan: Plan, exact: Crew) -> list[ShownColumn[LineRoom]]:
     """What is told of each line: exact room first, the price for fractional people last and apart."""
     return [
         ShownColumn(say.TIGHTEN, say.TIP_TIGHTEN, lambda r: figures.quantity(r.tighten, r.unit)),
@@ -31,8 +31,15 @@ def line_columns(plan: Plan) -> list[ShownColumn[LineRoom]]:
             lambda r: figures.money(r.saving) if r.saving else "",
             bold=True,
         ),
-        ShownColumn(say.NEXT_CREW, say.TIP_NEXT_CREW, lambda r: _next_crew(plan, r), left=True, tone="exact"),
-        ShownColumn(say.DUAL, say.TIP_DUAL, lambda r: figures.number(r.dual_price), tone="fractional"),
+        ShownColumn(
+            say.NEXT_CREW, say.TIP_NEXT_CREW, lambda r: _next_crew(plan, exact, r), left=True, tone="exact"
+        ),
+        ShownColumn(
+            say.in_unit(say.DUAL, plan.currency),
+            say.TIP_DUAL,
+            lambda r: figures.number(r.dual_price),
+            tone="fractional",
+        ),
         ShownColumn(say.DUAL_RANGE, say.TIP_DUAL_RANGE, _dual_range, tone="fractional"),
     ]
 
@@ -41,8 +48,8 @@ def _loosen(room: LineRoom) -> str:
     return figures.quantity(room.loosen, room.unit) if room.loosen is not None else say.NOT_BY_LOOSENING
 
 
-def _next_crew(plan: Plan, room: LineRoom) -> str:
-    return crew_text(plan, room.next_crew) if room.next_crew else ""
+def _next_crew(plan: Plan, exact: Crew, room: LineRoom) -> str:
+    return changes_text(plan, exact, room.next_crew) if room.next_crew else ""
 
 
 def _dual_range(room: LineRoom) -> str:
@@ -89,7 +96,7 @@ class RoomPage(QuestionPage):
         super().__init__(document, answers, parent)
         self.lines: ShownTable[LineRoom] = ShownTable(title=self._line_title, parent=self)
         self.pay: ShownTable[PayRange] = ShownTable(title=lambda r, _at: r.category, parent=self)
-        self.line_view, self.pay_view = QuietView(say.ROOM_LINES), QuietView(say.ROOM_PAY)
+        self.line_view, self.pay_view = QuietView(say.ROOM_LINES, wrapped=True), QuietView(say.ROOM_PAY)
         self.sentence = label(say.CHOOSE_LINE)
         for view, model in ((self.line_view, self.lines), (self.pay_view, self.pay)):
             view.setModel(model)
@@ -111,12 +118,18 @@ class RoomPage(QuestionPage):
 
     def show_detail(self, detail: Room | None) -> None:
         """Fill both tables."""
-        plan = self.answers.plan
+        plan, answer = self.answers.plan, self.answers.answer
+        exact = answer.exact if answer is not None else None
         for widget in self._parts:
             widget.setVisible(detail is not None and plan is not None)
-        if detail is None or plan is None or self.lines.rows == tuple(by_saving(detail.lines)):
+        if (
+            detail is None
+            or plan is None
+            or exact is None
+            or self.lines.rows == tuple(by_saving(detail.lines))
+        ):
             return
-        self.lines.show(by_saving(detail.lines), line_columns(plan))
+        self.lines.show(by_saving(detail.lines), line_columns(plan, exact.crew))
         self.pay.show(detail.pay, pay_columns(plan))
         self.line_view.share_width(i for i, column in enumerate(self.lines.columns) if column.left)
         self.line_view.setCurrentIndex(self.lines.index(0, 0))

@@ -16,7 +16,7 @@ from desktop.tables.margins import MarginDelegate, MarginTable
 from desktop.tables.quiet_view import QuietView
 from solver.answer import Policy
 
-_ROW_STEPS = 4.25
+_ROW_STEPS = 4
 _ALL_ROOM = 1000  # the grid takes what there is, up to its own height
 
 

@@ -77,7 +77,7 @@ class StepsPage(QuestionPage):
         self.accuracy = label(tone="faint")
         self.picture: Staircase | None = None
         self.table: ShownTable[Step] = ShownTable(parent=self)
-        self.view = QuietView(say.STEPS)
+        self.view = QuietView(say.STEPS, wrapped=True)
         self._asked_soon = QTimer(self, singleShot=True, interval=_ASK_AFTER)
         self._shown: Steps | None = None
         self._set_up()

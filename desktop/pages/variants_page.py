@@ -33,7 +33,7 @@ from desktop.traffic import start_folder
 from solver.answer import Answer
 
 _ONE_LINE = 20  # letters of a title that stay in one line
-_NARROWEST = 22  # width of a column, in steps of the grid
+_NARROWEST, _WIDEST = 22, 38  # width of a column, in steps of the grid
 
 
 class VariantsPage(QWidget):
@@ -116,7 +116,10 @@ class VariantsPage(QWidget):
         whole.addLayout(head)
         whole.addWidget(self.hint)
         whole.addLayout(line)
-        whole.addWidget(self.view, 1)
+        across = QHBoxLayout()
+        across.addWidget(self.view, 1000)
+        across.addStretch(1)
+        whole.addLayout(across, 1)
         whole.addWidget(self.problems)
         whole.addStretch(0)
         whole.addWidget(thin_rule())
@@ -182,7 +185,8 @@ class VariantsPage(QWidget):
         self._show_buttons()
 
     def _fit(self) -> None:
-        """Columns wide enough for money and its share; where there are many the table scrolls."""
+        """Columns wide enough for money and its share, near enough to be read across; many of them scroll."""
+        self.view.setMaximumWidth(current().px(_WIDEST * (1 + len(self.table.compared))))
         self.view.refit()
         self.view.horizontalHeader().setMinimumSectionSize(current().px(_NARROWEST))
 

@@ -74,9 +74,13 @@ def _above(spot: Spot, here: Spot, dy: int) -> bool:
     return spot.x == here.x and (spot.y - here.y) * dy > 0
 
 
+def _how_many(count: float) -> str:
+    return figures.people(count) if count else say.NOBODY_OF
+
+
 def spot_sentence(shown: CrewSpots, spot: Spot) -> str:
     """A whole crew in words: who, what it costs or what it breaks, and its names."""
-    crew = say.pair(figures.people(spot.x), shown.across, figures.people(spot.y), shown.up)
+    crew = say.pair(_how_many(spot.x), shown.across, _how_many(spot.y), shown.up)
     names = [name for named in shown.named if (named.x, named.y) == (spot.x, spot.y) for name in named.names]
     told = f"{crew} ({say.listed(names)})" if names else crew
     if not spot.workable:

@@ -12,6 +12,7 @@ from solver.answer import Crew, FloorPoint, RoundedPoint, Step, Steps
 from solver.plan import Plan
 
 _SAME = 1e-9
+_FEW_CENTS = 0.005
 
 
 def stair_path(steps: Sequence[Step]) -> tuple[list[float], list[float]]:
@@ -87,5 +88,6 @@ def holds_sentence(plan: Plan, steps: Steps, amount: float) -> str:
         return say.holds_to_the_end(upto)
     following = steps.steps[at + 1]
     change = changes(plan, step.crew, following.crew)
-    more = figures.money(following.cost_from - step.cost, plan.currency)
-    return say.holds_up_to(upto, say.listed(change) or say.ANOTHER_SPREAD, more)
+    more = following.cost_from - step.cost
+    cost = figures.money(more, plan.currency) if more > _FEW_CENTS else ""
+    return say.holds_up_to(upto, say.listed(change) or say.ANOTHER_SPREAD, cost)

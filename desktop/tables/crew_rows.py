@@ -108,16 +108,17 @@ def total_rows(plan: Plan, exact_cost: float | None) -> list[CrewRow]:
     unit = plan.currency
     made = [
         total(say.PEOPLE, say.TIP_PEOPLE, _people(plan)),
-        total(say.JOINERS, say.TIP_JOINERS, _of_report(lambda r: figures.people(r.joiners))),
-        total(say.LEAVERS, say.TIP_LEAVERS, _of_report(lambda r: figures.people(r.leavers))),
         total(say.in_unit(say.COST, unit), say.TIP_COST, _cost),
         total(say.in_unit(say.MORE, unit), say.TIP_MORE, _more(exact_cost)),
+        total(say.VERDICT, say.TIP_VERDICT, _verdict),
+        total(say.JOINERS, say.TIP_JOINERS, _of_report(lambda r: figures.people(r.joiners))),
+        total(say.LEAVERS, say.TIP_LEAVERS, _of_report(lambda r: figures.people(r.leavers))),
     ]
     if any(c.overtime_hours for c in plan.categories):
         made.append(total(say.OVERTIME, say.TIP_OVERTIME, _of_report(_overtime)))
     if any(w.buy_in_price is not None for w in plan.works):
         made.append(total(say.BOUGHT_IN, say.TIP_BOUGHT_IN, _of_report(lambda r: _bought_in(r, plan))))
-    return [*made, total(say.VERDICT, say.TIP_VERDICT, _verdict)]
+    return made
 
 
 def _people(plan: Plan) -> Callable[[CrewColumn], str]:

@@ -18,7 +18,7 @@ from desktop.pictures.copyable import plain_tip
 from desktop.tables.crew_rows import CrewColumn, CrewRow, RowKind, count_rows, crew_columns, total_rows
 from desktop.tables.numbers import Refused
 from desktop.tables.own_crew import own_count, own_started, with_own
-from desktop.tables.shown_model import Index, ShownModel, side
+from desktop.tables.shown_model import Index, ShownModel, row_title_side, side
 from desktop.theme import Size, current
 from solver.answer import Answer, Policy
 from solver.plan import Plan
@@ -173,7 +173,7 @@ class CrewTable(ShownModel[CrewRow, CrewColumn]):
         if role == Qt.ItemDataRole.ToolTipRole:
             return plain_tip(entry.tip)
         if role == Qt.ItemDataRole.TextAlignmentRole:
-            return side(left=not across)
+            return side(left=False) if across else row_title_side()
         return None
 
 

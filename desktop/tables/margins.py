@@ -16,7 +16,7 @@ from desktop.pictures.copyable import plain_tip
 from desktop.pictures.margin_bars import is_broken, paint_absent, paint_margin
 from desktop.tables.crew_rows import crew_heading
 from desktop.tables.margin_rows import MarginRow, margin_columns, margin_rows
-from desktop.tables.shown_model import Index, ShownModel, side
+from desktop.tables.shown_model import Index, ShownModel, row_title_side, side
 from desktop.theme import Size, current
 from solver.answer import Answer, CrewReport
 from solver.plan import Plan
@@ -93,7 +93,7 @@ class MarginTable(ShownModel[MarginRow, CrewReport]):
         if not 0 <= section < (len(self._columns) if across else len(self._rows)):
             return None
         if role == Qt.ItemDataRole.TextAlignmentRole:
-            return side(left=not across)
+            return side(left=False) if across else row_title_side()
         if across:
             title, means = self._headings[section]
             tip = "\n".join(part for part in (means, self._columns[section].why_none) if part)

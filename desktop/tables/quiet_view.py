@@ -4,8 +4,25 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 
-from PySide6.QtCore import QAbstractItemModel, QModelIndex, QPersistentModelIndex, QSize, Qt
-from PySide6.QtGui import QAction, QColor, QGuiApplication, QKeySequence, QPainter, QResizeEvent
+from PySide6.QtCore import (
+    QAbstractItemModel,
+    QEvent,
+    QModelIndex,
+    QPersistentModelIndex,
+    QRect,
+    QSize,
+    Qt,
+    QTimer,
+)
+from PySide6.QtGui import (
+    QAction,
+    QColor,
+    QGuiApplication,
+    QKeySequence,
+    QPainter,
+    QResizeEvent,
+    QShowEvent,
+)
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QHeaderView,
@@ -21,8 +38,9 @@ from desktop.pictures.copyable import data_text
 from desktop.theme import current
 
 _MOST_TITLE, _LEAST_TITLE = 34, 14  # width of row titles, in steps of the grid
-_TITLE_SHARE = 0.27
+_TITLE_SHARE = 0.24
 _LEAST_ROWS = 5
+_LEAST_TEXT = 24  # width of a column of texts, in steps of the grid
 
 
 class GroundDelegate(QStyledItemDelegate):
@@ -42,17 +60,29 @@ class QuietView(QTableView):
     """Rows and columns without frames; Ctrl+C copies the selection with its titles."""
 
     def __init__(
-        self, name: str, row_steps: float = 3.25, parent: QWidget | None = None, *, fitted: bool = True
+        self,
+        name: str,
+        row_steps: float = 3.25,
+        parent: QWidget | None = None,
+        *,
+        fitted: bool = True,
+        wrapped: bool = False,
     ) -> None:
-        """`fitted`: as high as its rows, for pages that scroll; otherwise it scrolls itself."""
+        """`fitted`: as high as its rows, for pages that scroll; otherwise it scrolls itself.
+
+        `wrapped`: texts take as many lines as they need; titles of rows always do.
+        """
         super().__init__(parent)
         self._row_steps = row_steps
         self._fitted = fitted
+        self._wide: set[int] = set()
+        self._refit_soon = QTimer(self, singleShot=True, interval=0)
+        self._refit_soon.timeout.connect(self.refit)
         self.setObjectName("quiet")
         self.setItemDelegate(GroundDelegate(self))
         self.setAccessibleName(name)
         self.setTabKeyNavigation(False)
-        self.setWordWrap(False)
+        self.setWordWrap(wrapped)
         self.setShowGrid(False)
         self.setCornerButtonEnabled(False)
         if fitted:
@@ -73,17 +103,35 @@ class QuietView(QTableView):
         across.setHighlightSections(False)
         across.setMinimumSectionSize(current().px(8))
         down.setHighlightSections(False)
-        down.setTextElideMode(Qt.TextElideMode.ElideRight)
         down.setSectionResizeMode(QHeaderView.ResizeMode.Fixed)
         down.setDefaultAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
         down.setMaximumWidth(current().px(_MOST_TITLE))
 
     def share_width(self, wide: Iterable[int]) -> None:
         """Columns as narrow as their content, but those in `wide`, which share what is left."""
-        header, chosen = self.horizontalHeader(), set(wide)
+        header = self.horizontalHeader()
+        self._wide = set(wide)
         for column in range(header.count()):
-            mode = header.ResizeMode.Stretch if column in chosen else header.ResizeMode.ResizeToContents
-            header.setSectionResizeMode(column, mode)
+            if column not in self._wide:
+                header.setSectionResizeMode(column, header.ResizeMode.ResizeToContents)
+        self._fit_texts()
+        self._refit_soon.start()
+
+    def _fit_texts(self) -> None:
+        """Texts share what is left; where that is too little to read, the table scrolls sideways."""
+        header = self.horizontalHeader()
+        wide = [column for column in sorted(self._wide) if column < header.count()]
+        if not wide:
+            return
+        others = sum(header.sectionSize(c) for c in range(header.count()) if c not in self._wide)
+        least = current().px(_LEAST_TEXT)
+        narrow = self.viewport().width() - others < least * len(wide)
+        for column in wide:
+            header.setSectionResizeMode(
+                column, header.ResizeMode.Fixed if narrow else header.ResizeMode.Stretch
+            )
+            if narrow:
+                header.resizeSection(column, least)
 
     def copy_selection(self) -> None:
         """Put the selected cells, or all where nothing is selected, on the clipboard with their titles."""
@@ -104,22 +152,45 @@ class QuietView(QTableView):
 
     def refit(self) -> None:
         """Take the height of the rows, after rows or zoom changed."""
-        self.verticalHeader().setDefaultSectionSize(current().px(self._row_steps))
         self._limit_titles()
         self.horizontalHeader().setMinimumSectionSize(current().px(8))
-        rows = self.model().rowCount() if self.model() is not None else 0
+        self._fit_texts()
+        rows = self._fit_rows()
         header = self.horizontalHeader().sizeHint().height()
         scroll = self.horizontalScrollBar()
         bar = scroll.sizeHint().height() if scroll.maximum() > 0 else 0
-        height = header + rows * current().px(self._row_steps) + bar + 2
+        height = header + rows + bar + 2
         if self._fitted:
             self.setFixedHeight(height)
         else:
             self.setMaximumHeight(height)
             self.setMinimumHeight(min(height, header + _LEAST_ROWS * current().px(self._row_steps)))
 
+    def _fit_rows(self) -> int:
+        """Rows as high as the grid says, higher where texts take several lines; the sum of them."""
+        down, least = self.verticalHeader(), current().px(self._row_steps)
+        down.setDefaultSectionSize(least)
+        room = down.maximumWidth() - 2 * current().px(1)
+        total = 0
+        for row in range(self.model().rowCount() if self.model() is not None else 0):
+            cells = self.sizeHintForRow(row) if self.wordWrap() else 0
+            high = max(least, cells, self._title_height(row, room))
+            if down.sectionSize(row) != high:
+                down.resizeSection(row, high)
+            total += high
+        return total
+
+    def _title_height(self, row: int, room: int) -> int:
+        """What the title of a row needs in `room` pixels of width."""
+        title = str(self.model().headerData(row, Qt.Orientation.Vertical) or "")
+        metrics = self.verticalHeader().fontMetrics()
+        if metrics.horizontalAdvance(title) <= room:
+            return 0
+        lines = metrics.boundingRect(QRect(0, 0, room, 10_000), Qt.TextFlag.TextWordWrap.value, title)
+        return lines.height() + current().px(1) + 2  # as the style sheet pads it
+
     def _limit_titles(self) -> None:
-        """Row titles take at most their part of the width; longer ones are cut, with a tooltip."""
+        """Row titles take at most their part of the width; longer ones take several lines."""
         theme = current()
         most = max(theme.px(_LEAST_TITLE), min(theme.px(_MOST_TITLE), round(self.width() * _TITLE_SHARE)))
         self.verticalHeader().setMaximumWidth(most)
@@ -135,6 +206,19 @@ class QuietView(QTableView):
         """Follow the width."""
         self._limit_titles()
         super().resizeEvent(event)
+        if event.size().width() != event.oldSize().width():
+            self._refit_soon.start()
+
+    def showEvent(self, event: QShowEvent) -> None:
+        """Follow a zoom that was changed while nobody saw the table."""
+        super().showEvent(event)
+        self._refit_soon.start()
+
+    def changeEvent(self, event: QEvent) -> None:
+        """Follow the zoom, when the headers have the font as well."""
+        super().changeEvent(event)
+        if event.type() == QEvent.Type.FontChange and hasattr(self, "_refit_soon"):
+            self._refit_soon.start()
 
     def minimumSizeHint(self) -> QSize:
         """As high as the content needs, narrower."""

@@ -44,6 +44,11 @@ class ShownModel(QAbstractTableModel, Generic[R, C]):
         return 0 if parent.isValid() else len(self._columns)
 
 
+def row_title_side() -> int:
+    """Titles of rows stand at the left and take several lines where they are long."""
+    return side(left=True).value | Qt.TextFlag.TextWordWrap.value
+
+
 def side(*, left: bool) -> Qt.AlignmentFlag:
     """Where a text stands in its cell: at the left or, as numbers do, at the right."""
     return Qt.AlignmentFlag.AlignVCenter | (

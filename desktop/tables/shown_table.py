@@ -10,7 +10,7 @@ from PySide6.QtCore import Qt
 
 from desktop.pictures.copyable import plain_tip
 from desktop.tables.shown_model import Index as Index
-from desktop.tables.shown_model import ShownModel, side
+from desktop.tables.shown_model import ShownModel, row_title_side, side
 from desktop.theme import current
 
 R = TypeVar("R")
@@ -78,7 +78,7 @@ class ShownTable(ShownModel[R, ShownColumn[R]]):
         if not 0 <= section < (len(self._columns) if across else len(self._rows)):
             return None
         if role == Qt.ItemDataRole.TextAlignmentRole:
-            return side(left=not across or self._columns[section].left)
+            return side(left=self._columns[section].left) if across else row_title_side()
         if role not in (Qt.ItemDataRole.DisplayRole, Qt.ItemDataRole.ToolTipRole):
             return None
         if not across:

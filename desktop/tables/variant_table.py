@@ -11,6 +11,7 @@ from PySide6.QtCore import Qt
 from desktop import figures
 from desktop import variant_words as say
 from desktop.comparison import Compared, Stage
+from desktop.tables.crew_text import counts_text
 from desktop.tables.shown_table import Index, ShownColumn, ShownTable
 from desktop.theme import current
 from solver.answer import Answer, State
@@ -74,8 +75,7 @@ def _counts(name: str) -> Callable[[Compared], str]:
         counts = exact.crew.get(name) if exact else None
         if not counts:
             return say.NOT_THERE
-        shown = counts[:1] if len(set(counts)) == 1 else counts
-        return "/".join(figures.people(n) for n in shown)
+        return counts_text(counts)
 
     return text
 

@@ -153,7 +153,7 @@ def test_several_phases_have_a_row_each(make):
 
 def test_what_binds_is_ordered_by_what_loosening_would_save(hillside, monkeypatch):
     page, _, answers = hillside
-    assert page.binding.text().splitlines() == ["Planting", "First aid"]
+    assert page.binding.text().splitlines() == ["\u2022 Planting", "\u2022 First aid"]
 
     def line(name, saving):
         phase = "Whole job"
@@ -163,9 +163,9 @@ def test_what_binds_is_ordered_by_what_loosening_would_save(hillside, monkeypatc
     monkeypatch.setattr(answers, "detail", lambda question: room if question == "room" else None)
     answers.detail_changed.emit("room")
     first, second = page.binding.text().splitlines()
-    assert first.startswith("First aid")
+    assert first.startswith("\u2022 First aid")
     assert "900" in first
-    assert second.startswith("Planting")
+    assert second.startswith("\u2022 Planting")
 
 
 def test_the_caution_stands_at_the_foot(hillside):

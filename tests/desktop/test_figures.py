@@ -40,6 +40,10 @@ def test_people(x, english, german):
         (99.96, "h", f"100{NB}h"),
         (0, "h", "–"),
         (3, "", "3"),
+        (1, "people", f"1{NB}person"),
+        (-1, "hours", f"−1{NB}hour"),
+        (0.5, "people", f"0.5{NB}people"),
+        (1, "trees", f"1{NB}trees"),  # units of the planner stay as typed
     ],
 )
 def test_quantity(x, unit, text):

@@ -48,7 +48,7 @@ def test_a_proved_crew_in_words(document, answers):
     assert facts == [
         "costs EUR 133,690",
         "floor EUR 131,245.50",
-        "whole people cost EUR 2,444.50 (1.83 %)",
+        "whole-people cost EUR 2,444.50 (1.83 %)",
         "19.5 join",
     ]
     assert (words.sign, words.state, words.tone, words.loud) == ("✓", "proved cheapest", "exact", True)
@@ -70,7 +70,7 @@ def test_phases_give_ranges_and_best_found_its_gap(qapp):
     assert (words.sign, words.tone) == ("△", "ink")
     state = words.state.replace("\u00a0", " ")
     assert state == "best found, at most EUR 350 (0.5 %) above the cheapest possible"
-    assert "whole people cost" not in words.facts  # not known before the crew is proved
+    assert "whole-people" not in words.facts  # not known before the crew is proved
     answers.receive(document.plan, replace(samples.museum_answer(), bound=None))
     assert said(document, answers).state == "best found, not proved"
 
@@ -152,10 +152,15 @@ def bar(document, answers, qtbot):
 
 def test_the_bar_leaves_out_what_has_no_room(bar, document, answers):
     answers.receive(document.plan, samples.hillside_answer())
-    bar.resize(1100, 80)
-    assert bar.crew.text() == "3 Lead hand, 9 Contract hand, 6 Learner and 2 more"
     bar.resize(2000, 80)
     assert bar.crew.text().endswith("0.5 First-aider")
+    assert not bar.crew.styleSheet()
+    bar.resize(1100, 80)
+    assert bar.crew.text().endswith("0.5 First-aider")  # all of them, a little smaller
+    assert 12.4 <= bar.crew.font().pointSizeF() < 20
+    bar.resize(760, 80)
+    assert bar.crew.text() == "3 Lead hand, 9 Contract hand and 3 more"
+    assert not bar.crew.styleSheet()
     bar.resize(500, 80)
     assert "more" in bar.crew.text()
     assert "First-aider" in bar.crew.toolTip()

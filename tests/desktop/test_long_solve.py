@@ -75,7 +75,7 @@ def test_better_crews_come_into_the_headline_one_by_one(made, qtbot):
     found = [state for n, (state, loud) in enumerate(seen) if loud and state not in [s for s, _ in seen[:n]]]
     assert found == ["△ at most EUR 160 (11.1 %) above the cheapest possible, still improving", SO_FAR]
     assert "costs EUR 1,380" in spaced(bar.facts.text())
-    assert "whole people" not in bar.facts.text()
+    assert "whole-people" not in bar.facts.text()
     assert "less than EUR 1,290" in spaced(bar.state.toolTip())
     assert not bar.further_button.isVisible()
     assert answers.status is Status.SOLVING

@@ -5,12 +5,13 @@ from PySide6.QtCore import QPointF, QRectF, QSizeF, Qt
 
 from desktop.pages.map_page import MapPage, named_spots
 from desktop.pictures.crew_map import CrewMap
-from desktop.pictures.crew_spots import Spot, SpotKind, nearest_spot, next_spot, spot_sentence
+from desktop.pictures.crew_spots import CrewSpots, Spot, SpotKind, nearest_spot, next_spot, spot_sentence
 from desktop.pictures.name_places import Name, placed
 from solver.mapanswer import CrewMap as MapAnswer
 from solver.mapanswer import MapPoint
 from tests.desktop import samples
 from tests.desktop.test_question_pages import make as make
+from tests.desktop.test_question_pages import turn_impossible
 
 NB = "\u00a0"
 
@@ -189,3 +190,15 @@ def test_the_key_stands_above_the_map(page):
     key = item.legend.mapRectToScene(item.legend.rect())
     assert key.bottom() <= item.getViewBox().sceneBoundingRect().top() + 1
     assert len(item.legend.items) == 3
+
+
+def test_what_was_told_of_a_map_goes_with_it(page):
+    assert page.sentence.text()
+    turn_impossible(page.document, page.answers)
+    assert page.sentence.text() == ""
+
+
+def test_nobody_on_the_map_is_told_in_words():
+    spot = Spot(1, 0, True, 10.0, ())
+    shown = CrewSpots("Contract hand", "Fencing gang", "EUR", (), (spot,), (), None)
+    assert spot_sentence(shown, spot).startswith("1 Contract hand and no Fencing gang")

@@ -4,12 +4,14 @@ from decimal import Decimal
 import pytest
 from PySide6.QtCore import Qt
 
+from desktop import theme
 from desktop.answers import Answers
 from desktop.messages import CAUTION
 from desktop.pages.cost_page import CostPage
 from desktop.pages.near_page import NearPage
 from desktop.pages.room_page import RoomPage
 from desktop.pictures.named_bars import scale_of
+from desktop.tables.crew_text import changes_text, counts_text
 from desktop.understanding import Progress
 from tests.desktop import samples
 from tests.desktop.detail_samples import cost_detail, near_detail, room_detail
@@ -80,7 +82,8 @@ def test_cancel_stops_until_asked_again(make, qtbot):
 def test_nothing_is_asked_of_an_impossible_plan(make):
     page, _, answers = make(CostPage, answer=samples.impossible_answer())
     assert answers.asked == []
-    assert page.says.text() == "This needs an exact crew first."
+    assert page.says.text().startswith("This needs an exact crew, and no crew can meet the plan")
+    assert "To mend" in page.says.text()  # what to do next
     assert not page.ladder.isVisible()
 
 
@@ -116,7 +119,7 @@ def test_room_puts_the_largest_saving_first(make, qtmodeltester):
     assert page.lines.headerData(0, Qt.Orientation.Vertical) == "Supervision by Lead hand"
     assert page.lines.index(0, 1).data() == f"12{NB}h"
     assert page.lines.index(0, 2).data() == "1,980"
-    assert "9 Contract hand".replace(" ", NB, 1) in page.lines.index(0, 3).data()
+    assert page.lines.index(0, 3).data() == f"\u22121{NB}Lead hand"  # what changes, not the whole crew again
     assert page.lines.index(2, 1).data() == "none"
     assert page.sentence.text() == page.lines.rows[0].says
     page.line_view.setCurrentIndex(page.lines.index(1, 0))
@@ -128,7 +131,7 @@ def test_the_dual_price_is_named_as_one_for_fractional_people(make):
     page, _, answers = make(RoomPage)
     answers.give("room", room_detail())
     column = next(c for c in page.lines.columns if "Price" in c.title)
-    assert "fractional people" in column.title
+    assert column.title.replace("\n", " ") == "Price for fractional people (EUR)"
     assert "does not hold for whole people" in column.tip
 
 
@@ -176,3 +179,58 @@ def test_other_limits_ask_again(make, qtbot):
     page.within.setValue(5)
     qtbot.waitUntil(lambda: len(answers.asked) == 2)
     assert answers.asked[-1] == ("near", {"within": 5.0, "most": 20})
+
+
+def test_a_table_nobody_saw_follows_the_zoom(make, qapp, qtbot):
+    page, _, answers = make(NearPage)
+    answers.give("near", near_detail())
+    before = page.view.verticalHeader().sectionSize(0)
+    page.hide()
+    theme.apply(qapp, replace(theme.light(), zoom=1.5))
+    try:
+        page.show()
+        qtbot.waitUntil(lambda: page.view.verticalHeader().sectionSize(0) >= 1.4 * before)
+        assert page.view.height() >= page.view.verticalHeader().length()
+    finally:
+        theme.apply(qapp, theme.light())
+
+
+def test_what_was_told_of_another_plan_goes_with_its_answer(make):
+    page, document, answers = make(NearPage)
+    answers.give("near", near_detail())
+    assert page.told.isVisible()
+    turn_impossible(document, answers)
+    assert not page.told.isVisible()
+
+
+def turn_impossible(document, answers):
+    """Another plan comes, and no crew can meet it."""
+    answers.given.clear()
+    document.edit("x", replace(document.plan, rules=()))
+    answers.receive(document.plan, samples.impossible_answer())
+
+
+def test_counts_of_phases_and_changes_of_crews_in_words():
+    plan = samples.museum_plan()
+    exact = samples.museum_answer().exact.crew
+    more = {**exact, "Porter": (exact["Porter"][0], exact["Porter"][1] + 1, exact["Porter"][2])}
+    phase = plan.phases[1].name
+    assert counts_text((2.0, 2.0)) == "2"
+    assert counts_text((0.0, 4.0, 5.0)) == "0/4/5"  # a dash beside a stroke reads as neither
+    assert changes_text(plan, exact, more) == f"+1{NB}Porter in {phase}"
+    assert (
+        changes_text(plan, exact, {**exact, "Porter": tuple(n - 1 for n in exact["Porter"])})
+        == f"\u22121{NB}Porter"
+    )
+    assert changes_text(plan, exact, exact) == "the same people, at less cost"
+
+
+def test_texts_too_long_for_their_row_take_several_lines(make, qtbot):
+    page, _, answers = make(RoomPage)
+    detail = room_detail()
+    long_name = "Supervision by Registrar or Conservator or Head of the store"
+    answers.give("room", replace(detail, lines=(replace(detail.lines[0], line=long_name), *detail.lines[1:])))
+    at = next(i for i, row in enumerate(page.lines.rows) if row.line == long_name)
+    rows = page.line_view.verticalHeader()
+    other = next(i for i in range(len(page.lines.rows)) if i != at)
+    qtbot.waitUntil(lambda: rows.sectionSize(at) > rows.sectionSize(other))
