@@ -60,8 +60,18 @@ QMenuBar {{ background: {paper}; color: {ink}; }}
 QMenuBar::item:selected, QMenu::item:selected {{ background: {selected}; color: {ink}; }}
 QMenu {{ background: {cell}; color: {ink}; border: 1px solid {rule}; }}
 QMenu::item:disabled {{ color: {faint}; }}
+QMenu::separator {{ background: {rule}; height: 1px; margin: {half}px 0; }}
 *[weight="bold"] {{ font-weight: bold; }}
 QStatusBar {{ color: {faint}; }}
+QScrollBar {{ background: {paper}; border: 0; margin: 0; }}
+QScrollBar:vertical {{ width: {bar}px; }}
+QScrollBar:horizontal {{ height: {bar}px; }}
+QScrollBar::handle {{ background: {grip}; border-radius: 2px; margin: {edge}px; }}
+QScrollBar::handle:vertical {{ min-height: {three}px; }}
+QScrollBar::handle:horizontal {{ min-width: {three}px; }}
+QScrollBar::handle:hover, QScrollBar::handle:pressed {{ background: {faint}; }}
+QScrollBar::add-line, QScrollBar::sub-line {{ width: 0; height: 0; }}
+QScrollBar::add-page, QScrollBar::sub-page {{ background: {paper}; }}
 """
 
 
@@ -69,9 +79,9 @@ def stylesheet(theme: Theme) -> str:
     """The application's style sheet in the colours and sizes of `theme`."""
     sizes = {"half": theme.px(0.5), "one": theme.px(1), "two": theme.px(2), "button": theme.px(1.5)}
     sizes |= {"half_less": sizes["half"] - 1, "button_less": sizes["button"] - 1}
-    roles = ("ink", "faint", "paper", "cell", "rule", "selected", "focus")
+    roles = ("ink", "faint", "paper", "cell", "rule", "grip", "selected", "focus")
     colours = {role: getattr(theme, role).name() for role in roles}
-    sizes["box"] = theme.px(1.5)
+    sizes |= {"box": theme.px(1.5), "bar": theme.px(1.25), "three": theme.px(3), "edge": theme.px(0.25)}
     tick = resources.tick_path(theme.dark).as_posix()
     return _RULES.format(**colours, **sizes, tick=tick) + _tones(theme) + _sizes(theme)
 

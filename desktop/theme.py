@@ -1,8 +1,8 @@
 """The look: colours with one meaning each, three text sizes, an 8 px grid.
 
 `exact`, `fractional`, `short` and `room` mean the same thing on every page and on paper; everything else is
-ink on paper. `*_soft` are fills under ink. Widgets ask `current()`; painters are handed a theme, so that the
-same painter draws on screen and in print.
+ink on paper. `*_soft` are fills under ink, `grip` is what is dragged. Widgets ask `current()`; painters are
+handed a theme, so that the same painter draws on screen and in print.
 """
 
 from __future__ import annotations
@@ -22,6 +22,7 @@ W = TypeVar("W", bound=QWidget)
 FAMILY = "DejaVu Sans"
 GRID = 8
 _PROPERTY = "fullComplementTheme"
+_FRAME = 140  # per cent by which Fusion darkens the window for its frames
 
 
 class Size(StrEnum):
@@ -46,6 +47,7 @@ class Theme:
     ink: QColor
     faint: QColor
     rule: QColor
+    grip: QColor
     exact: QColor
     exact_soft: QColor
     fractional: QColor
@@ -110,6 +112,7 @@ def light() -> Theme:
         ink="#1D2225",
         faint="#596064",
         rule="#D6D3CB",
+        grip="#878A89",
         exact="#0A5C58",
         exact_soft="#CFE4E1",
         fractional="#855700",
@@ -134,6 +137,7 @@ def dark() -> Theme:
         ink="#EAE7E0",
         faint="#A6A9A7",
         rule="#3B3F42",
+        grip="#6E7376",
         exact="#5FC6BB",
         exact_soft="#17413E",
         fractional="#E2AE55",
@@ -160,6 +164,7 @@ def print_theme(greyscale: bool = False) -> Theme:
         ink="#000000",
         faint="#505050",
         rule="#BDBDBD",
+        grip="#8A8A8A",
         exact="#1A1A1A",
         exact_soft="#D6D6D6",
         fractional="#5E5E5E",
@@ -238,14 +243,25 @@ def _focus_palette(theme: Theme) -> QPalette:
     return made
 
 
+def _framed_palette(theme: Theme) -> QPalette:
+    """As `_focus_palette`; without the focus Fusion frames these in a darker shade of the window.
+
+    Nobody would see that on dark paper.
+    """
+    made = _focus_palette(theme)
+    if theme.dark:
+        made.setColor(QPalette.ColorRole.Window, theme.rule.lighter(_FRAME))
+    return made
+
+
 def apply(app: QApplication, theme: Theme) -> None:
     """Give the whole application `theme`; `current()` answers it from now on."""
     app.setProperty(_PROPERTY, theme)
     if app.style().objectName() != "fusion":
         app.setStyle("Fusion")
     app.setPalette(palette(theme))
-    for kind in ("QComboBox", "QAbstractSpinBox"):
-        app.setPalette(_focus_palette(theme), kind)  # type: ignore[arg-type] # the stub says bytes, Qt takes text
+    app.setPalette(_focus_palette(theme), "QComboBox")  # type: ignore[arg-type] # the stub says bytes, Qt takes text
+    app.setPalette(_framed_palette(theme), "QAbstractSpinBox")  # type: ignore[arg-type] # as above
     app.setFont(theme.font())
     app.setStyleSheet(stylesheet(theme))
 

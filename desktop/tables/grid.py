@@ -23,7 +23,6 @@ from solver.plan import Plan
 from solver.tablecolumns import What
 
 Cell = tuple[int, int]
-_BELOW = 16  # pixels for a scroll bar below the rows
 
 
 class Grid(QTableView):
@@ -96,7 +95,8 @@ class Grid(QTableView):
 
     def whole_height(self) -> int:
         """Pixels that show every row without scrolling."""
-        return self.horizontalHeader().sizeHint().height() + self.verticalHeader().length() + _BELOW
+        head, bar = self.horizontalHeader().sizeHint(), self.horizontalScrollBar().sizeHint()
+        return head.height() + self.verticalHeader().length() + bar.height() + theme.current().px(0.5)
 
     def show_place(self, place: str) -> bool:
         """Select the cell a problem's place means; False if it is in another table."""

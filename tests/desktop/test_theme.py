@@ -2,7 +2,7 @@ import pytest
 from PySide6.QtCore import Qt
 from PySide6.QtGui import QColor
 from PySide6.QtTest import QTest
-from PySide6.QtWidgets import QCheckBox, QComboBox, QLabel, QSpinBox, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QCheckBox, QComboBox, QLabel, QScrollBar, QSpinBox, QVBoxLayout, QWidget
 
 from desktop import theme as themes
 
@@ -89,6 +89,36 @@ def test_the_focus_is_seen_on_choices_and_numbers(theme, kind, qtbot, qapp):
     assert parts[1].hasFocus()
     assert max(themes.contrast(colour, theme.paper) for colour in edges[1]) >= 3
     assert edges[0] != edges[1]
+    themes.apply(qapp, themes.light())
+
+
+@pytest.mark.parametrize("theme", [themes.light(), themes.dark()], ids=lambda t: t.name)
+@pytest.mark.parametrize("way", list(Qt.Orientation))
+def test_the_handle_of_a_scroll_bar_stands_out(theme, way, qtbot, qapp):
+    themes.apply(qapp, theme)
+    bar = QScrollBar(way)
+    qtbot.addWidget(bar)
+    bar.setRange(0, 100)
+    bar.setPageStep(50)
+    bar.resize(*((160, theme.px(1.25)) if way is Qt.Orientation.Horizontal else (theme.px(1.25), 160)))
+    image = bar.grab().toImage()
+    across = way is Qt.Orientation.Horizontal
+    middle = theme.px(0.625)
+    line = [image.pixelColor(*((at, middle) if across else (middle, at))) for at in range(160)]
+    # WCAG 2.1, 1.4.11 non-text contrast: at least 3 to 1
+    assert themes.contrast(line[20], theme.paper) >= 3
+    assert line[140] == theme.paper
+    themes.apply(qapp, themes.light())
+
+
+@pytest.mark.parametrize("theme", [themes.light(), themes.dark()], ids=lambda t: t.name)
+def test_a_number_to_type_has_a_frame_like_a_text_to_type(theme, qtbot, qapp):
+    themes.apply(qapp, theme)
+    box = QSpinBox()
+    qtbot.addWidget(box)
+    image = box.grab().toImage()
+    edge = max(themes.contrast(image.pixelColor(x, image.height() // 2), theme.paper) for x in range(2))
+    assert edge >= 0.95 * themes.contrast(theme.rule, theme.paper)
     themes.apply(qapp, themes.light())
 
 
