@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from typing import Any
 
 import pyqtgraph as pg
 from PySide6.QtCore import QPointF, Qt, Signal
@@ -15,11 +14,12 @@ from desktop import figures
 from desktop.pictures.chances import ChanceCurve, safe_sentence, share
 from desktop.pictures.plot_picture import PlotPicture, cosmetic
 from desktop.tables.crew_text import crew_text
-from desktop.theme import Size, Theme
+from desktop.theme import Theme
 from solver.answer import CrewChance, SafeCrew
 from solver.plan import Plan
 
 _STEPS = {Qt.Key.Key_Left: -1, Qt.Key.Key_Down: -1, Qt.Key.Key_Right: 1, Qt.Key.Key_Up: 1}
+_DOT, _OTHER = 9, 10  # sizes of the marks of the curve and of other crews
 _NAMED = ("exact", "patched", "up", "own")
 
 
@@ -76,49 +76,31 @@ class AttendanceCurve(PlotPicture):
         xs, ys = [100 * c.covered for c in shown.curve], [c.cost for c in shown.curve]
         self.plot.plot(xs, ys, pen=cosmetic(theme.exact, 2), antialias=True)
         proved = [(100 * c.covered, c.cost) for c in shown.curve if c.proved]
-        self._scatter(proved, "o", 9, theme.exact, theme.exact, say.KEY_CURVE)
+        self.scatter(proved, "o", _DOT, theme.exact, theme.exact, say.KEY_CURVE if proved else "")
         guessed = [(100 * c.covered, c.cost) for c in shown.curve if not c.proved]
-        self._scatter(guessed, "o", 9, theme.exact, theme.paper, say.KEY_NOT_PROVED)
+        self.scatter(guessed, "o", _DOT, theme.exact, theme.paper, say.KEY_NOT_PROVED if guessed else "")
         others = [(100 * c.covered, float(c.cost or 0)) for c in shown.others]
-        self._scatter(others, "t", 10, theme.faint, theme.paper, say.KEY_OTHERS)
+        self.scatter(others, "t", _OTHER, theme.faint, theme.paper, say.KEY_OTHERS if others else "")
+        self.names.avoid([*proved, *guessed, *others], _OTHER)
+        self.names.add(_NAMED[0], xs[0], ys[0], theme.exact, bold=True)
         for crew in shown.others:
             if crew.name in _NAMED:
-                self._name(crew.name, 100 * crew.covered, float(crew.cost or 0), theme)
-        self._name(_NAMED[0], xs[0], ys[0], theme, bold=True)
+                self.names.add(crew.name, 100 * crew.covered, float(crew.cost or 0), theme.faint)
         self._add_marks(shown, theme)
-        self._ring = self._scatter([], "o", 18, theme.focus, None)
+        self._ring = self.scatter([], "o", 2 * _DOT, theme.focus, None)
         self._place_ring()
+        self.names.place()
 
     def _add_marks(self, shown: ChanceCurve, theme: Theme) -> None:
-        pen = cosmetic(theme.faint, 1, Qt.PenStyle.DashLine)
-        options = {"position": 0.06, "color": theme.faint, "movable": False}
-        at = 100 * shown.wanted
-        self.plot.addItem(pg.InfiniteLine(at, pen=pen, label=say.WANTED_MARK, labelOpts=options))
+        """What is wanted, named on the line; the budget, named in the key: its line crosses the curve."""
+        dash, dot = Qt.PenStyle.DashLine, Qt.PenStyle.DotLine
+        self.upright(100 * shown.wanted, cosmetic(theme.faint, 1, dash), say.WANTED_MARK, 0.06)
         costs = [crew.cost for crew in shown.curve]
         near = shown.budget is not None and shown.budget <= max(costs) + (max(costs) - min(costs)) / 4
         if near and shown.budget is not None:
-            options = {"position": 0.9, "color": theme.short, "movable": False}
-            pen = cosmetic(theme.short, 1, Qt.PenStyle.DotLine)
-            line = pg.InfiniteLine(shown.budget, angle=0, pen=pen, label=say.BUDGET, labelOpts=options)
-            self.plot.addItem(line)
-
-    def _name(self, name: str, x: float, y: float, theme: Theme, bold: bool = False) -> None:
-        colour = theme.exact if bold else theme.faint
-        text = pg.TextItem(name, color=colour, anchor=(-0.15, 0.4) if bold else (0.5, 1.35))
-        text.setFont(theme.font(Size.SMALL, bold=bold))
-        text.setPos(x, y)
-        self.plot.addItem(text)
-
-    def _scatter(
-        self, points: list[tuple[float, float]], symbol: str, size: int, edge: Any, fill: Any, name: str = ""
-    ) -> pg.ScatterPlotItem:
-        options: dict[str, Any] = {"name": name} if name and points else {}
-        brush = pg.mkBrush(fill) if fill is not None else pg.mkBrush(None)
-        item = pg.ScatterPlotItem(
-            pos=points, symbol=symbol, size=size, pen=pg.mkPen(edge, width=1.5), brush=brush, **options
-        )
-        self.plot.addItem(item)
-        return item
+            pen = cosmetic(theme.short, 1.5, dot)
+            self.plot.plot([], [], pen=pen, name=say.BUDGET)
+            self.plot.addItem(pg.InfiniteLine(shown.budget, angle=0, pen=pen))
 
     def _place_ring(self) -> None:
         if self._ring is not None:

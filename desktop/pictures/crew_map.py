@@ -20,9 +20,8 @@ from desktop.pictures.crew_spots import (
     next_spot,
     spot_sentence,
 )
-from desktop.pictures.name_places import Name, placed
 from desktop.pictures.plot_picture import PlotPicture, cosmetic
-from desktop.theme import Size, Theme
+from desktop.theme import Theme
 
 # shape and size of a named point; its colour is looked up by `_tone`
 _SHAPES: dict[SpotKind, tuple[str, int]] = {
@@ -32,7 +31,7 @@ _SHAPES: dict[SpotKind, tuple[str, int]] = {
     SpotKind.EXACT: ("o", 15),
     SpotKind.OWN: ("s", 13),
 }
-_GAP = 8  # pixels between a point and its name
+_DOT, _CROSS = 7, 8  # sizes of the lattice's marks
 _STEPS = {
     Qt.Key.Key_Left: (-1, 0),
     Qt.Key.Key_Right: (1, 0),
@@ -54,9 +53,7 @@ class CrewMap(PlotPicture):
         self._shown: CrewSpots | None = None
         self._cursor: Spot | None = None
         self._ring: pg.ScatterPlotItem | None = None
-        self._names: list[tuple[NamedSpot, pg.TextItem]] = []
         super().__init__(say.CREW_MAP, parent)
-        self.plot.getPlotItem().getViewBox().sigTransformChanged.connect(self._place_names)
         scene = self.plot.scene()
         scene.sigMouseMoved.connect(self._on_hover)
         scene.sigMouseClicked.connect(self._on_click)
@@ -94,29 +91,17 @@ class CrewMap(PlotPicture):
             return
         self.title_axes(say.people_axis(shown.across), say.people_axis(shown.up))
         self.fresh_legend(above=True)
-        self._names = []
         self._add_polygon(shown, theme)
         if shown.equal_cost is not None:
             xs, ys = zip(*shown.equal_cost, strict=True)
             pen = cosmetic(theme.ink, 1, Qt.PenStyle.DashLine)
-            self.plot.plot(list(xs), list(ys), pen=pen, name=say.KEY_EQUAL_COST)
+            self.plot.plot(list(xs), list(ys), pen=pen, antialias=True, name=say.KEY_EQUAL_COST)
         self._add_lattice(shown, theme)
         for named in sorted(shown.named, key=lambda n: n.kind is not SpotKind.EXACT):
             self._add_named(named, theme)
-        self._ring = self._scatter([], "o", 24, theme.focus, None)
+        self._ring = self.scatter([], "o", 24, theme.focus, None)
         self._place_ring()
-        self._place_names()
-
-    def _place_names(self) -> None:
-        """Names keep out of each other's way; where they are in pixels changes with the size."""
-        box = self.plot.getPlotItem().getViewBox()
-        texts = [text for _, text in self._names]
-        points = [box.mapViewToScene(QPointF(spot.x, spot.y)) for spot, _ in self._names]
-        sizes = [text.textItem.boundingRect().size() for text in texts]
-        names = [Name(point, size, _GAP) for point, size in zip(points, sizes, strict=True)]
-        for text, name, rect in zip(texts, names, placed(names, box.sceneBoundingRect()), strict=True):
-            off = name.point - rect.topLeft()
-            text.setAnchor((off.x() / rect.width(), off.y() / rect.height()))
+        self.names.place()
 
     def _add_polygon(self, shown: CrewSpots, theme: Theme) -> None:
         if len(shown.polygon) < 3:
@@ -130,30 +115,17 @@ class CrewMap(PlotPicture):
     def _add_lattice(self, shown: CrewSpots, theme: Theme) -> None:
         workable = [(s.x, s.y) for s in shown.lattice if s.workable]
         broken = [(s.x, s.y) for s in shown.lattice if not s.workable]
-        self._scatter(workable, "o", 7, theme.exact, theme.exact, say.KEY_WORKABLE)
-        self._scatter(broken, "x", 8, theme.short, theme.short, say.KEY_NOT_WORKABLE)
+        self.scatter(workable, "o", _DOT, theme.exact, theme.exact, say.KEY_WORKABLE)
+        self.scatter(broken, "x", _CROSS, theme.short, theme.short, say.KEY_NOT_WORKABLE)
+        self.names.avoid(workable + broken, _CROSS)
 
     def _add_named(self, named: NamedSpot, theme: Theme) -> None:
         symbol, size = _SHAPES[named.kind]
         colour = _tone(named.kind, theme)
         fill = colour if named.kind in (SpotKind.EXACT, SpotKind.FRACTIONAL) else theme.paper
-        self._scatter([(named.x, named.y)], symbol, size, colour, fill)
-        text = pg.TextItem(", ".join(named.names), color=colour)
-        text.setFont(theme.font(Size.SMALL, bold=named.kind is SpotKind.EXACT))
-        text.setPos(named.x, named.y)
-        self.plot.addItem(text)
-        self._names.append((named, text))
-
-    def _scatter(
-        self, points: list[tuple[float, float]], symbol: str, size: int, edge: Any, fill: Any, name: str = ""
-    ) -> pg.ScatterPlotItem:
-        brush = pg.mkBrush(fill) if fill is not None else pg.mkBrush(None)
-        options: dict[str, Any] = {"name": name} if name else {}
-        item = pg.ScatterPlotItem(
-            pos=points, symbol=symbol, size=size, pen=pg.mkPen(edge, width=1.5), brush=brush, **options
-        )
-        self.plot.addItem(item)
-        return item
+        self.scatter([(named.x, named.y)], symbol, size, colour, fill)
+        exact = named.kind is SpotKind.EXACT
+        self.names.add(", ".join(named.names), named.x, named.y, colour, bold=exact)
 
     def _place_ring(self) -> None:
         if self._ring is not None:

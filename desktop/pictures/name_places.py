@@ -1,4 +1,4 @@
-"""Where the names of points stand, so that they keep out of each other's way and of the points.
+"""Where the names of points stand, so that they keep out of each other's way and of all marks.
 
 Greedy, the first name first: of eight places around its point each name takes the one that covers least.
 """
@@ -24,9 +24,9 @@ class Name:
     gap: float
 
 
-def placed(names: Sequence[Name], room: QRectF) -> list[QRectF]:
-    """The rectangle of each text, inside `room` where possible."""
-    marks = [_around(name) for name in names]
+def placed(names: Sequence[Name], room: QRectF, others: Iterable[QRectF] = ()) -> list[QRectF]:
+    """The rectangle of each text, inside `room` where possible; `others` are marks without a name."""
+    marks = [*(_around(name) for name in names), *others]
     taken: list[QRectF] = []
     for name in names:
         best = min(_candidates(name), key=lambda rect: _covered(rect, [*taken, *marks], room))

@@ -13,14 +13,16 @@ from PySide6.QtWidgets import QVBoxLayout, QWidget
 
 from desktop import figures
 from desktop.pictures.copyable import Copyable
+from desktop.pictures.plot_names import PlotNames
 from desktop.theme import Size, Theme, current
 
 _IN_A_LINE = 6  # names of a legend side by side
+_OUTLINE = 1.5  # pixels
 
 
 def cosmetic(colour: QColor, width: float, style: Qt.PenStyle = Qt.PenStyle.SolidLine) -> QPen:
-    """A pen whose width is in pixels, not in units of the axes."""
-    pen = QPen(colour, width, style)
+    """A pen whose width is in pixels at zoom 1, not in units of the axes."""
+    pen = QPen(colour, width * current().zoom, style)
     pen.setCosmetic(True)
     return pen
 
@@ -45,6 +47,7 @@ class PlotPicture(Copyable):
         self.plot.hideButtons()
         self.plot.setFocusPolicy(Qt.FocusPolicy.NoFocus)
         self.plot.getPlotItem().getViewBox().setMouseEnabled(x=False, y=False)
+        self.names = PlotNames(self.plot)
         layout = QVBoxLayout(self)
         layout.setContentsMargins(2, 2, 2, 2)
         layout.addWidget(self.plot)
@@ -61,6 +64,7 @@ class PlotPicture(Copyable):
         """Draw anew in the current theme."""
         theme = current()
         self.plot.clear()
+        self.names.clear()
         self.plot.setBackground(theme.paper)
         for side in ("left", "bottom"):
             axis = self.plot.getAxis(side)
@@ -79,6 +83,33 @@ class PlotPicture(Copyable):
         style: dict[str, Any] = {"color": theme.faint.name(), "font-size": f"{theme.points(Size.SMALL)}pt"}
         self.plot.setLabel("bottom", _escaped(bottom), **style)
         self.plot.setLabel("left", _escaped(left), **style)
+
+    def scatter(
+        self,
+        points: Sequence[tuple[float, float]],
+        symbol: str,
+        size: float,
+        edge: QColor,
+        fill: QColor | None,
+        name: str = "",
+    ) -> pg.ScatterPlotItem:
+        """Marks of `size` pixels at zoom 1; a `name` stands in the legend. pyqtgraph names the symbols."""
+        zoom = current().zoom
+        options: dict[str, Any] = {"name": name} if name else {}
+        pen, brush = pg.mkPen(edge, width=_OUTLINE * zoom), pg.mkBrush(fill)
+        item = pg.ScatterPlotItem(
+            pos=points, symbol=symbol, size=size * zoom, pen=pen, brush=brush, **options
+        )
+        self.plot.addItem(item)
+        return item
+
+    def upright(self, x: float, pen: QPen, says: str, where: float) -> None:
+        """An upright line with a small name at `where` (0 at the bottom, 1 at the top)."""
+        theme = current()
+        options = {"position": where, "color": theme.faint, "movable": False}
+        line = pg.InfiniteLine(x, pen=pen, label=says, labelOpts=options)
+        line.label.setFont(theme.font(Size.SMALL))
+        self.plot.addItem(line)
 
     def fresh_legend(self, *, above: bool = False) -> None:
         """An empty legend at the top left, filled by the names of what is plotted next.
@@ -121,9 +152,10 @@ class PlotPicture(Copyable):
         self._show_focus()
 
     def changeEvent(self, event: QEvent) -> None:
-        """Follow the theme; Qt sends palette changes before there is a plot."""
+        """Follow theme and zoom; Qt sends such changes before there is a plot."""
         super().changeEvent(event)
-        if event.type() == QEvent.Type.PaletteChange and hasattr(self, "plot"):
+        touched = event.type() in (QEvent.Type.PaletteChange, QEvent.Type.FontChange)
+        if touched and hasattr(self, "plot"):
             self.touch()
 
 

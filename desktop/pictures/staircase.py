@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import pyqtgraph as pg
 from PySide6.QtCore import Qt, Signal
-from PySide6.QtGui import QColor, QKeyEvent, QPen
+from PySide6.QtGui import QKeyEvent, QPen
 from PySide6.QtWidgets import QWidget
 
 from desktop import figures
@@ -66,33 +66,25 @@ class Staircase(PlotPicture):
             return
         self.title_axes(say.workload_axis(steps.work, steps.unit), say.in_unit(say.COST, plan.currency))
         dash, dot = Qt.PenStyle.DashLine, Qt.PenStyle.DotLine
-        self.fresh_legend()
-        self._line(point_path(steps.rounded_up), cosmetic(theme.faint, 1, dot), say.KEY_UP)
+        self.fresh_legend(above=True)
+        self._line(point_path(steps.rounded_up), cosmetic(theme.faint, 1.5, dot), say.KEY_UP)
         self._line(stair_path(steps.steps), cosmetic(theme.exact, 2), say.KEY_EXACT)
         self._line(point_path(steps.floor), cosmetic(theme.fractional, 2, dash), say.KEY_FLOOR)
         ends = [(step.to, step.cost) for step in steps.steps]
-        self._dots(ends, theme.exact, theme.exact)
-        options = {"position": 0.04, "color": theme.faint, "movable": False}
-        today = pg.InfiniteLine(steps.today, pen=cosmetic(theme.faint, 1), label=say.TODAY, labelOpts=options)
-        self.plot.addItem(today)
+        self.scatter(ends, "o", 6, theme.exact, theme.exact)
+        self.upright(steps.today, cosmetic(theme.faint, 1), say.TODAY, 0.04)
         self._add_marker(theme)
 
     def _line(self, path: tuple[list[float], list[float]], pen: QPen, name: str) -> None:
         if path[0]:
             self.plot.plot(*path, pen=pen, antialias=True, name=name, connect="finite")
 
-    def _dots(self, points: list[tuple[float, float]], edge: QColor, fill: QColor) -> pg.ScatterPlotItem:
-        item = pg.ScatterPlotItem(pos=points, size=6, pen=pg.mkPen(edge), brush=pg.mkBrush(fill))
-        self.plot.addItem(item)
-        return item
-
     def _add_marker(self, theme: Theme) -> None:
         self._marker = pg.InfiniteLine(self._amount, movable=True, pen=cosmetic(theme.ink, 2))
         self._marker.setHoverPen(cosmetic(theme.exact, 3))
         self._marker.sigPositionChanged.connect(self._on_dragged)
         self.plot.addItem(self._marker)
-        self._dot = self._dots([], theme.ink, theme.paper)
-        self._dot.setSize(11)
+        self._dot = self.scatter([], "o", 11, theme.ink, theme.paper)
         self._place_marker()
 
     def _place_marker(self) -> None:

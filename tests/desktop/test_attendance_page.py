@@ -1,10 +1,12 @@
 from dataclasses import replace
 from decimal import Decimal
 
+import pyqtgraph as pg
 import pytest
-from PySide6.QtCore import Qt
+from PySide6.QtCore import QPointF, Qt
 
 from desktop import attendance_words as say
+from desktop import theme
 from desktop.messages import CAUTION
 from desktop.pages.attendance_page import AttendancePage, lines_of
 from desktop.pictures.attendance_curve import AttendanceCurve
@@ -165,6 +167,40 @@ def test_the_picture_has_its_table_and_is_described(page):
     assert (
         page.picture.accessibleDescription() == f"3 crews, from enough people on 62{NB}% of days to 96.1{NB}%"
     )
+
+
+def drawn(picture, kind):
+    return [item for item in picture.plot.getPlotItem().items if isinstance(item, kind)]
+
+
+def test_the_picture_follows_the_zoom(page, qapp):
+    def sizes():
+        marks = [mark.opts["size"] for mark in drawn(page.picture, pg.ScatterPlotItem)]
+        names = [name.textItem.font().pointSizeF() for name in drawn(page.picture, pg.TextItem)]
+        return marks + names + [page.picture.plot.getAxis("left").style["tickFont"].pointSizeF()]
+
+    before = sizes()
+    theme.apply(qapp, replace(theme.light(), zoom=1.5))
+    try:
+        assert len(before) > 6
+        assert sizes() == pytest.approx([1.5 * size for size in before])
+    finally:
+        theme.apply(qapp, theme.light())
+
+
+def test_names_and_the_budget_keep_off_the_curve(page):
+    plan = replace(samples.hillside_plan(), rules=(Budget("Money", Decimal(136000)),))
+    page.picture.show_curve(plan, curve_of(plan, attended()))
+    page.picture.resize(500, 300)
+    box = page.picture.plot.getPlotItem().getViewBox()
+    names = [name.mapRectToScene(name.boundingRect()) for name in drawn(page.picture, pg.TextItem)]
+    dots = [box.mapViewToScene(QPointF(100 * c.covered, c.cost)) for c in attended().curve]
+    assert len(names) == 3
+    for name in names:
+        assert box.sceneBoundingRect().contains(name)
+        assert not any(name.contains(dot) for dot in dots)
+    key = [label.text for _, label in page.picture.plot.getPlotItem().legend.items]
+    assert say.BUDGET in key
 
 
 def test_other_crews_are_shown_beside_the_curve_once():
