@@ -39,12 +39,12 @@ def rule(painter: QPainter, x1: float, y1: float, x2: float, y2: float, theme: T
     painter.drawLine(QPointF(x1, y1), QPointF(x2, y2))
 
 
-def hatch(painter: QPainter, box: QRectF, colour: QColor) -> None:
+def hatch(painter: QPainter, box: QRectF, colour: QColor, zoom: float = 1.0) -> None:
     """Slanted lines across `box`, cut at its edges by arithmetic (a clip would turn print into pixels)."""
-    painter.setPen(QPen(colour, 1))
-    start = box.left() - box.height()
-    steps = int((box.width() + box.height()) / _HATCH) + 1
-    lines = [_slanted(box, start + k * _HATCH) for k in range(1, steps)]
+    painter.setPen(QPen(colour, zoom))
+    start, apart = box.left() - box.height(), _HATCH * zoom
+    steps = int((box.width() + box.height()) / apart) + 1
+    lines = [_slanted(box, start + k * apart) for k in range(1, steps)]
     painter.drawLines([line for line in lines if line is not None])
 
 
@@ -65,9 +65,9 @@ def paint_bar(painter: QPainter, box: QRectF, theme: Theme, *, short: bool) -> N
     painter.drawRect(box)
     colour = theme.short if short else theme.room
     if short:
-        hatch(painter, box, colour)
+        hatch(painter, box, colour, theme.zoom)
     painter.setBrush(Qt.BrushStyle.NoBrush)
-    painter.setPen(QPen(colour, 1))
+    painter.setPen(QPen(colour, theme.zoom))
     painter.drawRect(box)
 
 

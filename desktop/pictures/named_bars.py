@@ -140,9 +140,9 @@ def _paint_bar(
         box = QRectF(left, top, wide, high)
         painter.fillRect(box, _fill(bar, theme))
         if bar.tone is Tone.SHORT:
-            hatch(painter, box, theme.short)
+            hatch(painter, box, theme.short, theme.zoom)
         painter.setBrush(Qt.BrushStyle.NoBrush)
-        painter.setPen(QPen(_edge(bar, theme), 1))
+        painter.setPen(QPen(_edge(bar, theme), theme.zoom))
         painter.drawRect(box)
     return left + wide
 

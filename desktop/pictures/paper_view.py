@@ -48,11 +48,11 @@ class PaperView(QWidget):
         return min(width / self._sheet.paper.width, _WIDEST * current().zoom)
 
     def _page(self) -> QRectF:
-        """Where the paper lies, in pixels: centred, at the top."""
+        """Where the paper lies, in whole pixels, so that its edge is sharp: centred, at the top."""
         assert self._sheet is not None
         scale = self._scale(self.width())
         wide, high = self._sheet.paper.width * scale, self._sheet.paper.height * scale
-        return QRectF((self.width() - wide) / 2, 0.0, wide, high)
+        return QRectF((self.width() - round(wide)) // 2, 0.0, round(wide), round(high))
 
     def _draw(self, page: QRectF) -> QPixmap:
         """The sheet at the screen's own resolution, drawn once per size."""

@@ -8,9 +8,10 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from itertools import pairwise
 
 from PySide6.QtCore import QPointF, QRectF, Qt
-from PySide6.QtGui import QPainter, QPen, QPolygonF
+from PySide6.QtGui import QColor, QFont, QPainter, QPen, QPolygonF
 
 from desktop import crew_words as say
 from desktop import figures
@@ -26,7 +27,7 @@ _STEP, _STEP_OF_FEW = 28.0, 44.0
 _FEW = 4
 _GAP = 12.0
 _LEGEND = 24.0
-_NAME_SHARE = 0.2
+_NAME_SHARE = 0.25
 
 
 def phases_height(tally: Tally, theme: Theme) -> float:
@@ -134,12 +135,14 @@ def _name_note(row: TallyRow) -> str:
 
 
 def _paint_header(painter: QPainter, top: float, tally: Tally, edges: list[float], theme: Theme) -> None:
-    unit = theme.zoom
+    unit, small, font = theme.zoom, theme.picture_font(Size.SMALL), theme.picture_font()
+    widths = [right - left - 8 * unit for left, right in pairwise(edges)]
+    if any(text_width(font, p.name) > wide for p, wide in zip(tally.phases, widths, strict=True)):
+        font = small  # rather than a name that is cut
     for at, phase in enumerate(tally.phases):
-        box = QRectF(edges[at] + 4 * unit, top, edges[at + 1] - edges[at] - 8 * unit, 18 * unit)
-        write(painter, box, phase.name, theme.picture_font(), theme.ink)
+        box = QRectF(edges[at] + 4 * unit, top, widths[at], 18 * unit)
+        write(painter, box, phase.name, font, theme.ink)
         length = say.periods(figures.number(phase.periods), tally.period)
-        small = theme.picture_font(Size.SMALL)
         write(painter, box.translated(0, 16 * unit), length, small, theme.faint)
 
 
@@ -155,10 +158,10 @@ def _paint_steps(painter: QPainter, frame: _Frame) -> None:
         painter.setPen(Qt.PenStyle.NoPen)
         painter.setBrush(theme.exact_soft)
         painter.drawPolygon(QPolygonF(area))
-        painter.setPen(QPen(theme.exact, 2))
+        painter.setPen(QPen(theme.exact, 2 * theme.zoom))
         painter.drawPolyline(QPolygonF(top))
     if row.fractional:
-        pen = QPen(theme.fractional, 2)
+        pen = QPen(theme.fractional, 2 * theme.zoom)
         pen.setDashPattern([3, 2])
         pen.setCapStyle(Qt.PenCapStyle.FlatCap)
         painter.setPen(pen)
@@ -169,54 +172,70 @@ def _paint_steps(painter: QPainter, frame: _Frame) -> None:
 
 
 def _paint_cell(painter: QPainter, frame: _Frame, at: int) -> None:
-    """The exact count, then the fractional one and the moves as far as the phase is wide enough."""
+    """The exact count, the fractional one and the moves.
+
+    Where a phase is too narrow the fractional count gives way to the moves: its line is drawn anyway.
+    """
     theme, row, cell = frame.theme, frame.row, frame.cell(at)
-    left = cell.left()
-    large = theme.picture_font(Size.LARGE, bold=True)
-    texts = [(figures.people(row.exact[at]) if row.exact else "", large, theme.exact)]
+    moves = text_width(theme.picture_font(Size.SMALL), _moves(row, at)) if _moves(row, at) else 0.0
+    whole = figures.people(row.exact[at]) if row.exact else ""
     fractional = figures.people(row.fractional[at]) if row.fractional and row.fractional[at] else ""
-    texts.append((fractional, theme.picture_font(), theme.fractional))
-    for text, font, colour in texts:
-        wide = text_width(font, text)
-        if left + wide > cell.right() + 4 * theme.zoom:
-            return
-        if text:
-            write(painter, QRectF(left, cell.top(), wide, cell.height()), text, font, colour)
-            left += wide + 8 * theme.zoom
-    _paint_moves(painter, QRectF(left, cell.top(), cell.right() - left, cell.height()), frame, at)
+    large = theme.picture_font(Size.LARGE, bold=True)
+    room = _write_count(painter, cell, whole, large, theme.exact, 0.0, theme)
+    if whole and room is cell:
+        return
+    room = _write_count(painter, room, fractional, theme.picture_font(), theme.fractional, moves, theme)
+    _paint_moves(painter, room, frame, at)
+
+
+def _write_count(
+    painter: QPainter, room: QRectF, text: str, font: QFont, colour: QColor, keep: float, theme: Theme
+) -> QRectF:
+    """Write `text` at the left of `room` where `keep` is left beside it; returns what is left."""
+    gap, wide = 8 * theme.zoom, text_width(font, text)
+    needed = wide + gap + keep if keep else wide - gap / 2  # the padding of a cell may be written on
+    if not text or needed > room.width():
+        return room
+    write(painter, QRectF(room.left(), room.top(), wide, room.height()), text, font, colour)
+    return room.adjusted(wide + gap, 0, 0, 0)
+
+
+def _moves(row: TallyRow, at: int) -> str:
+    """How many join or leave at the start of phase `at`, with a sign; empty for nobody."""
+    move = row.joiners(at) or -row.leavers(at)
+    return figures.change(move) if move else ""
 
 
 def _paint_moves(painter: QPainter, box: QRectF, frame: _Frame, at: int) -> None:
-    """Who joins or leaves at the start of the phase: one outlined or struck figure and the number."""
-    theme, row, unit = frame.theme, frame.row, frame.theme.zoom
-    joins, leaves = row.joiners(at), row.leavers(at)
-    if not joins and not leaves:
-        return
-    text = figures.change(joins or -leaves)
+    """Who joins or leaves at the start of the phase: one outlined or struck figure and the number.
+
+    Where both are too wide the number stands alone: its sign says it as well.
+    """
+    theme, unit, text = frame.theme, frame.theme.zoom, _moves(frame.row, at)
     font, high = theme.picture_font(Size.SMALL), 14 * unit
-    wide = text_width(font, text) + high * SHAPE + 5 * unit
-    if wide + 4 * unit > box.width():
+    room = box.width() - text_width(font, text)
+    if not text or room < 0:
         return
-    mark = Mark.JOINS if joins else Mark.LEAVES
-    x = box.left() + 4 * unit
-    y = box.center().y() - high / 2
-    paint_figure(painter, Figure(x, y, high * SHAPE, high, mark), theme)
-    words = QRectF(x + high * SHAPE + 5 * unit, box.top(), box.width(), box.height())
-    write(painter, words, text, font, theme.ink, LEFT)
+    x = box.left() + min(4 * unit, room)
+    if room >= high * SHAPE + 9 * unit:
+        mark = Mark.JOINS if frame.row.joiners(at) else Mark.LEAVES
+        paint_figure(painter, Figure(x, box.center().y() - high / 2, high * SHAPE, high, mark), theme)
+        x += high * SHAPE + 5 * unit
+    write(painter, QRectF(x, box.top(), box.width(), box.height()), text, font, theme.ink, LEFT)
 
 
 def _paint_key(painter: QPainter, box: QRectF, whole: str, theme: Theme) -> None:
     """What the line, the area and the small figures mean."""
     unit = theme.zoom
     y = box.center().y()
-    pen = QPen(theme.fractional, 2)
+    pen = QPen(theme.fractional, 2 * theme.zoom)
     pen.setDashPattern([3, 2])
     painter.setPen(pen)
     painter.drawLine(QPointF(box.left(), y), QPointF(box.left() + 24 * unit, y))
     x = paint_entry(painter, box, box.left() + 30 * unit, None, say.LEGEND_FRACTIONAL, theme)
     area = QRectF(x, y - 5 * unit, 24 * unit, 10 * unit)
     painter.fillRect(area, theme.exact_soft)
-    painter.setPen(QPen(theme.exact, 2))
+    painter.setPen(QPen(theme.exact, 2 * theme.zoom))
     painter.drawLine(area.topLeft(), area.topRight())
     x = paint_entry(painter, box, x + 30 * unit, None, whole, theme)
     rest = QRectF(x, box.top(), box.right() - x, box.height())

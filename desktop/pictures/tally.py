@@ -21,7 +21,7 @@ from desktop.pictures.tally_layout import RowLayout, Tally, TallyMetrics, TallyR
 from desktop.theme import Size, Theme, current
 
 _LEGEND_HEIGHT = 28.0
-_NAME_SHARE = 0.24
+_NAME_SHARE = 0.3
 _FEW = 5
 _NAMES, _PHASE = 17, 8.5  # least width of the names and of each of several phases, in steps of the grid
 
@@ -137,9 +137,12 @@ def _paint_words(
     upper = QRectF(columns.count, rect.top() + placed.top, columns.count_width, line)
     lower = upper.translated(0, line)
     name = QRectF(columns.name, lower.top(), columns.name_width, line)
+    lot = name.translated(0, -line)
+    if not row.exact:  # the name stands beside the only line of figures
+        name, lot = lot, name
     write(painter, name, row.name, theme.picture_font(), theme.ink)
     small = theme.picture_font(Size.SMALL)
-    write(painter, name.translated(0, -line), _lot(row), small, theme.faint)
+    write(painter, lot, _lot(row), small, theme.faint)
     write(painter, upper, _fractional_text(row), theme.picture_font(), theme.fractional, RIGHT)
     large = theme.picture_font(Size.LARGE, bold=True)
     write(painter, lower, _exact_text(row), large, theme.exact, RIGHT)

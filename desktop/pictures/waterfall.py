@@ -103,9 +103,9 @@ def _paint_bar(painter: QPainter, line: QRectF, bar: Bar, axis: Axis, theme: The
     fill, edge = _colours(bar, theme)
     painter.fillRect(box, fill)
     if bar.size < 0:
-        hatch(painter, box, edge)
+        hatch(painter, box, edge, theme.zoom)
     painter.setBrush(Qt.BrushStyle.NoBrush)
-    painter.setPen(QPen(edge, 2 if bar.kind is BarKind.END else 1))
+    painter.setPen(QPen(edge, theme.zoom * (2 if bar.kind is BarKind.END else 1)))
     painter.drawRect(box)
     if bar.size < 0:
         paint_point(
@@ -133,7 +133,7 @@ def _paint_zero(painter: QPainter, rect: QRectF, axis: Axis, theme: Theme) -> No
     painter.setPen(QPen(theme.ink, 1))
     x = axis.x(0)
     painter.drawLine(QPointF(x, rect.top() + _HEADER * theme.zoom), QPointF(x, rect.bottom()))
-    box = QRectF(x - 30, rect.top(), 60, _HEADER * theme.zoom)
+    box = QRectF(x - 30 * theme.zoom, rect.top(), 60 * theme.zoom, _HEADER * theme.zoom)
     write(painter, box, "0", theme.picture_font(Size.SMALL), theme.faint, CENTRE)
 
 

@@ -1,3 +1,5 @@
+from collections import Counter
+from dataclasses import replace
 from itertools import pairwise
 
 import pytest
@@ -5,6 +7,7 @@ from pypdf import PdfReader
 from PySide6.QtCore import QRect, QRectF
 from PySide6.QtGui import QImage, QPainter, QPdfWriter
 
+from desktop import figures
 from desktop import theme as themes
 from desktop.pictures.figure import Mark
 from desktop.pictures.phase_tally import phase_edges, step_points
@@ -120,14 +123,44 @@ def test_the_painter_shows_both_crews_and_keeps_inside(qapp, tally):
         assert colours(image.copy(edge)) == {theme.paper.rgb()}
 
 
-def test_print_is_vector_with_text(qapp, tally, tmp_path):
-    target = tmp_path / "tally.pdf"
+def printed(tally, target, width, theme, **options):
+    """The tally as a page of a PDF."""
     writer = QPdfWriter(str(target))
     writer.setResolution(96)
     painter = QPainter(writer)
-    paint_tally(painter, QRectF(0, 0, 600, 400), tally, themes.print_theme(), shrink=0.8)
+    paint_tally(painter, QRectF(0, 0, width, 400), tally, theme, **options)
     painter.end()
-    page = PdfReader(target).pages[0]
+    return PdfReader(target).pages[0]
+
+
+def test_narrow_phases_still_tell_who_joins_and_leaves_and_cut_no_name(qapp, tmp_path):
+    answer = samples.museum_answer()
+    tally = tally_of(samples.museum_plan(), answer.fractional, answer.exact.crew)
+    zoomed = replace(themes.print_theme(), zoom=1.5)
+    # as wide as the crew page leaves it in a window of 1366 pixels at 150 %
+    words = printed(tally, tmp_path / "tally.pdf", 678, zoomed).extract_text().split()
+    moves = [row.joiners(at) or -row.leavers(at) for row in tally.rows for at in range(len(tally.phases))]
+    told = Counter(word for word in words if word[0] in "+\u2212" and len(word) > 1)
+    assert told == Counter(figures.change(move) for move in moves if move)
+    assert not any("\u2026" in word for word in words)
+
+
+def test_without_a_whole_crew_the_name_stands_beside_the_figures(qapp):
+    row, theme = TallyRow("Picker", (3.0,), None, 0, 1), themes.light()
+    image = QImage(400, 80, QImage.Format.Format_RGB32)
+    image.fill(theme.paper)
+    painter = QPainter(image)
+    paint_tally(
+        painter, QRectF(0, 0, 400, 80), Tally((TallyPhase("Harvest", 3),), (row,)), theme, legend=False
+    )
+    painter.end()
+    top, below = QRect(0, 0, 50, 29), QRect(0, 30, 400, 50)
+    assert len(colours(image.copy(top))) > 1
+    assert colours(image.copy(below)) == {theme.paper.rgb()}
+
+
+def test_print_is_vector_with_text(qapp, tally, tmp_path):
+    page = printed(tally, tmp_path / "tally.pdf", 600, themes.print_theme(), shrink=0.8)
     assert not list(page.images)
     text = page.extract_text()
     assert all(row.name.split()[0] in text for row in tally.rows)
