@@ -240,7 +240,7 @@ def cell_tip(row: str, column: str, text: str) -> str:
 
 def breaks_lines(lines: Sequence[str]) -> str:
     """Verdict of a crew that is not workable."""
-    return f"breaks {lines[0]}" if len(lines) == 1 else f"breaks {len(lines)} lines"
+    return "breaks 1 line" if len(lines) == 1 else f"breaks {len(lines)} lines"
 
 
 def below_nobody(text: str, name: str) -> str:

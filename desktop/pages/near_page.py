@@ -117,6 +117,7 @@ class NearPage(QuestionPage):
             line.addWidget(box)
             if after:
                 line.addWidget(QLabel(after))
+                line.addSpacing(current().px(1))
         line.addStretch(1)
         line.addWidget(self.take)
         return line

@@ -50,7 +50,8 @@ def waterfall_axis(bars: tuple[Bar, ...], left: float, right: float) -> Axis:
 def bar_title(bar: Bar) -> str:
     """What stands before a bar."""
     if bar.kind is BarKind.MOVE and bar.was is not None and bar.now is not None:
-        return say.move_title(bar.name, figures.people(bar.was), figures.people(bar.now))
+        was, now = (figures.people(n) if n else "0" for n in (bar.was, bar.now))
+        return say.move_title(bar.name, was, now)
     if bar.kind is BarKind.GIVEN_UP:
         return say.given_up_title(bar.name)
     return say.end_title(bar.name) if bar.kind is BarKind.END else bar.name

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Iterator
 
 from PySide6.QtCore import (
     QAbstractItemModel,
@@ -17,6 +17,7 @@ from PySide6.QtCore import (
 from PySide6.QtGui import (
     QAction,
     QColor,
+    QFontMetrics,
     QGuiApplication,
     QKeySequence,
     QPainter,
@@ -41,6 +42,14 @@ _MOST_TITLE, _LEAST_TITLE = 34, 14  # width of row titles, in steps of the grid
 _TITLE_SHARE = 0.24
 _LEAST_ROWS = 5
 _LEAST_TEXT = 24  # width of a column of texts, in steps of the grid
+
+
+def _lines_high(text: str, room: int, metrics: QFontMetrics) -> int:
+    """Height that `text` takes with some air, in lines of `room` pixels; 0 for a single one."""
+    if metrics.horizontalAdvance(text) <= room:
+        return 0
+    lines = metrics.boundingRect(QRect(0, 0, room, 10_000), Qt.TextFlag.TextWordWrap.value, text)
+    return lines.height() + current().px(1) + 2
 
 
 class GroundDelegate(QStyledItemDelegate):
@@ -124,14 +133,14 @@ class QuietView(QTableView):
         if not wide:
             return
         others = sum(header.sectionSize(c) for c in range(header.count()) if c not in self._wide)
-        least = current().px(_LEAST_TEXT)
-        narrow = self.viewport().width() - others < least * len(wide)
-        for column in wide:
-            header.setSectionResizeMode(
-                column, header.ResizeMode.Fixed if narrow else header.ResizeMode.Stretch
-            )
+        most = current().px(_LEAST_TEXT)
+        least = [min(most, self.sizeHintForColumn(column)) for column in wide]
+        narrow = self.viewport().width() - others < max(least) * len(wide)
+        mode = header.ResizeMode.Fixed if narrow else header.ResizeMode.Stretch
+        for column, width in zip(wide, least, strict=True):
+            header.setSectionResizeMode(column, mode)
             if narrow:
-                header.resizeSection(column, least)
+                header.resizeSection(column, width)
 
     def copy_selection(self) -> None:
         """Put the selected cells, or all where nothing is selected, on the clipboard with their titles."""
@@ -170,24 +179,24 @@ class QuietView(QTableView):
         """Rows as high as the grid says, higher where texts take several lines; the sum of them."""
         down, least = self.verticalHeader(), current().px(self._row_steps)
         down.setDefaultSectionSize(least)
-        room = down.maximumWidth() - 2 * current().px(1)
         total = 0
         for row in range(self.model().rowCount() if self.model() is not None else 0):
-            cells = self.sizeHintForRow(row) if self.wordWrap() else 0
-            high = max(least, cells, self._title_height(row, room))
+            high = max(
+                least, *(_lines_high(text, room, self.fontMetrics()) for text, room in self._texts(row))
+            )
             if down.sectionSize(row) != high:
                 down.resizeSection(row, high)
             total += high
         return total
 
-    def _title_height(self, row: int, room: int) -> int:
-        """What the title of a row needs in `room` pixels of width."""
-        title = str(self.model().headerData(row, Qt.Orientation.Vertical) or "")
-        metrics = self.verticalHeader().fontMetrics()
-        if metrics.horizontalAdvance(title) <= room:
-            return 0
-        lines = metrics.boundingRect(QRect(0, 0, room, 10_000), Qt.TextFlag.TextWordWrap.value, title)
-        return lines.height() + current().px(1) + 2  # as the style sheet pads it
+    def _texts(self, row: int) -> Iterator[tuple[str, int]]:
+        """What may take several lines in a row, with the width it has."""
+        step, down = current().px(1), self.verticalHeader()
+        title = "" if down.isHidden() else str(self.model().headerData(row, Qt.Orientation.Vertical) or "")
+        yield title, down.maximumWidth() - 2 * step
+        for column in self._wide if self.wordWrap() else ():
+            text = str(self.model().index(row, column).data() or "")
+            yield text, self.horizontalHeader().sectionSize(column) - step
 
     def _limit_titles(self) -> None:
         """Row titles take at most their part of the width; longer ones take several lines."""

@@ -60,7 +60,7 @@ def test_a_cell_is_chosen_by_mouse(hillside, qtbot):
     where = hillside.view.visualRect(index).center()
     qtbot.mouseClick(hillside.view.viewport(), Qt.MouseButton.LeftButton, pos=where)
     assert hillside.waterfall.miss.broken.lines == ("Learners per lead",)
-    assert "Learners per lead 1\u00a0people short" in hillside.sentence.text()
+    assert "Learners per lead 1\u00a0person short" in hillside.sentence.text()
 
 
 def test_why_there_is_no_crew(hillside):
