@@ -213,7 +213,6 @@ class AttendancePage(QuestionPage):
             from desktop.pictures.attendance_curve import AttendanceCurve
 
             self.picture = AttendanceCurve()
-            self.picture.setMinimumHeight(current().px(34))
             self.picture.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Expanding)
             self.picture.looked_at.connect(self._on_looked_at)
             self._place.insertWidget(0, self.picture, 1)

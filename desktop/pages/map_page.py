@@ -166,7 +166,6 @@ class MapPage(QuestionPage):
             from desktop.pictures.crew_map import CrewMap
 
             self.picture = CrewMap()
-            self.picture.setMinimumHeight(current().px(44))
             self.picture.looked_at.connect(self._on_looked_at)
             self.picture.chosen.connect(self._on_chosen)
             self._place.addWidget(self.picture)

@@ -168,7 +168,6 @@ class StepsPage(QuestionPage):
             from desktop.pictures.staircase import Staircase
 
             self.picture = Staircase()
-            self.picture.setMinimumHeight(current().px(36))
             self.picture.moved.connect(self._on_moved)
             self._place.addWidget(self.picture)
         return self.picture

@@ -29,6 +29,7 @@ class AttendanceCurve(PlotPicture):
     `looked_at(at)` with the number of the crew when the cursor moved.
     """
 
+    least = 34.0
     looked_at = Signal(int)
 
     def __init__(self, parent: QWidget | None = None) -> None:
@@ -94,7 +95,7 @@ class AttendanceCurve(PlotPicture):
     def _add_marks(self, shown: ChanceCurve, theme: Theme) -> None:
         """What is wanted, named on the line; the budget, named in the key: its line crosses the curve."""
         dash, dot = Qt.PenStyle.DashLine, Qt.PenStyle.DotLine
-        self.upright(100 * shown.wanted, cosmetic(theme.faint, 1, dash), say.WANTED_MARK, 0.06)
+        self.upright(100 * shown.wanted, cosmetic(theme.faint, 1, dash), say.WANTED_MARK, 0.01)
         costs = [crew.cost for crew in shown.curve]
         near = shown.budget is not None and shown.budget <= max(costs) + (max(costs) - min(costs)) / 4
         if near and shown.budget is not None:

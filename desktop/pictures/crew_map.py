@@ -46,6 +46,7 @@ class CrewMap(PlotPicture):
     `looked_at(x, y)` when the cursor moved; `chosen(x, y)` on a click, or Space.
     """
 
+    least = 44.0
     looked_at = Signal(float, float)
     chosen = Signal(float, float)
 

@@ -1,6 +1,6 @@
 """Where the names of points stand, so that they keep out of each other's way and of all marks.
 
-Greedy, the first name first: of eight places around its point each name takes the one that covers least.
+Greedy, the first name first: of twelve places around its point each name takes the one that covers least.
 """
 
 from __future__ import annotations
@@ -11,7 +11,11 @@ from dataclasses import dataclass
 from PySide6.QtCore import QPointF, QRectF, QSizeF
 
 # the corner or side of the text that touches its point, in shares of width and height, best place first
-_PLACES = ((0.0, 1.0), (0.0, 0.0), (1.0, 1.0), (1.0, 0.0), (0.0, 0.5), (1.0, 0.5), (0.5, 1.0), (0.5, 0.0))
+_PLACES = (
+    *((0.0, 1.0), (0.0, 0.0), (0.0, 0.75), (0.0, 0.25), (0.0, 0.5)),  # right of the point, where one reads on
+    *((1.0, 1.0), (1.0, 0.0), (1.0, 0.75), (1.0, 0.25), (1.0, 0.5)),
+    *((0.5, 1.0), (0.5, 0.0)),
+)
 _OUTSIDE = 4.0  # a name that is cut by the edge is worse than one that covers another
 
 

@@ -37,7 +37,12 @@ class PlainAxis(pg.AxisItem):  # type: ignore[misc] # pyqtgraph ships no types
 
 
 class PlotPicture(Copyable):
-    """A plot in the current theme. Subclasses give `redraw(theme)`, which fills the emptied plot."""
+    """A plot in the current theme. Subclasses give `redraw(theme)`, which fills the emptied plot.
+
+    `least` is the lowest height, in steps of the grid.
+    """
+
+    least = 36.0
 
     def __init__(self, name: str, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -63,6 +68,7 @@ class PlotPicture(Copyable):
     def touch(self) -> None:
         """Draw anew in the current theme."""
         theme = current()
+        self.setMinimumHeight(theme.px(self.least))
         self.plot.clear()
         self.names.clear()
         self.plot.setBackground(theme.paper)
@@ -106,7 +112,8 @@ class PlotPicture(Copyable):
     def upright(self, x: float, pen: QPen, says: str, where: float) -> None:
         """An upright line with a small name at `where` (0 at the bottom, 1 at the top)."""
         theme = current()
-        options = {"position": where, "color": theme.faint, "movable": False}
+        beside = [(0, 1), (1, 1)]  # left or right of the line, standing on `where`
+        options = {"position": where, "color": theme.faint, "movable": False, "anchors": beside}
         line = pg.InfiniteLine(x, pen=pen, label=says, labelOpts=options)
         line.label.setFont(theme.font(Size.SMALL))
         self.plot.addItem(line)

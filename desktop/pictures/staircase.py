@@ -72,7 +72,7 @@ class Staircase(PlotPicture):
         self._line(point_path(steps.floor), cosmetic(theme.fractional, 2, dash), say.KEY_FLOOR)
         ends = [(step.to, step.cost) for step in steps.steps]
         self.scatter(ends, "o", 6, theme.exact, theme.exact)
-        self.upright(steps.today, cosmetic(theme.faint, 1), say.TODAY, 0.04)
+        self.upright(steps.today, cosmetic(theme.faint, 1), say.TODAY, 0.01)
         self._add_marker(theme)
 
     def _line(self, path: tuple[list[float], list[float]], pen: QPen, name: str) -> None:

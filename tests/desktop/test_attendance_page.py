@@ -177,7 +177,8 @@ def test_the_picture_follows_the_zoom(page, qapp):
     def sizes():
         marks = [mark.opts["size"] for mark in drawn(page.picture, pg.ScatterPlotItem)]
         names = [name.textItem.font().pointSizeF() for name in drawn(page.picture, pg.TextItem)]
-        return marks + names + [page.picture.plot.getAxis("left").style["tickFont"].pointSizeF()]
+        axis = page.picture.plot.getAxis("left").style["tickFont"].pointSizeF()
+        return [*marks, *names, axis, page.picture.minimumHeight()]
 
     before = sizes()
     theme.apply(qapp, replace(theme.light(), zoom=1.5))
