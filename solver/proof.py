@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Iterable, Iterator, Sequence
 from dataclasses import dataclass
 from math import ceil, floor, inf
 from time import monotonic
@@ -12,13 +12,12 @@ import numpy as np
 from solver.answer import Proof, State
 from solver.engine import EngineName, WholeStatus, whole
 from solver.found import Found, Lots, tie_width
-from solver.matrix import Matrix
 from solver.program import Program
-from solver.race import Standing, engines
+from solver.race import Heat, Standing, engines
 from solver.rounding import half_up, snapped
 from solver.search import Search
 from solver.tiebreak import cheapest_preferred, preferred
-from solver.tightening import PhasesAlone, tightened
+from solver.tightening import PhaseAlone, PhasesAlone, tightened
 from solver.windows import Windows
 
 SECONDS = 60.0
@@ -27,6 +26,8 @@ OWN_SECONDS = 2.0
 OWN_SECONDS_IN_PHASES = 0.25
 CENT = 0.01
 FEW_HEADS = 24  # our own search meets a crew sooner than one could be mended
+# beyond this the rows of the phases alone take longer to find than they are worth (20x8x52: 3.3 s for 0.01 %)
+MANY_HEADS = 400
 
 
 @dataclass(frozen=True)
@@ -60,23 +61,41 @@ class Prover:
     def prove(self, fractional: Sequence[float], effort: Effort) -> Proved:
         """`fractional` is the relaxation's crew in lots."""
         until = monotonic() + effort.seconds
-        several = len(self.program.phases) > 1
-        if several:
-            engines().warm()
         start = self._first_crew(fractional, effort.start)
-        if several:
-            parts = PhasesAlone(self.program)
-            if self.program.head_count > FEW_HEADS:
-                start = self._first_of_phases(parts, fractional, start, effort)
+        if len(self.program.phases) == 1:
+            program, search = self._tightened(self._caps(start))
+            own = self._own_search(program, search, start, until)
+            return own if _settled(own) else _Contest(self, program, search, own, effort, until).run()
+        engines().warm()
+        parts = PhasesAlone(self.program)
+        if self.program.head_count > MANY_HEADS:
+            return self._raced_at_once(start, self._first_crews(parts, fractional, start), effort, until)
+        if self.program.head_count > FEW_HEADS:
+            start = self._first_of_phases(parts, fractional, start, effort)
+        alone = parts.cheapest()
+        start = self._joined(alone, start)
         program, search = self._tightened(self._caps(start))
-        matrix = program.matrix
-        if several:
-            matrix = tightened(program, parts.cheapest())
-            search = Search(program, matrix, grain=search.grain)
+        search = Search(program, tightened(program, alone), grain=search.grain)
         own = self._own_search(program, search, start, until)
-        if own.state is not State.BEST_FOUND:
-            return own
-        return _Contest(self, program, search, matrix, own, effort, until).run()
+        return own if _settled(own) else _Contest(self, program, search, own, effort, until).run()
+
+    def _raced_at_once(
+        self, start: Found | None, first: Iterator[Found | None], effort: Effort, until: float
+    ) -> Proved:
+        """Neither our own search nor rows for the phases are of use in so little time: the engines begin,
+        and meanwhile first crews are mended."""
+        own = Proved(State.BEST_FOUND, None, start, -inf)
+        program, search = self._tightened(self._caps(start))
+        return _Contest(self, program, search, own, effort, until, first).run()
+
+    def _joined(self, alone: Sequence[PhaseAlone], start: Found | None) -> Found | None:
+        """The cheapest crews of the phases, one after the other, if they are workable and cheaper."""
+        parts = [phase.lots for phase in alone if phase.lots is not None]
+        if len(parts) < len(self.program.phases):
+            return start
+        lots = tuple(part[j] for j in range(len(self.program.categories)) for part in parts)
+        objective = self.search.evaluate(lots)
+        return start if objective is None else _cheaper(start, Found(lots, objective))
 
     def _first_crew(self, fractional: Sequence[float], given: Lots | None) -> Found | None:
         """The best of the crew to begin from and the fractional one rounded up, where workable."""
@@ -91,16 +110,23 @@ class Prover:
     def _first_of_phases(
         self, parts: PhasesAlone, fractional: Sequence[float], start: Found | None, effort: Effort
     ) -> Found | None:
-        """A crew for a start: nearest costs least after mending (20x8x52: 3.52 million, up 4.17), down now
-        and then less (10x4x12)."""
-        for rounding in (half_up, floor, ceil):
-            if rounding is ceil and start is not None:
-                break
-            better = _cheaper(start, self._mended(parts, fractional, rounding))
+        """A crew for a start, told as soon as it is known."""
+        for better in self._first_crews(parts, fractional, start):
             if better is not start and better is not None and effort.heard is not None:
                 effort.heard(Proved(State.BEST_FOUND, None, better, self.search.root_bound()))
             start = better
         return start
+
+    def _first_crews(
+        self, parts: PhasesAlone, fractional: Sequence[float], start: Found | None
+    ) -> Iterator[Found | None]:
+        """Ever cheaper: nearest costs least after mending (20x8x52: 3.52 million, up 4.17), down now and then
+        less (10x4x12)."""
+        for rounding in (half_up, floor, ceil):
+            if rounding is ceil and start is not None:
+                return
+            start = _cheaper(start, self._mended(parts, fractional, rounding))
+            yield start
 
     def _mended(
         self, parts: PhasesAlone, fractional: Sequence[float], rounding: Callable[[float], int]
@@ -165,15 +191,15 @@ class _Contest:
         prover: Prover,
         program: Program,
         search: Search,
-        matrix: Matrix,
         own: Proved,
         effort: Effort,
         until: float,
+        first: Iterable[Found | None] = (),
     ) -> None:
         self._prover = prover
         self._program = program
         self._search = search
-        self._matrix = matrix
+        self._first = iter(first)
         self._best = own.best
         self._floor = max(own.bound, search.root_bound())
         self._effort = effort
@@ -187,17 +213,17 @@ class _Contest:
         if self._best is not None:
             standing.objective = self._best.objective
             self._tell(standing)
-        engines().run(
-            self._matrix,
+        heat = Heat(
+            self._search.matrix,
             self._start(),
-            standing,
-            seconds=max(self._until - monotonic(), 0.1),
-            good_enough=self._good_enough,
-            rounded=self._search.rounded,
-            on_crew=self._crew,
-            on_news=self._tell,
-            idle=self._improve,
+            max(self._until - monotonic(), 0.1),
+            self._good_enough,
+            self._search.rounded,
+            self._crew,
+            self._tell,
+            self._improve,
         )
+        engines().run(heat, standing)
         return self._verdict(standing)
 
     def _start(self) -> list[float] | None:
@@ -214,16 +240,19 @@ class _Contest:
 
     def _improve(self, standing: Standing) -> bool:
         """Use the time between the engines' news; False when nothing is left to try."""
-        if self._best is None or not self._windows.useful:
-            return False
-        found = self._windows.step(self._best)
+        found = next(self._first, None) or self._from_window()
         if found is None:
             return False
-        if found is not self._best:
-            self._best = found
-            standing.objective = min(standing.objective, found.objective)
+        better = _cheaper(self._best, found)
+        if better is not None and better is not self._best:
+            self._best = better
+            standing.objective = min(standing.objective, better.objective)
             self._tell(standing)
         return True
+
+    def _from_window(self) -> Found | None:
+        """The crew after its next stretch of phases, None where no stretch is left to try."""
+        return self._windows.step(self._best) if self._best is not None and self._windows.useful else None
 
     def _good_enough(self, standing: Standing) -> bool:
         allowed = self._effort.tolerance * abs(standing.objective)
@@ -250,6 +279,10 @@ class _Contest:
         left = max(self._until - monotonic(), 0.5)
         best = preferred(self._program, best, min(left, OWN_SECONDS))
         return Proved(State.PROVED, proof, best, best.objective)
+
+
+def _settled(proved: Proved) -> bool:
+    return proved.state is not State.BEST_FOUND
 
 
 def _same_cost(a: float, b: float) -> bool:

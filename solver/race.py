@@ -9,7 +9,7 @@ import os
 import subprocess
 import sys
 import threading
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from contextlib import suppress
 from dataclasses import dataclass, field
 from functools import lru_cache
@@ -27,6 +27,8 @@ from solver.matrix import Matrix
 GRACE = 1.0
 # CBC tells its bound only at the end of a solve: the first is short, the later ones longer
 SLICES = (9.0, 30.0, inf)
+# engines look at the clock now and then only; what they tell at their end should not come too late
+OVERRUN = 0.5
 
 
 def host_command() -> tuple[str, ...]:
@@ -138,6 +140,25 @@ OnCrew = Callable[[Sequence[float]], float | None]
 OnNews = Callable[[Standing], None]
 
 
+@dataclass(frozen=True)
+class Heat:
+    """What a race is run over, and who listens.
+
+    `start`: every column of a crew to begin from, or None. `rounded` lifts a bound to the next cost a whole
+    crew can have. `idle` may do something useful for at most half a second while there is no news, and says
+    whether it wants to again.
+    """
+
+    matrix: Matrix
+    start: Sequence[float] | None
+    seconds: float
+    good_enough: Callable[[Standing], bool]
+    rounded: Callable[[float], float]
+    on_crew: OnCrew
+    on_news: OnNews
+    idle: Callable[[Standing], bool]
+
+
 class Race:
     """Two hosts and the queue they report to."""
 
@@ -155,27 +176,10 @@ class Race:
         for host in self.hosts.values():
             host.close()
 
-    def run(
-        self,
-        matrix: Matrix,
-        start: Sequence[float] | None,
-        standing: Standing,
-        *,
-        seconds: float,
-        good_enough: Callable[[Standing], bool],
-        rounded: Callable[[float], float],
-        on_crew: OnCrew,
-        on_news: OnNews,
-        idle: Callable[[Standing], bool],
-    ) -> Standing:
-        """Race until proved, infeasible, good enough or out of time; returns `standing`, brought up to date.
-
-        `rounded` lifts a bound to the next cost a whole crew can have; `idle` may do something useful
-        for at most half a second while there is no news, and says whether it wants to again.
-        """
-        run = _Run(self, matrix, start, standing, seconds, good_enough, rounded, on_crew, on_news, idle)
+    def run(self, heat: Heat, standing: Standing) -> Standing:
+        """Race until proved, infeasible, good enough or out of time; brings `standing` up to date."""
         try:
-            return run.until_decided(self._events)
+            return _Run(self.hosts, heat, standing).until_decided(self._events)
         finally:
             for host in self.hosts.values():
                 host.cancel()
@@ -185,31 +189,14 @@ class Race:
 class _Run:
     """One race."""
 
-    def __init__(
-        self,
-        race: Race,
-        matrix: Matrix,
-        start: Sequence[float] | None,
-        standing: Standing,
-        seconds: float,
-        good_enough: Callable[[Standing], bool],
-        rounded: Callable[[float], float],
-        on_crew: OnCrew,
-        on_news: OnNews,
-        idle: Callable[[Standing], bool],
-    ) -> None:
-        self._hosts = race.hosts
-        self._matrix = matrix_to_json(matrix)
-        self._start = start
+    def __init__(self, hosts: Mapping[EngineName, Host], heat: Heat, standing: Standing) -> None:
+        self._hosts = hosts
+        self._heat = heat
+        self._matrix = matrix_to_json(heat.matrix)
         self.standing = standing
         self._began = monotonic()
-        self._until = self._began + seconds
-        self._good_enough = good_enough
-        self._rounded = rounded
-        self._on_crew = on_crew
-        self._on_news = on_news
-        self._idle = idle
-        self._slice = dict.fromkeys(race.hosts, 0)
+        self._until = self._began + heat.seconds
+        self._slice = dict.fromkeys(hosts, 0)
 
     def until_decided(self, events: SimpleQueue[dict[str, Any]]) -> Standing:
         for engine in self._hosts:
@@ -224,13 +211,14 @@ class _Run:
             try:
                 self._take(events.get(block=not willing, timeout=min(wait, 1.0)))
             except Empty:
-                willing = willing and not self.standing.proofs and self._idle(self.standing)
+                willing = willing and not self.standing.proofs and self._heat.idle(self.standing)
         return self.standing
 
     def _ask(self, engine: EngineName) -> None:
         left = self._until - monotonic()
+        left -= min(OVERRUN, left / 20)
         longest = SLICES[self._slice[engine]] if engine is EngineName.CBC else inf
-        self._hosts[engine].ask(self._matrix, max(min(left, longest), 0.05), self._start)
+        self._hosts[engine].ask(self._matrix, max(min(left, longest), 0.05), self._heat.start)
 
     def _decided(self) -> bool:
         standing, busy = self.standing, any(host.busy for host in self._hosts.values())
@@ -238,7 +226,7 @@ class _Run:
             return True
         if standing.proofs:
             return len(standing.proofs) == len(self._hosts)
-        return self._good_enough(standing)
+        return self._heat.good_enough(standing)
 
     def _take(self, event: dict[str, Any]) -> None:
         engine: EngineName = event["engine"]
@@ -252,15 +240,15 @@ class _Run:
         if event["kind"] == "done":
             host.busy = False
             self._finished(engine, event)
-        self._on_news(self.standing)
+        self._heat.on_news(self.standing)
 
     def _learn(self, event: dict[str, Any]) -> None:
         if event["x"] is not None:
-            cost = self._on_crew(event["x"])
+            cost = self._heat.on_crew(event["x"])
             if cost is not None:
                 self.standing.objective = min(self.standing.objective, cost)
         if event["bound"] > -inf and event.get("status") != WholeStatus.INFEASIBLE.value:
-            self.standing.bound = max(self.standing.bound, self._rounded(event["bound"]))
+            self.standing.bound = max(self.standing.bound, self._heat.rounded(event["bound"]))
 
     def _finished(self, engine: EngineName, event: dict[str, Any]) -> None:
         status = WholeStatus(event["status"])

@@ -14,7 +14,7 @@ from solver import proof
 from solver.answer import Proof, State
 from solver.engine import EngineName, WholeResult, WholeStatus
 from solver.plan import Category, Plan, Presence, Sense, Work
-from solver.race import Standing
+from solver.race import Heat, Standing
 from solver.solve import solve
 
 CBC, HIGHS = EngineName.CBC, EngineName.HIGHS
@@ -36,8 +36,8 @@ class FakeRace:
     def warm(self) -> None:
         """Nothing to start."""
 
-    def run(self, matrix: Any, start: Any, standing: Standing, *, on_crew: Any, **_: Any) -> Standing:
-        self._says(standing, on_crew)
+    def run(self, heat: Heat, standing: Standing) -> Standing:
+        self._says(standing, heat.on_crew)
         return standing
 
 
