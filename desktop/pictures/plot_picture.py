@@ -7,7 +7,7 @@ from math import floor, log10
 from typing import Any
 
 import pyqtgraph as pg
-from PySide6.QtCore import QEvent, Qt
+from PySide6.QtCore import QEvent, QSize, Qt
 from PySide6.QtGui import QColor, QFocusEvent, QPen, QPixmap
 from PySide6.QtWidgets import QVBoxLayout, QWidget
 
@@ -157,6 +157,10 @@ class PlotPicture(Copyable):
         """Hide the focus."""
         super().focusOutEvent(event)
         self._show_focus()
+
+    def sizeHint(self) -> QSize:
+        """The least size: pyqtgraph would ask for the size it has, and never become smaller again."""
+        return QSize(current().px(2 * self.least), current().px(self.least))
 
     def changeEvent(self, event: QEvent) -> None:
         """Follow theme and zoom; Qt sends such changes before there is a plot."""

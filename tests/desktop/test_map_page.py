@@ -1,8 +1,10 @@
+from dataclasses import replace
 from decimal import Decimal
 
 import pytest
 from PySide6.QtCore import QPointF, QRectF, QSizeF, Qt
 
+from desktop import theme
 from desktop.pages.map_page import MapPage, named_spots
 from desktop.pictures.crew_map import CrewMap
 from desktop.pictures.crew_spots import CrewSpots, Spot, SpotKind, nearest_spot, next_spot, spot_sentence
@@ -202,3 +204,17 @@ def test_nobody_on_the_map_is_told_in_words():
     spot = Spot(1, 0, True, 10.0, ())
     shown = CrewSpots("Contract hand", "Fencing gang", "EUR", (), (spot,), (), None)
     assert spot_sentence(shown, spot).startswith("1 Contract hand and no Fencing gang")
+
+
+def test_the_map_becomes_smaller_again(page, qapp, qtbot):
+    page.resize(1200, 650)
+    page.show()
+    high = page.picture.sizeHint().height()
+    try:
+        theme.apply(qapp, replace(theme.light(), zoom=1.5))
+        qtbot.waitUntil(lambda: page.inside.minimumHeight() > 1.5 * high)
+        large = page.inside.minimumHeight()
+    finally:
+        theme.apply(qapp, theme.light())
+    qtbot.waitUntil(lambda: page.inside.minimumHeight() < large - high / 3)
+    assert page.picture.sizeHint().height() == page.picture.minimumHeight() == high
