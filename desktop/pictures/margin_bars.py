@@ -42,8 +42,8 @@ def paint_margin(painter: QPainter, cell: QRectF, margin: float, reach: float, t
     middle = band.center().x()
     length = bar_length(margin, reach, band.width() / 2)
     _paint_about_zero(painter, band, middle, length, broken, theme)
-    painter.setPen(QPen(theme.faint, 1))
-    painter.drawLine(QPointF(middle, band.top() - 2), QPointF(middle, band.bottom() + 2))
+    painter.setPen(QPen(theme.faint, unit))
+    painter.drawLine(QPointF(middle, band.top()), QPointF(middle, band.bottom() + 2 * unit))
 
 
 def _paint_about_zero(
