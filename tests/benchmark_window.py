@@ -1,8 +1,9 @@
 """How quick the window is: `python -m tests.benchmark_window`, from the root of the repository.
 
-Prints the time from start to window and to first answer, from an edit to the new headline (12 categories,
-12 rules, one phase) with each page in front, and the longest gap of a timer while somebody types for ten
-seconds.
+Prints the time from start to window and to first answer, from a choice to the picture (crew map with other
+axes, staircase of 50 to 200 % of the workload; the hillside example), from an edit to the new headline
+(12 categories, 12 rules, one phase) with each page in front, and the longest gap of a timer while somebody
+types for ten seconds.
 """
 
 # ruff: noqa: E402 - the clock starts before anything heavy is imported
@@ -30,6 +31,7 @@ from desktop.workers import Workers
 from solver.plan import ONE, Category, Plan, Presence, Ratio, Rule, Sense, Share, Supervision, Work
 
 EDITS = 40
+CHOICES = 8
 TYPING = 10.0  # seconds
 KEY_EVERY = 0.03  # seconds between two keys
 PAGES = ("Plan", "Crew", "Rounding")
@@ -88,6 +90,9 @@ def main() -> None:
     print(f"first exact answer after       {time.perf_counter() - STARTED:6.2f} s")
     window.resize(1366, 768)
     document = window.document
+    for title, choose in (("Crew map", other_axes), ("Workload", other_range)):
+        first, later = picture_times(app, window, window.page(title), choose)
+        print(f"{title + ', choice to picture':30} {later:6.2f} s median, the first {first:.2f} s")
     for title in PAGES:
         document.new(twelve(1))
         window.page(title)
@@ -103,6 +108,34 @@ def main() -> None:
     print(f"headline after typing: {window.headline.state.text()}")
     document.undo_stack.setClean()
     window.close()
+
+
+def picture_times(
+    app: QApplication, window, page, choose: Callable[[object, int], None]
+) -> tuple[float, float]:
+    """Seconds from opening the page to its picture, and the median over other choices."""
+    times = []
+    for count in range(CHOICES):
+        start = time.perf_counter()
+        if count:
+            choose(page, count)
+            wait(app, lambda: window.answers.detail(page.question) is None, 1.0)
+        wait(app, lambda: window.answers.detail(page.question) is not None)
+        page.grab()  # painted
+        times.append(time.perf_counter() - start)
+    return times[0], statistics.median(times[1:])
+
+
+def other_axes(page, count: int) -> None:
+    """Another pair of categories on the axes."""
+    page.up.setCurrentIndex((page.up.currentIndex() + 1) % page.up.count())
+    if page.up.currentIndex() == page.across.currentIndex():
+        page.up.setCurrentIndex((page.up.currentIndex() + 1) % page.up.count())
+
+
+def other_range(page, count: int) -> None:
+    """Every work in turn, over the same range."""
+    page.work.setCurrentIndex((page.work.currentIndex() + 1) % page.work.count())
 
 
 def edits(app: QApplication, document, answers, ready: Callable[[], bool]) -> tuple[float, float]:

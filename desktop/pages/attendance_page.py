@@ -132,7 +132,7 @@ class AttendancePage(QuestionPage):
         self.chance.setSuffix(f"{figures.NBSP}%")
         self.chance.setToolTip(say.TIP_WANTED)
         self.chance.setAccessibleName(say.WANTED)
-        self.chance.valueChanged.connect(self._asked_soon.start)
+        self.chance.valueChanged.connect(lambda _: self._asked_soon.start())
         self._asked_soon.timeout.connect(self.ask)
         self.take.setToolTip(say.TIP_TAKE)
         self.take.clicked.connect(self.take_crew)

@@ -101,7 +101,7 @@ class NearPage(QuestionPage):
         self.most.setToolTip(say.MOST_TIP)
         for box, name in ((self.within, say.WITHIN), (self.most, say.MOST)):
             box.setAccessibleName(name)
-            box.valueChanged.connect(self._asked_soon.start)
+            box.valueChanged.connect(lambda _: self._asked_soon.start())
         self._asked_soon.timeout.connect(self.ask)
         self.view.setModel(self.table)
         self.view.setSelectionBehavior(QAbstractItemView.SelectionBehavior.SelectRows)
