@@ -114,7 +114,7 @@ def described(count: int, low: str, high: str) -> str:
 
 def for_days(share: str) -> str:
     """What the cheapest crew for the wanted chance is called."""
-    return f"for {share} of days"
+    return f"for {share}"
 
 
 def who(name: str, crew: str) -> str:

@@ -65,7 +65,7 @@ class PreviewPage(AnswerPage):
     def _fill(self) -> None:
         bar = QHBoxLayout()
         bar.setSpacing(current().px(1))
-        for widget in (self.paper_choice, self.ink_choice, self.own):
+        for widget in (self.paper_choice, self.ink_choice):
             bar.addWidget(widget)
         bar.addStretch(1)
         for button in (self.more, self.print_button, self.pdf_button):
@@ -73,7 +73,8 @@ class PreviewPage(AnswerPage):
         outer = self.layout()
         assert isinstance(outer, QVBoxLayout)
         outer.insertLayout(1, bar)
-        outer.insertWidget(2, self.told)
+        outer.insertWidget(2, self.own)  # a line of its own: beside the buttons it widens the window at 150 %
+        outer.insertWidget(3, self.told)
         self.told.hide()
         self.body.addWidget(self.view)
         self.body.addStretch(1)
