@@ -37,34 +37,38 @@ class Branching:
 
     def __init__(self, count: int) -> None:
         """`count` head counts."""
-        self._sum = np.zeros((2, count))
-        self._seen = np.zeros((2, count))
+        self._sum = ([0.0] * count, [0.0] * count)
+        self._seen = ([0] * count, [0] * count)
+        self._all = [0.0, 0.0]
+        self._splits = [0, 0]
 
     def learn(self, split: Split, objective: float) -> None:
         """The child of `split` has a relaxation that costs `objective`."""
-        self._sum[split.side, split.i] += max(objective - split.objective, 0.0) / split.distance
-        self._seen[split.side, split.i] += 1
+        rise = max(objective - split.objective, 0.0) / split.distance
+        self._sum[split.side][split.i] += rise
+        self._seen[split.side][split.i] += 1
+        self._all[split.side] += rise
+        self._splits[split.side] += 1
 
     def choose(self, x: Floats) -> int | None:
         """The head count to split in a relaxation with head counts `x`; None if all are whole."""
-        if not len(x):
-            return None
-        down = x - np.floor(x)
-        distance = np.minimum(down, 1 - down)
-        open_columns = np.nonzero(distance > INTEGRAL)[0]
-        if len(open_columns) < 2:
-            return int(open_columns[0]) if len(open_columns) else None
-        rise = self._rises()
-        score = np.maximum(rise[DOWN] * down, _LITTLE) * np.maximum(rise[UP] * (1 - down), _LITTLE)
-        score += _LITTLE**2 * distance  # where nothing is known: the one furthest from a whole lot
-        return int(open_columns[score[open_columns].argmax()])
+        below = x - np.floor(x)
+        distance = np.minimum(below, 1 - below)
+        columns = np.nonzero(distance > INTEGRAL)[0].tolist()
+        if len(columns) < 2:
+            return columns[0] if columns else None
+        parts = [(self._rise(DOWN, i) * below[i], self._rise(UP, i) * (1 - below[i])) for i in columns]
+        least = _LITTLE * max(max(part) for part in parts)
+        # where nothing tells them apart: the one furthest from a whole lot
+        return int(
+            max(
+                zip(columns, parts, strict=True),
+                key=lambda each: (max(each[1][0], least) * max(each[1][1], least), distance[each[0]]),
+            )[0]
+        )
 
-    def _rises(self) -> Floats:
-        """Expected rise per lot on either side, the average where a column was not split yet; scaled to 1."""
-        known = self._seen > 0
-        rise = self._sum / np.maximum(self._seen, 1)
-        count = known.sum(axis=1, keepdims=True)
-        average = np.where(known, rise, 0.0).sum(axis=1, keepdims=True) / np.maximum(count, 1)
-        rise = np.where(known, rise, np.where(count > 0, average, 1.0))
-        largest = float(rise.max())
-        return np.asarray(rise / largest if largest > 0 else rise)
+    def _rise(self, side: int, i: int) -> float:
+        """Expected rise per lot on a side, the average where a column was not split yet."""
+        if self._seen[side][i]:
+            return self._sum[side][i] / self._seen[side][i]
+        return self._all[side] / self._splits[side] if self._splits[side] else 1.0

@@ -129,7 +129,7 @@ class DualBound:
 
     def value_and_reduced(self, prices: Floats, lower: Floats, upper: Floats) -> tuple[float, Floats]:
         """The bound, and the columns' reduced costs at these prices."""
-        y = np.clip(prices, self._floor, self._ceiling)
+        y = np.minimum(np.maximum(prices, self._floor), self._ceiling)
         pulled = np.bincount(
             self._column_of, weights=self._values * y[self._row_of], minlength=len(self._cost)
         )

@@ -50,6 +50,7 @@ class Search:
         self._dual_bound = DualBound(self.matrix)
         self._lower = np.array(self.matrix.lower)
         self._upper = np.array(self.matrix.upper)
+        self._node_lower, self._node_upper = self._lower.copy(), self._upper.copy()
         free = set(fractional)
         self.heads = [c for c in range(program.head_count) if c not in free]
         self.all_whole = len(free) == 0
@@ -177,7 +178,7 @@ class Search:
 
     def bound_and_reduced(self, node: Node) -> tuple[float, Floats]:
         """The bound before it is rounded up to the grain, and the reduced costs of the integer columns."""
-        lower, upper = self._lower.copy(), self._upper.copy()
+        lower, upper = self._node_lower, self._node_upper
         lower[self._columns], upper[self._columns] = node.lower, node.upper
         bound, reduced = self._dual_bound.value_and_reduced(self.relaxation.prices, lower, upper)
         return bound, reduced[self._columns]

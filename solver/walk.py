@@ -138,17 +138,17 @@ class Walk:
         than `bound` (reduced cost fixing; Dantzig, Fulkerson & Johnson 1954).
         """
         left = self._dearest() - bound
-        if not np.isfinite(left):
+        if left == inf:
             return node
-        with np.errstate(divide="ignore"):
-            lots = np.floor(left / np.abs(reduced) * (1 + 1e-9) + 1e-6)
-        upper = np.minimum(node.upper, np.maximum(node.lower + lots, np.ceil(x)))
-        lower = np.maximum(node.lower, np.minimum(node.upper - lots, np.floor(x)))
-        return replace(
-            node,
-            upper=np.where(reduced > _FREE, upper, node.upper),
-            lower=np.where(reduced < -_FREE, lower, node.lower),
-        )
+        lots = np.floor(left / np.maximum(np.abs(reduced), _FREE) * (1 + 1e-9) + 1e-6)
+        far = lots < node.upper - node.lower
+        if not far.any():
+            return node
+        upper, lower = node.upper.copy(), node.lower.copy()
+        down, up = far & (reduced > _FREE), far & (reduced < -_FREE)
+        upper[down] = np.maximum(node.lower + lots, np.ceil(x))[down]
+        lower[up] = np.minimum(node.upper - lots, np.floor(x))[up]
+        return replace(node, upper=np.minimum(upper, node.upper), lower=np.maximum(lower, node.lower))
 
     def _dearest(self) -> float:
         """The largest objective that is still wanted."""
