@@ -55,13 +55,12 @@ def typed_amount(text: str, steps: Steps) -> float:
     52,000 is read as thousands where that lies on the staircase and 52 does not.
     """
     plain = text.strip().removesuffix("%").removesuffix(steps.unit).strip()
-    amount = float(numbers.parse(plain))
-    if not steps.steps:
-        return amount
+    if not steps.steps or not numbers.reads_two_ways(plain):
+        return float(numbers.parse(plain))
+    amount = float(numbers.decimal_reading(plain))
     low, high = steps.steps[0].from_, steps.steps[-1].to
-    if numbers.reads_two_ways(plain) and not low <= amount <= high and low <= 1000 * amount <= high:
-        return 1000 * amount
-    return amount
+    there = [number for number in (amount, 1000 * amount) if low <= number <= high]
+    return there[0] if len(there) == 1 else float(numbers.parse(plain))
 
 
 class StepsPage(QuestionPage):

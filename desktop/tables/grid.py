@@ -17,7 +17,7 @@ from PySide6.QtWidgets import (
 from desktop import messages, theme
 from desktop.dialogs.question import Choice, Role, ask
 from desktop.tables.cell_editors import CellDelegate
-from desktop.tables.clipboard import TooLarge, block_of, text_of
+from desktop.tables.clipboard import TooLarge, block_of, settled, text_of
 from desktop.tables.grid_model import GridModel
 from solver.plan import Plan
 from solver.tablecolumns import What
@@ -131,7 +131,7 @@ class Grid(QTableView):
         if self._mapped_instead(text):
             return
         try:
-            block = block_of(text)
+            block = settled(block_of(text))
         except TooLarge:
             self.remarked.emit(messages.PASTE_TOO_LARGE.format(most=self._model.table.most))
             return

@@ -1,7 +1,9 @@
 """Numbers as they are typed into a grid and shown there.
 
-Typed: as `solver.numeral` reads them, in the digits of any script. Shown: every digit as typed, the locale's
-decimal sign, and thousands apart by a narrow space, never by a sign, so that what is shown can be typed back.
+Typed: as `solver.numeral` reads them, in the digits of any script; but 75,000 is refused where the point is
+the decimal sign, and 75.000 where the comma is: a thousand times as much may be meant. Shown: every digit as
+typed, the locale's decimal sign, and thousands apart by a narrow space, never by a sign, so that what is
+shown can be typed back.
 """
 
 from __future__ import annotations
@@ -12,9 +14,11 @@ from decimal import Decimal
 
 from PySide6.QtCore import QLocale
 
+from desktop import messages
 from desktop.figures import NIL
 from solver.exact import TypedNumber
 from solver.numeral import NotANumber, parse_number
+from solver.review import quoted
 
 NARROW_SPACE = "\u202f"
 _GROUPED_FROM = 5  # 3100 reads well as it is, 52 000 does not
@@ -30,8 +34,22 @@ class Refused(Exception):
         return str(self)
 
 
-def parse(text: str) -> TypedNumber:
+def parse(text: str, locale: QLocale | None = None) -> TypedNumber:
     """The number typed as `text`, with the digits as typed. Raises Refused."""
+    number = decimal_reading(text)
+    sign = (locale or QLocale()).decimalPoint()
+    if reads_two_ways(text) and sign not in text:
+        thousands = plain(Decimal(re.sub(r"[.,]", "", _with_plain_digits(text).strip())), locale)
+        raise Refused(
+            messages.READS_TWO_WAYS.format(
+                text=quoted(text.strip()), thousands=thousands, decimals=plain(number, locale)
+            )
+        )
+    return number
+
+
+def decimal_reading(text: str) -> TypedNumber:
+    """The number typed as `text`, a lone comma or point taken for the decimal sign. Raises Refused."""
     if text.strip() in _ZEROS:
         return TypedNumber("0")
     try:
@@ -46,7 +64,7 @@ def _with_plain_digits(text: str) -> str:
 
 
 def reads_two_ways(text: str) -> bool:
-    """True for 52,000 or 1.234: read as a decimal, though somebody may have meant thousands."""
+    """True for 52,000 or 1.234: a decimal, or thousands."""
     try:
         return bool(parse_number(_with_plain_digits(text)).remark)
     except NotANumber:

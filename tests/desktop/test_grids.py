@@ -10,6 +10,7 @@ from PySide6.QtWidgets import QApplication, QLineEdit, QMessageBox
 from desktop.document import Document
 from desktop.tables.category_table import CATEGORIES, HOURS, LIMITS, MOVES
 from desktop.tables.cell_editors import NameList
+from desktop.tables.clipboard import settled
 from desktop.tables.grid import Grid
 from desktop.tables.grid_model import GridModel
 from desktop.tables.phase_table import PHASES
@@ -203,13 +204,18 @@ def test_a_refused_entry_follows_its_row(made):
     assert shown(grid, 0, "pay") == "430"
 
 
-def test_a_number_that_reads_two_ways_is_remarked_on(made, qtbot):
+def test_a_number_that_reads_two_ways_is_not_guessed_at(made, qtbot):
     document, grid = made()
+    before = document.plan.categories[0].hours
     with qtbot.waitSignal(grid.remarked) as heard:
-        type_into(grid, 0, "pay", "52.00")
         type_into(grid, 0, "hours", "1,234")
+    assert document.plan.categories[0].hours == before
+    assert shown(grid, 0, "hours") == "✗ 1,234"
+    assert "type 1234 for thousands or 1.234 for decimals" in heard.args[0]
+    with qtbot.waitSignal(grid.remarked) as heard:
+        type_into(grid, 0, "hours", "1.234")
     assert document.plan.categories[0].hours == D("1.234")
-    assert heard.args[0] == "1,234 was read as 1.234. For thousands leave the sign out."
+    assert heard.args[0] == "1.234 was read as 1.234. For thousands leave the sign out."
 
 
 def test_renaming_renames_everywhere_in_one_step(made):
@@ -458,3 +464,18 @@ def test_html_in_names_is_text(made):
     type_into(grid, 0, "pay", "<img src=x>")
     tip = grid.model().index(0, column(grid, "pay")).data(Qt.ItemDataRole.ToolTipRole)
     assert "<img" not in tip
+
+
+@pytest.mark.parametrize(
+    ("block", "read"),
+    [
+        ((("60,000",), ("1,250,000",)), (("60000",), ("1,250,000",))),
+        ((("60,000", "2600.5"),), (("60000", "2600.5"),)),
+        ((("60.000", "0,125"),), (("60000", "0,125"),)),
+        ((("60,000", "2,600"),), (("60,000", "2,600"),)),  # nothing tells
+        ((("60,000", "0,5", "0.5"),), (("60,000", "0,5", "0.5"),)),  # cells contradict each other
+        ((("Gang 1,200", "1.5"),), (("Gang 1,200", "1.5"),)),
+    ],
+)
+def test_pasted_thousands_are_told_by_the_cells_beside_them(block, read):
+    assert settled(block) == read

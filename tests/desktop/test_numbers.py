@@ -19,7 +19,6 @@ ENGLISH = QLocale(QLocale.Language.English, QLocale.Country.UnitedStates)
         ("12.50", "12.50"),
         ("12,50", "12.50"),
         ("1.234", "1.234"),
-        ("1,234", "1.234"),
         ("1.234,5", "1234.5"),
         ("1,234.5", "1234.5"),
         ("1.234.567", "1234567"),
@@ -77,8 +76,8 @@ def test_what_is_no_number_is_refused(text):
 @given(st.decimals(min_value=-(10**9), max_value=10**9, allow_nan=False, allow_infinity=False, places=4))
 def test_what_is_shown_can_be_typed_back(number):
     for locale in (GERMAN, ENGLISH):
-        assert numbers.parse(numbers.shown(number, locale)) == number
-        assert numbers.parse(numbers.plain(number, locale)) == number
+        assert numbers.parse(numbers.shown(number, locale), locale) == number
+        assert numbers.parse(numbers.plain(number, locale), locale) == number
 
 
 def test_every_digit_is_shown():
@@ -103,3 +102,23 @@ def test_every_digit_is_shown():
 )
 def test_what_reads_two_ways(text, twice):
     assert numbers.reads_two_ways(text) is twice
+
+
+@pytest.mark.parametrize(
+    ("text", "locale", "number"),
+    [
+        ("75,000", ENGLISH, None),
+        ("75.000", ENGLISH, "75.000"),
+        ("75.000", GERMAN, None),
+        ("-75,000", GERMAN, "-75.000"),
+        ("-75.000", GERMAN, None),
+        ("0,125", ENGLISH, "0.125"),
+        ("1,234.5", GERMAN, "1234.5"),
+    ],
+)
+def test_what_may_be_thousands_is_read_only_with_the_decimal_sign_of_the_machine(text, locale, number):
+    if number is not None:
+        assert str(numbers.parse(text, locale)) == number
+        return
+    with pytest.raises(numbers.Refused, match=r"type -?75000 for thousands or -?75[.,]000 for decimals"):
+        numbers.parse(text, locale)
