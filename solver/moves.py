@@ -11,6 +11,7 @@ from solver.grain import whole_grain
 from solver.inquiry import Inquiry
 from solver.lines import Line
 from solver.loosened import Negotiable
+from solver.phrases import priced
 from solver.plan import Budget, Plan, Presence, Ratio, Sense, Share
 from solver.program import Program
 from solver.repair import NOT_ENOUGH, PERCENT, bound_of, typed_bound
@@ -136,8 +137,8 @@ class Moves:
             cost = program.ledger.paper_cost(outcome.best.lots)
         new = _stepped(cost, CENT, ROUND_CEILING)
         move = new - rule.at_most
-        words = f"{rule.name} by {figure(move)} {self._plan.currency} to {figure(new)}"
-        return _Move(move, self._plan.currency, f"Raise {words}.")
+        by, to = (priced(figure(amount), self._plan.currency) for amount in (move, new))
+        return _Move(move, self._plan.currency, f"Raise {rule.name} by {by} to {to}.")
 
     def _presence(self, rule: Presence, line: Line) -> _Move:
         by, lots = self._least(line, everywhere=True)

@@ -15,6 +15,11 @@ def counted(count: int, one: str, several: str = "") -> str:
     return f"{count:,} {noun(count, one, several)}"
 
 
+def priced(amount: str, currency: str) -> str:
+    """`EUR 1,520`, as the window has it."""
+    return f"{currency} {amount}".strip()
+
+
 def listed(parts: Sequence[str], last: str = "and") -> str:
     """`a, b and c`."""
     if len(parts) < 2:

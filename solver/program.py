@@ -29,6 +29,7 @@ from solver.answer import LineKind
 from solver.ledger import Ledger
 from solver.lines import Column, HeadLine, Line
 from solver.matrix import Floats, Matrix, RowSense
+from solver.phrases import priced
 from solver.plan import Budget, Category, Plan, Presence, Ratio, Rule, Share
 from solver.ruleterms import rule_says, rule_terms
 
@@ -396,7 +397,7 @@ class Program:
             costly, [self.matrix.cost[i] for i in costly], RowSense.AT_MOST, float(rule.at_most)
         )
         self.budget_rows.append(row)
-        says = f"{rule.name}: at most {rule.at_most:,} {self.plan.currency}"
+        says = f"{rule.name}: at most {priced(f'{rule.at_most:,}', self.plan.currency)}"
         line = Line(rule.name, LineKind.BUDGET, None, self.plan.currency, row, 1.0, says)
         self.lines.append(line)
         self.budget_of[line] = Fraction(rule.at_most)

@@ -10,6 +10,7 @@ from solver.answer import Crew, LineKind
 from solver.lines import Line
 from solver.loosened import is_settling
 from solver.loosening import Loosening
+from solver.phrases import priced
 from solver.plan import Plan, Presence, Ratio, Rule, Sense, Share
 from solver.report import crew_words, figure, number
 
@@ -63,7 +64,7 @@ def _onset(plan: Plan, line: Line, by: Fraction) -> str:
 
 
 def _money(plan: Plan, amount: float) -> str:
-    return f"{number(amount)} {plan.currency}"
+    return priced(number(amount), plan.currency)
 
 
 def _crew(plan: Plan, crew: Crew, exact: Crew) -> str:

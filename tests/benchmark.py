@@ -20,9 +20,10 @@ import subprocess
 import sys
 import threading
 import time
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from contextlib import suppress
 from dataclasses import dataclass
+from functools import partial
 from math import exp, inf, log
 from pathlib import Path
 from typing import Any
@@ -46,6 +47,9 @@ HILLSIDE = HERE.parent / "resources" / "examples" / "hillside.crew.json"
 SECONDS = 10.0
 THREADS = 2
 EARLY = 1.0
+# what is proved this soon is run so many times more, by everybody: one run of 20 ms tells little
+BLINK = 0.3
+AGAIN = 4
 PEERS = ("highs", "cp-sat")
 COLUMNS = (
     *("size", "seed", "solver", "first_s", "proved_s"),
@@ -162,8 +166,17 @@ def family(sizes: Sequence[tuple[int, ...]], seeds: int) -> Any:
         for seed in range(seeds):
             plan = family_plan(*size, seed)
             raw = matrix_to_json(Program(plan).matrix)
-            trials = {"here": _here(plan), **{peer: _peer(peer, raw) for peer in PEERS}}
-            yield FamilyRow(size, seed, trials)
+            runs: dict[str, Callable[[], Trial]] = {"here": partial(_here, plan)}
+            runs |= {peer: partial(_peer, peer, raw) for peer in PEERS}
+            yield FamilyRow(size, seed, {name: _typical(run) for name, run in runs.items()})
+
+
+def _typical(run: Callable[[], Trial]) -> Trial:
+    """A trial; where it is over in a blink, the median one of several."""
+    trials = [run()]
+    if (trials[0].proved or inf) < BLINK:
+        trials += [run() for _ in range(AGAIN)]
+    return sorted(trials, key=lambda trial: trial.proved or inf)[len(trials) // 2]
 
 
 def _here(plan: Plan) -> Trial:
@@ -180,8 +193,9 @@ def _here(plan: Plan) -> Trial:
 
     case = Case(plan, effort=Effort(SECONDS, heard=heard))
     with _EnginePeaks() as peaks:
+        began = time.perf_counter()
         proved = case.proved
-    ended = time.perf_counter() - began
+        ended = time.perf_counter() - began
     trace.append((ended, inf if proved.best is None else proved.best.objective, proved.bound))
     if proved.proof is not None and not proofs:
         proofs.append(ended)

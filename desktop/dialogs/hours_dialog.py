@@ -113,4 +113,5 @@ class HoursDialog(QDialog):
 
 
 def _percent(category: Category) -> str:
-    return f"{numbers.shown(percent_of(category.absence))}{figures.NBSP}%"
+    share = percent_of(category.absence)  # in a sentence zero is a number, not a dash
+    return f"{numbers.shown(share) if share else '0'}{figures.NBSP}%"

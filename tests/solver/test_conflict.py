@@ -139,7 +139,7 @@ def told(plan: Plan) -> dict[str, str]:
 def test_a_budget_is_raised_to_what_the_cheapest_crew_costs() -> None:
     assert told(plan_of(hand(), rules=[Budget("Money", Decimal("299.99"))])) == {
         "Digging": "Lower Digging by 20 m to 80.",
-        "Money": "Raise Money by 0.01 EUR to 300.",
+        "Money": "Raise Money by EUR 0.01 to EUR 300.",
         WHOLE_PEOPLE: "Share someone with another site or take someone part-time: "
         "fractional people could do it.",
     }

@@ -85,7 +85,7 @@ def test_without_a_workable_crew_the_conflict_is_told_in_full(files: dict[str, s
     done = run("room", files["impossible"])
     assert done.returncode == 1
     assert done.stdout.splitlines()[:2] == ["No workable crew exists.", "These cannot hold together:"]
-    assert "Raise Money by 500 EUR to 2,000." in done.stdout
+    assert "Raise Money by EUR 500 to EUR 2,000." in done.stdout
     machine = run("near", files["impossible"], "--json")
     assert machine.returncode == 1
     document = json.loads(machine.stdout)
@@ -179,7 +179,7 @@ def test_texts_read_well() -> None:
         "",
     ]
     text = report_room.room(PLAN, room(PLAN))
-    assert "Keys: 1 instead of 2 would let you do with 1 Lead hand, 3 Hand and save 550 EUR." in text
+    assert "Keys: 1 instead of 2 would let you do with 1 Lead hand, 3 Hand and save EUR 550." in text
     assert "price for fractional people" in text
 
 
@@ -188,6 +188,6 @@ def test_phases_are_named_where_there_are_several() -> None:
     plan = Plan(phases=phases, categories=(LEAD, HAND), rules=(KEYS,),
                 works=(Work("Digging", "m", (Decimal(180), Decimal(90))),))  # fmt: skip
     says = [line.says for line in room(plan).lines]
-    assert "20 m less of Digging in Peak would let you do with 1 fewer Hand in Peak and save 600 EUR." in says
+    assert "20 m less of Digging in Peak would let you do with 1 fewer Hand in Peak and save EUR 600." in says
     text = report_room.room(plan, room(plan))
     assert "Digging in Peak, m" in text

@@ -193,13 +193,13 @@ class TestWords:
         line = room(self.plan()).lines[0]
         assert (line.tighten, line.loosen, line.saving) == pytest.approx((30, 10, 300))
         assert line.says == (
-            "10 m less of Digging would let you do with 2 Lead hand, 2 Hand and save 300 EUR."
+            "10 m less of Digging would let you do with 2 Lead hand, 2 Hand and save EUR 300."
         )
 
     def test_a_rule(self) -> None:
         line = room(self.plan()).lines[1]
         assert (line.tighten, line.loosen, line.saving) == (0, 1, 500)
-        assert line.says == "Keys: 1 instead of 2 would let you do with 1 Lead hand, 3 Hand and save 500 EUR."
+        assert line.says == "Keys: 1 instead of 2 would let you do with 1 Lead hand, 3 Hand and save EUR 500."
 
     def test_a_line_that_cannot_help(self) -> None:
         keys = Presence("Keys", {"Lead hand": Decimal(1)}, Sense.AT_MOST, Decimal(2))
