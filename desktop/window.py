@@ -191,7 +191,7 @@ class Window(QMainWindow):
         self.setWindowModified(self.document.modified)
 
     def _restore(self) -> None:
-        self.resize(1180, 700)
+        self.resize(1200, 700)
         stored = QSettings().value(_GEOMETRY)
         if stored is not None:
             self.restoreGeometry(stored)

@@ -20,10 +20,11 @@ from desktop.tables.grid_model import GridModel
 Index = QModelIndex | QPersistentModelIndex
 
 _RETURN = (Qt.Key.Key_Return, Qt.Key.Key_Enter)
+_TABS = (Qt.Key.Key_Tab, Qt.Key.Key_Backtab)
 
 
 class NameList(QListWidget):
-    """Names to tick with the space bar; Return takes them."""
+    """Names to tick, with the space bar or by typing them with a comma between; Return takes them."""
 
     def __init__(self, names: tuple[str, ...], parent: QWidget) -> None:
         super().__init__(parent)
@@ -32,6 +33,7 @@ class NameList(QListWidget):
             item.setFlags(item.flags() | Qt.ItemFlag.ItemIsUserCheckable)
             item.setCheckState(Qt.CheckState.Unchecked)
         self.setCurrentRow(0)
+        self._typed = ""
 
     def tick(self, names: tuple[str, ...]) -> None:
         """Tick `names`, and nobody else."""
@@ -43,8 +45,37 @@ class NameList(QListWidget):
         """The names that are ticked, in their order."""
         return tuple(i.text() for i in self._items() if i.checkState() == Qt.CheckState.Checked)
 
+    def tick_typed(self) -> None:
+        """Tick the name that was typed, in whole or in part; nobody where no name begins that way."""
+        item = self._beginning(self._typed)
+        if item is not None:
+            item.setCheckState(Qt.CheckState.Checked)
+        self._typed = ""
+
+    def _beginning(self, typed: str) -> QListWidgetItem | None:
+        """The first name that begins with what was typed."""
+        names = (i for i in self._items() if i.text().casefold().startswith(typed.casefold()))
+        return next(names, None) if typed else None
+
     def _items(self) -> list[QListWidgetItem]:
         return [self.item(row) for row in range(self.count())]
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:
+        """Letters look for a name, a comma ticks it; a space within what is typed belongs to it."""
+        text = event.text()
+        if event.key() == Qt.Key.Key_Backspace:
+            self._typed = self._typed[:-1]
+        elif text in (",", ";") and text:
+            self.tick_typed()
+            self._typed = " "  # the space that follows ticks nobody
+        elif text.isprintable() and text and (text != " " or self._typed):
+            self._typed = (self._typed + text).lstrip()
+        else:
+            self._typed = ""
+            super().keyPressEvent(event)
+        item = self._beginning(self._typed)
+        if item is not None:
+            self.setCurrentItem(item)
 
 
 class CellDelegate(QStyledItemDelegate):
@@ -100,12 +131,14 @@ class CellDelegate(QStyledItemDelegate):
 
     def eventFilter(self, editor: QObject, event: QEvent) -> bool:
         """Return takes the ticks of a list, as it takes a line of text."""
-        if isinstance(editor, NameList) and _is_return(event):
+        if isinstance(editor, NameList) and _pressed(event, (*_RETURN, *_TABS)):
+            editor.tick_typed()
+        if isinstance(editor, NameList) and _pressed(event, _RETURN):
             self.commitData.emit(editor)
             self.closeEditor.emit(editor, QStyledItemDelegate.EndEditHint.SubmitModelCache)
             return True
         return super().eventFilter(editor, event)
 
 
-def _is_return(event: QEvent) -> bool:
-    return isinstance(event, QKeyEvent) and event.type() == QEvent.Type.KeyPress and event.key() in _RETURN
+def _pressed(event: QEvent, keys: tuple[Qt.Key, ...]) -> bool:
+    return isinstance(event, QKeyEvent) and event.type() == QEvent.Type.KeyPress and event.key() in keys

@@ -457,6 +457,25 @@ def test_names_are_ticked_by_keyboard(made):
     assert document.plan.categories[1].supervision.by == ("Driver",)
 
 
+@pytest.mark.parametrize(
+    ("typed", "by"),
+    [
+        ("dri", ("Lead hand", "Driver")),
+        ("Driver, lead", ("Lead hand", "Driver")),
+        ("lead hand", ("Lead hand",)),
+        ("nobody", ("Lead hand",)),
+    ],
+)
+def test_supervisors_can_be_typed(made, typed, by):
+    document, grid = made()
+    grid.setCurrentIndex(grid.model().index(1, column(grid, "supervision.by")))
+    QTest.keyClick(grid, Qt.Key.Key_F2)
+    names = grid.findChild(NameList)
+    QTest.keyClicks(names, typed)
+    QTest.keyClick(names, Qt.Key.Key_Return)
+    assert document.plan.categories[1].supervision.by == by
+
+
 def test_html_in_names_is_text(made):
     _, grid = made()
     type_into(grid, 0, "name", "<b>A</b>")
