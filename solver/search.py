@@ -46,7 +46,6 @@ class Search:
         self.matrix = program.matrix if matrix is None else matrix
         self.relaxation = Relaxation(forgiving(self.matrix))
         self.grain = grain
-        self.solved = 0
         self._dual_bound = DualBound(self.matrix)
         self._lower = np.array(self.matrix.lower)
         self._upper = np.array(self.matrix.upper)
