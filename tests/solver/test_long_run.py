@@ -23,6 +23,12 @@ def test_a_few_plans_of_every_kind_agree() -> None:
     assert "9 plans" in next(tally.lines())
 
 
+def test_what_disagreed_once_agrees() -> None:
+    """Equally cheap within six hundredths of a cent: the program and the checker need not draw one line."""
+    out = io.StringIO()
+    assert not long_run.run(["small:1009249"], 1, out).disagreements, out.getvalue()
+
+
 def _dearer(answer: Answer) -> Answer:
     assert answer.exact is not None
     return replace(answer, exact=replace(answer.exact, cost=answer.exact.cost + 1), bound=answer.bound)
