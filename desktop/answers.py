@@ -88,6 +88,7 @@ class Answers(QObject):
         self._asked: Plan | None = None
         self._asked_about = document.plan  # what the errand under way was sent with
         self._errand: Errand | None = None
+        self._stopped = False  # the errand only completes the crew that was kept
         self._since = QElapsedTimer()
         self._slow = False
         self._effort = Effort()
@@ -132,7 +133,7 @@ class Answers(QObject):
     def can_look_further(self) -> bool:
         """True when the answer is a crew that is not proved cheapest, and nobody is at work on it."""
         ready = self._workers is not None and self._status is Status.READY
-        return ready and not self.busy and self._has_best_found()
+        return ready and (self._stopped or not self.busy) and self._has_best_found()
 
     @property
     def long(self) -> bool:
@@ -189,15 +190,20 @@ class Answers(QObject):
             self._start(effort.seconds, self._best())
 
     def stop(self) -> None:
-        """Keep the best crew found so far; the process at work can only be ended."""
+        """Keep the best crew found so far; the process at work can only be ended.
+
+        Another one works out what rounding does beside that crew: the first had not come to it.
+        """
         if self.can_stop:
             self._drop_errand()
-            self._spare()
+            self._start(0.0, self._best())
+            self._stopped = True
             self._set(Status.READY)
 
     def look_further(self) -> None:
         """Go on from the best crew found, longer than before; it stays the answer meanwhile."""
         if self.can_look_further:
+            self._drop_errand()
             self._start(self._seconds * FURTHER, self._best())
             self._set(Status.SOLVING)
 
@@ -317,7 +323,8 @@ class Answers(QObject):
         """Ask about the plan as it stands, beginning from the crew `start`."""
         assert self._workers is not None
         self._asked_about = self._document.plan
-        self._seconds = seconds
+        self._stopped = False
+        self._seconds = seconds or self._seconds
         crew = None if start is None else {name: list(counts) for name, counts in start.items()}
         options = {"seconds": seconds, "tolerance": self._effort.tolerance, "start": crew}
         silence = int((seconds + GRACE) * 1000)
@@ -354,7 +361,7 @@ class Answers(QObject):
             if not self._has_best_found():
                 self._spare()
             self._hold(self._asked_about, self._with_what_is_known(reply.value))
-            self._set(Status.SOLVING)
+            self._set(Status.READY if self._stopped else Status.SOLVING)
         elif reply.part == "fractional" and reply.value is not None:
             self._fractional = reply.value
             self._floor_due.start(max(0, WORTH_SHOWING - int(self._since.elapsed())))
@@ -370,7 +377,7 @@ class Answers(QObject):
             self.receive(self._asked_about, self._with_what_is_known(reply.value))
         elif reply.part == "problems":
             self._set(Status.PROBLEMS, reply.value)
-        else:
+        elif not self._stopped:
             self._set(Status.FAILED, failure=messages.no_answer(reply.part, reply.value))
 
     def _with_what_is_known(self, answer: Answer) -> Answer:
@@ -387,11 +394,11 @@ class Answers(QObject):
         return replace(answer, bound=min(bound, answer.exact.cost))
 
     def _on_restarting(self) -> None:
-        if not self._overtaken():
+        if not self._overtaken() and not self._stopped:
             self._set(Status.RESTARTING)
 
     def _on_given_up(self, how: str) -> None:
         self._errand = None
         self._long_due.stop()
-        if not self._overtaken():
+        if not self._overtaken() and not self._stopped:
             self._set(Status.FAILED, failure=messages.SOLVER_LOST.format(how=how))

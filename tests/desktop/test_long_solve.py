@@ -18,7 +18,7 @@ from desktop.look import Look
 from desktop.pages.crew_page import CrewPage
 from desktop.window import Window
 from desktop.workers import Workers
-from solver.answer import State
+from solver.answer import Policy, State
 from solver.plan import Category, Plan, Work
 from tests.family import family_plan
 from tests.processes import PROC, alive, engines_of
@@ -239,3 +239,22 @@ def test_an_edit_takes_the_engines_of_the_superseded_solve_along(qapp, qtbot):
     assert answers.answer.state is State.PROVED
     answers.close()
     workers.close()
+
+
+def test_after_stop_here_the_roundings_are_worked_out_beside_the_crew(qapp, qtbot):
+    workers = Workers()
+    answers = Answers(Document(family_plan(6, 3, 12, 1)), workers)
+    try:
+        qtbot.waitUntil(lambda: answers.can_stop, timeout=30_000)
+        answers.stop()
+        kept = answers.answer
+        assert answers.status is Status.READY
+        assert answers.can_look_further
+        qtbot.waitUntil(lambda: not answers.busy, timeout=30_000)
+        assert answers.status is Status.READY
+        assert {Policy.BEST_CORNER, Policy.PATCHED} <= {report.policy for report in answers.answer.crews}
+        assert answers.answer.exact.cost <= kept.exact.cost
+        assert answers.answer.bound >= kept.bound
+    finally:
+        answers.close()
+        workers.close()
