@@ -71,8 +71,30 @@ def roundoff(matrix: Matrix, row: Row) -> float:
     """What doubles may get wrong about a row of integer columns alone; 0 for any other row."""
     if not all(matrix.integer[i] for i in row.columns):
         return 0.0
-    size = sum(abs(a) * min(matrix.upper[i], FAR) for i, a in zip(row.columns, row.coefs, strict=True))
-    return 2e-15 * (size + abs(row.rhs))
+    return 2e-15 * (_size(matrix, row) + abs(row.rhs))
+
+
+def _size(matrix: Matrix, row: Row) -> float:
+    """The most that the row's terms can come to, signs left aside, in anything that keeps the row.
+
+    A term can have no more than what the others, at their least, leave of the right-hand side: an unlimited
+    count that an `exactly 0` forbids makes no room for others.
+    """
+    size = 0.0
+    ends = [_ends(matrix, column, coef) for column, coef in zip(row.columns, row.coefs, strict=True)]
+    over = max(row.rhs - sum(low for low, _ in ends), 0.0)
+    under = max(sum(high for _, high in ends) - row.rhs, 0.0)
+    for low, high in ends:
+        least = low if row.sense is RowSense.AT_MOST else max(low, high - under)
+        most = high if row.sense is RowSense.AT_LEAST else min(high, low + over)
+        size += max(abs(least), abs(most))
+    return size
+
+
+def _ends(matrix: Matrix, column: int, coef: float) -> tuple[float, float]:
+    """The least and the most that a term can be."""
+    ends = coef * matrix.lower[column], coef * min(matrix.upper[column], FAR)
+    return min(ends), max(ends)
 
 
 def forgiving(matrix: Matrix) -> Matrix:

@@ -184,3 +184,14 @@ class TestForgiving:
         assert made.rows[1] == matrix.rows[1]
         assert (made.cost[:4], made.integer[:4]) == (matrix.cost, matrix.integer)
         assert len(made.rows) == 2
+
+    def test_an_unlimited_count_that_must_be_nil_makes_no_room_for_another(self) -> None:
+        """Ten free learners an hour would be worth half a cent (small:1019641 of the long run)."""
+        matrix = Matrix()
+        free, unlimited = (matrix.add_column(0.0, 0.0, most, integer=True) for most in (3.0, 1e6))
+        paid = matrix.add_column(7.06, 0.0, 1e3)
+        matrix.add_row([free, unlimited], [1.3, 2000.0], RowSense.EQUAL, 0.0)
+        matrix.add_row([paid, free], [1.0, 2440.0], RowSense.AT_LEAST, 160.0)
+        relaxation = Relaxation(forgiving(matrix))
+        assert relaxation.solve() is LpStatus.OPTIMAL
+        assert relaxation.objective == pytest.approx(160 * 7.06, abs=1e-6)
