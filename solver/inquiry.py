@@ -9,19 +9,19 @@ from math import inf
 from time import monotonic
 from typing import Any
 
-import numpy as np
-
 from solver import heads
-from solver.engine import EngineName, WholeResult, WholeStatus, whole
 from solver.found import Found, Limits, Outcome
 from solver.search import Search
 from solver.tiebreak import TIES
+from solver.twoengines import two_engines
 
 Heard = Callable[[str, Any], None]
 SECONDS = 60.0
+# what takes our own search more nodes than this, engines mostly do in some hundredths of a second; where they
+# do not within a few seconds, our own search has another try
+QUICK = Limits(nodes=3_000, seconds=1.0)
+ENGINES = 6.0
 OWN = Limits(nodes=50_000, seconds=3.0)
-# engines are agreed when this close: half a cent, or half a hundredth of what is counted
-AGREED = 0.005
 
 
 def unheard(part: str, value: Any) -> None:
@@ -54,11 +54,18 @@ class Inquiry:
         `choose`: of equally cheap crews the preferred one, as long as they are few.
         """
         self.programs += 1
-        limits = replace(OWN, seconds=min(OWN.seconds, self.left))
-        outcome = search.cheapest(limits, cutoff=cutoff, start=start)
-        if not outcome.complete and self.left:
-            return self._two_engines(search, outcome, cutoff)
+        outcome = self._own(search, QUICK, cutoff, start)
+        for seconds in (ENGINES, inf):
+            if not outcome.complete and self.left:
+                outcome = two_engines(search, outcome, seconds=min(seconds, self.left), cutoff=cutoff)
+            if not outcome.complete and self.left:
+                outcome = self._own(search, OWN, cutoff, outcome.best or start)
         return self._preferred(search, outcome) if choose and outcome.complete else outcome
+
+    def _own(self, search: Search, limits: Limits, cutoff: float, start: Found | None) -> Outcome:
+        return search.cheapest(
+            replace(limits, seconds=min(limits.seconds, self.left)), cutoff=cutoff, start=start
+        )
 
     def _preferred(self, search: Search, outcome: Outcome) -> Outcome:
         """The same with the preferred one of equally cheap crews."""
@@ -68,46 +75,3 @@ class Inquiry:
         key = partial(heads.preference, search.program)
         chosen = search.cheapest(limits, key=key, start=outcome.best)
         return replace(outcome, best=chosen.best) if chosen.complete else outcome
-
-    def _two_engines(self, search: Search, own: Outcome, cutoff: float) -> Outcome:
-        first = whole(search.matrix, EngineName.HIGHS, seconds=self.left / 2)
-        best = _better(own.best, _checked(search, first))
-        if not self.left or first.status not in (WholeStatus.OPTIMAL, WholeStatus.INFEASIBLE):
-            return replace(own, best=best)
-        second = whole(search.matrix, EngineName.CBC, seconds=self.left)
-        best = _better(best, _checked(search, second))
-        if first.status is second.status is WholeStatus.INFEASIBLE:
-            return Outcome(None, inf, True, own.nodes)
-        if not _agree(first, second):
-            return replace(own, best=best)
-        if first.objective >= cutoff:
-            return Outcome(None, cutoff, True, own.nodes)
-        near = best is not None and abs(best.objective - first.objective) < _width(first)
-        return Outcome(best, first.objective, near, own.nodes)
-
-
-def _checked(search: Search, result: WholeResult) -> Found | None:
-    """An engine's crew at whole lots, every line checked again; None if it does not stand."""
-    if result.x is None:
-        return None
-    count = search.program.head_count
-    if not all(search.matrix.integer[:count]):  # some may be fractional: no crew of whole lots to check
-        return Found((), result.objective)
-    lots = tuple(int(v) for v in np.rint(result.x[:count]))
-    objective = search.evaluate(lots)
-    return None if objective is None else Found(lots, objective)
-
-
-def _better(a: Found | None, b: Found | None) -> Found | None:
-    if a is None or b is None:
-        return a or b
-    return b if b.objective < a.objective else a
-
-
-def _agree(first: WholeResult, second: WholeResult) -> bool:
-    proved = first.status is second.status is WholeStatus.OPTIMAL
-    return proved and abs(first.objective - second.objective) < _width(first)
-
-
-def _width(result: WholeResult) -> float:
-    return AGREED + 1e-9 * abs(result.objective)

@@ -22,7 +22,7 @@ from solver.windows import Windows
 
 SECONDS = 60.0
 # plans of one phase are our own search's home; beyond it decides soon or leaves it to the engines
-OWN_SECONDS = 2.0
+OWN_SECONDS = 0.75
 OWN_SECONDS_IN_PHASES = 0.25
 CENT = 0.01
 FEW_HEADS = 24  # our own search meets a crew sooner than one could be mended

@@ -34,11 +34,13 @@ from solver.program import Program
 from solver.proof import SECONDS, Effort, Proved, Prover
 from solver.rounding import largest_remainder, rounded, snapped
 from solver.search import Search
-from solver.tiebreak import cheapest_preferred
+from solver.tiebreak import cheapest_preferred, preferred
+from solver.twoengines import two_engines
 
 Heard = Callable[[str, Any], None]
-BOXED_SECONDS = 2.0
-BOXED_SECONDS_IN_PHASES = 1.0
+# our own search has a little time for a crew between two others, then the engines
+BOXED_SECONDS = 0.4
+BOXED_SECONDS_OF_ENGINES = 1.0
 QUICK_HEADS = 150  # so many head counts are appraised in a blink
 SOON = 0.5  # after so many seconds people want to see the crew before its company is worked out
 ROUNDINGS = (Policy.DOWN, Policy.NEAREST, Policy.UP, Policy.LARGEST_REMAINDER)
@@ -119,8 +121,12 @@ class Case:
         high[:count] = np.minimum(high[:count], upper)
         if (low > high).any():
             return None, True
-        seconds = BOXED_SECONDS if len(self.plan.phases) == 1 else BOXED_SECONDS_IN_PHASES
-        outcome = cheapest_preferred(self.search, seconds, box=(low, high))
+        box = (low, high)
+        outcome = cheapest_preferred(self.search, BOXED_SECONDS, box=box)
+        if not outcome.complete:
+            outcome = two_engines(self.search, outcome, seconds=BOXED_SECONDS_OF_ENGINES, box=box)
+            if outcome.complete and outcome.best is not None:
+                return preferred(self.program, outcome.best, BOXED_SECONDS, box), True
         return outcome.best, outcome.complete
 
     def best_corner(self) -> CrewReport:

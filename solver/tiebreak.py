@@ -16,15 +16,15 @@ import numpy as np
 from solver import heads
 from solver.engine import EngineName, whole
 from solver.found import Found, Limits, Outcome, tie_width
-from solver.matrix import Floats, Matrix, RowSense
+from solver.matrix import Matrix, RowSense
 from solver.program import Program
 from solver.search import Search
+from solver.twoengines import Box, boxed
 
 # 4,000 nodes settled no more plans of 1,000 random ones than 1,000 do
 TIES = Limits(nodes=1_000, seconds=1.0)
 NODES = 100_000
 GOAL_NODES = 2_000
-Box = tuple[Floats, Floats]
 _HALF_LOT = 0.5
 Goal = list[tuple[int, float]]
 
@@ -80,10 +80,7 @@ def preferred(program: Program, best: Found, seconds: float, box: Box | None = N
 
 def _by_engine(search: Search, best: Found | None, until: float, box: Box | None) -> Found | None:
     """The crew HiGHS finds for a goal that our own search did not settle, or `best` where it has none."""
-    matrix = search.matrix.copy()
-    if box is not None:
-        for column, lower, upper in zip(search.columns.tolist(), *box, strict=True):
-            matrix.lower[column], matrix.upper[column] = float(lower), float(upper)
+    matrix = search.matrix if box is None else boxed(search, box)
     answer = whole(matrix, EngineName.HIGHS, seconds=until - monotonic())
     if answer.x is None:
         return best
