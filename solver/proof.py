@@ -24,6 +24,8 @@ SECONDS = 60.0
 # plans of one phase are our own search's home; beyond it decides soon or leaves it to the engines
 OWN_SECONDS = 0.75
 OWN_SECONDS_IN_PHASES = 0.25
+# which of equally cheap crews, once engines have proved their cost
+CHOOSING_SECONDS = 2.0
 CENT = 0.01
 FEW_HEADS = 24  # our own search meets a crew sooner than one could be mended
 # beyond this the rows of the phases alone take longer to find than they are worth (20x8x52: 3.3 s for 0.01 %)
@@ -277,7 +279,7 @@ class _Contest:
             return Proved(State.BEST_FOUND, None, best, min(standing.bound, best.objective))
         proof = Proof.TWO_ENGINES if len(agreeing) == len(EngineName) else Proof.ONE_ENGINE
         left = max(self._until - monotonic(), 0.5)
-        best = preferred(self._program, best, min(left, OWN_SECONDS))
+        best = preferred(self._program, best, min(left, CHOOSING_SECONDS))
         return Proved(State.PROVED, proof, best, best.objective)
 
 
