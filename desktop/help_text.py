@@ -119,6 +119,7 @@ KEYS: tuple[tuple[str, str], ...] = (
     ("Escape", "Leave a cell as it was; drop an entry that was refused"),
     ("Typing into the last line", "Adds a category, work or phase"),
     ("Space", "Tick a name in a list; on the crew map, take the crew under the cursor as own"),
+    ("Typing into a list of names", "Goes to the name; a comma or Return ticks it"),
     ("Arrow keys", "In the crew map, the stairs of the workload and the attendance curve: move the cursor"),
     ("Ctrl+C", "Copy a table's cells, or a picture as an image"),
     ("Ctrl+Shift+C", "Copy what is behind a picture, as a table"),
